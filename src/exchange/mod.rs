@@ -1,0 +1,1 @@
+//! Files that come in and go out: CSV, calendars, exchange files.

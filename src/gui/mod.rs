@@ -1,0 +1,1 @@
+//! The window: maps view models to the generated Slint types.

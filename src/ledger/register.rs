@@ -1,0 +1,199 @@
+//! Registers: companies, people, sites, appliances, cylinders, instruments.
+//! Each keeps every version with its first day; nothing is overwritten.
+
+use super::{
+    ApplianceId, Category, ChargeMethod, CylinderId, CylinderKind, Equipment, GasStatus, InstrumentId, PersonId, RateMethod, SiteId,
+};
+use crate::quantity::{Mass, Weighing};
+use chrono::NaiveDate;
+use serde::{Deserialize, Serialize};
+
+/// One version of a register line.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Dated<T> {
+    /// First day; `None` holds from the beginning.
+    pub from: Option<NaiveDate>,
+    /// Why it changed, where someone said.
+    pub reason: Option<String>,
+    pub facts: T,
+}
+
+/// All versions of a register line, by first day.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(transparent)]
+pub struct Versions<T>(Vec<Dated<T>>);
+
+impl<T> Versions<T> {
+    /// Holds from the beginning.
+    pub fn always(facts: T) -> Self {
+        Self(vec![Dated { from: None, reason: None, facts }])
+    }
+
+    /// `None` when there is no version at all. Of two versions with the same
+    /// first day the one given later wins.
+    pub fn new(mut versions: Vec<Dated<T>>) -> Option<Self> {
+        versions.sort_by_key(|version| version.from);
+        (!versions.is_empty()).then_some(Self(versions))
+    }
+
+    /// The facts on a day; `None` before the first version's first day.
+    pub fn on(&self, day: NaiveDate) -> Option<&T> {
+        self.0.iter().rev().find(|version| version.from.is_none_or(|from| from <= day)).map(|version| &version.facts)
+    }
+
+    /// The facts of the last version, whatever its day.
+    pub fn latest(&self) -> &T {
+        // `new` and `always` refuse to be empty.
+        &self.0[self.0.len() - 1].facts
+    }
+
+    pub fn first(&self) -> &Dated<T> {
+        &self.0[0]
+    }
+
+    pub fn all(&self) -> &[Dated<T>] {
+        &self.0
+    }
+}
+
+/// The service company that keeps this store.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Company {
+    pub name: String,
+    pub address: String,
+    pub certificate: String,
+}
+
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Person {
+    pub id: PersonId,
+    pub name: String,
+    pub certificate: String,
+    pub certificate_kind: String,
+    pub valid_from: Option<NaiveDate>,
+    pub valid_to: Option<NaiveDate>,
+    pub company: String,
+    pub company_certificate: String,
+}
+
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Site {
+    pub id: SiteId,
+    /// Identification; unique in a store.
+    pub name: String,
+    pub versions: Versions<SiteFacts>,
+}
+
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct SiteFacts {
+    /// Ids of rulebooks, in the order in which they were given.
+    pub rulebooks: Vec<String>,
+    pub owner: String,
+    pub operator: String,
+    pub address: String,
+    pub rate_method: RateMethod,
+    /// IANA name; empty means that of the device.
+    pub time_zone: String,
+}
+
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Appliance {
+    pub id: ApplianceId,
+    pub site: SiteId,
+    /// Identification; unique at its site.
+    pub name: String,
+    pub versions: Versions<ApplianceFacts>,
+}
+
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct ApplianceFacts {
+    pub category: Category,
+    /// Designation in the gas catalogue, as `R-448A`.
+    pub refrigerant: String,
+    /// `None`: not determined yet. No rate can be calculated.
+    pub full_charge: Option<Mass>,
+    /// The full charge as it was written, for paper.
+    pub full_charge_written: Option<Weighing>,
+    pub charge_method: Option<ChargeMethod>,
+    pub installed_on: Option<NaiveDate>,
+    pub equipment: Option<Equipment>,
+    pub assembly: String,
+    pub description: String,
+    pub serial: String,
+    /// Where on the site it stands.
+    pub place: String,
+    pub labelled_hermetically_sealed: bool,
+    pub residential: bool,
+    pub leakage_detection_system: bool,
+    pub residential_or_light_commercial_ac: bool,
+    pub product_below_minus_50c: bool,
+    pub military: bool,
+    /// As written, in cubic metres.
+    pub room_volume_m3: Option<String>,
+}
+
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Cylinder {
+    pub id: CylinderId,
+    /// Serial or fleet number; unique in a store.
+    pub name: String,
+    pub versions: Versions<CylinderFacts>,
+}
+
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct CylinderFacts {
+    pub kind: CylinderKind,
+    pub tare: Mass,
+    pub tare_written: Weighing,
+    /// Empty cylinders may hold none yet.
+    pub refrigerant: Option<String>,
+    pub gas_status: Option<GasStatus>,
+    /// The weighing on the day it came into the store.
+    pub gross: Option<Mass>,
+    pub gross_written: Option<Weighing>,
+    /// Water capacity in litres, exact decimal as written or converted (1 kg of water = 1 l).
+    pub water_capacity_l: Option<String>,
+    /// Stamped maximum: net mass of gas.
+    pub stamped_maximum: Option<Mass>,
+    pub service_pressure_psig: Option<String>,
+    pub test_pressure_bar: Option<String>,
+    pub requalify_by: Option<NaiveDate>,
+    /// Whose cylinder.
+    pub owner: String,
+    /// Whose gas.
+    pub gas_owner: String,
+    /// Shop, van, site or person.
+    pub location: String,
+    /// Reclaimed or recycled gas: facility, address, batch and certificate.
+    pub gas_source: String,
+    /// Out of use, with the reason.
+    pub scrapped: Option<String>,
+}
+
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
+pub enum InstrumentKind {
+    #[serde(rename = "scale")]
+    Scale,
+    #[serde(rename = "detector")]
+    Detector,
+    #[serde(rename = "gauge")]
+    Gauge,
+    #[serde(rename = "recovery machine")]
+    RecoveryMachine,
+    #[serde(rename = "hoses")]
+    Hoses,
+}
+
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Instrument {
+    pub id: InstrumentId,
+    pub kind: InstrumentKind,
+    pub name: String,
+    pub serial: String,
+    /// A scale's division, as written on it.
+    pub division: Option<Weighing>,
+    /// What a set of hoses can hold when it is not emptied.
+    pub holds: Option<Weighing>,
+    pub checked_on: Option<NaiveDate>,
+    pub check_due: Option<NaiveDate>,
+}

@@ -1,0 +1,1 @@
+//! Field calculations: weighing error, cylinder limits, and the like.

@@ -1,0 +1,1 @@
+//! Paper: page layout and charts.

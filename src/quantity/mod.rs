@@ -1,0 +1,9 @@
+//! Exact quantities. Nothing here is a float, knows a clock or a language.
+
+mod calendar;
+mod decimal;
+mod mass;
+
+pub use calendar::{add_months, days_between};
+pub use decimal::{NotADecimal, Ratio, decimal_text, parse_decimal, rounded_text, square_root_text};
+pub use mass::{Mass, MassError, MassUnit, Weighing};

@@ -1,0 +1,1 @@
+//! What a service record and an annual account contain, as data, without layout.

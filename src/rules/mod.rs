@@ -1,0 +1,1 @@
+//! Rulebooks, leak rates, scope and duties.

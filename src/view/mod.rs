@@ -1,0 +1,1 @@
+//! What the places show, as finished strings.

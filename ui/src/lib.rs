@@ -1,0 +1,3 @@
+//! Generated code of the screens.
+#![allow(clippy::all, unsafe_code)]
+slint::include_modules!();
