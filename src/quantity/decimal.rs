@@ -128,7 +128,7 @@ mod tests {
 
     #[test]
     fn exact_decimals_have_no_trailing_zeros() {
-        assert_eq!(decimal_text(Ratio::new(249_475_803_5, 10_000_000_000)).unwrap(), "0.2494758035");
+        assert_eq!(decimal_text(Ratio::new(2_494_758_035, 10_000_000_000)).unwrap(), "0.2494758035");
         assert_eq!(decimal_text(Ratio::from_integer(0)).unwrap(), "0");
         assert_eq!(decimal_text(Ratio::new(1, 8)).unwrap(), "0.125");
         assert_eq!(decimal_text(Ratio::new(-5, 2)).unwrap(), "-2.5");
