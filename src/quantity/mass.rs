@@ -17,6 +17,8 @@ pub struct Mass(i128);
 
 const UNITS_PER_KG: i128 = 100_000_000_000_000;
 const UNITS_PER_LB: i128 = 45_359_237_000_000;
+/// [`Mass::MOST`] in grams, the smallest unit.
+const MOST_IN_ANY_UNIT: i128 = 90_000_000;
 
 /// Units in which masses are weighed and written.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash, Serialize, Deserialize)]
@@ -142,6 +144,13 @@ impl Mass {
             return Self::parse_pounds_and_ounces(text);
         }
         let value = parse_decimal(text)?;
+        // Before multiplying: thirty digits times the unit would leave the 128 bits.
+        if value.numer().abs() / value.denom() > MOST_IN_ANY_UNIT {
+            return Err(MassError::TooLarge { text: text.to_owned(), unit });
+        }
+        if *value.denom() > UNITS_PER_KG {
+            return Err(MassError::TooFine { text: text.to_owned(), unit, places: unit.exact_places() });
+        }
         let exact = value * unit.units();
         if !exact.is_integer() {
             return Err(MassError::TooFine { text: text.to_owned(), unit, places: unit.exact_places() });
@@ -324,6 +333,15 @@ mod tests {
         assert!(matches!(Mass::parse("0.001", MassUnit::Ounce), Err(MassError::TooFine { .. })));
         assert!(matches!(Mass::parse("12 16", MassUnit::PoundOunce), Err(MassError::NotPoundsAndOunces(_))));
         assert!(matches!(Mass::parse("12.5 1", MassUnit::PoundOunce), Err(MassError::NotPoundsAndOunces(_))));
+    }
+
+    #[test]
+    fn thirty_digits_are_refused_in_every_unit() {
+        for unit in MassUnit::ALL {
+            for text in ["999999999999999999999999999999", "0.999999999999999999999999999999", "99999999999999.9999999999999999"] {
+                assert!(Mass::parse(text, unit).is_err(), "{text} {unit}");
+            }
+        }
     }
 
     #[test]

@@ -3,7 +3,15 @@
 mod calendar;
 mod decimal;
 mod mass;
+mod pressure;
+mod temperature;
+mod volume;
+mod written;
 
 pub use calendar::{add_months, days_between};
 pub use decimal::{NotADecimal, Ratio, decimal_text, parse_decimal, rounded_text, square_root_text};
 pub use mass::{Mass, MassError, MassUnit, Weighing};
+pub use pressure::{AbsolutePressure, GaugePressure, PressureStep, WrittenPressure};
+pub use temperature::{Temperature, TemperatureStep};
+pub use volume::Volume;
+pub use written::QuantityError;
