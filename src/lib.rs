@@ -9,7 +9,7 @@
 //! - [`measure`]: weighing error, cylinder limits and the other field calculations
 //! - [`record`]: what a service record and an annual account contain
 //! - [`store`]: the SQLite file
-//! - [`print`]: paper
+//! - [`print`]: records on paper
 //! - [`exchange`]: CSV, calendars, exchange files
 //! - [`app`]: use cases, one function per thing a person does
 //! - [`view`]: what the places show, as finished strings
