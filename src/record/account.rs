@@ -252,9 +252,7 @@ fn fill(row: &mut [String; COLUMNS.len()], line: &AccountLine, loss: &WeightedLo
 /// RFC 4180, with a plain line feed.
 fn line_of<'a>(cells: impl Iterator<Item = &'a str>) -> String {
     let quoted: Vec<String> = cells
-        .map(|cell| {
-            if cell.contains([',', '"', '\n', '\r']) { format!("\"{}\"", cell.replace('"', "\"\"")) } else { cell.to_owned() }
-        })
+        .map(|cell| if cell.contains([',', '"', '\n', '\r']) { format!("\"{}\"", cell.replace('"', "\"\"")) } else { cell.to_owned() })
         .collect();
     quoted.join(",") + "\n"
 }

@@ -8,7 +8,7 @@ pub use account::{
     AccountLine, AnnualAccount, ApplianceAccount, DutyCounts, DutyTally, GasAccount, WeightedLoss, account_csv, account_json,
 };
 pub use service::{
-    AppliancePart, ApplianceText, Caution, Counterparty, DutyFacts, DutyStep, EntryFacts, Finding, Fingerprint, LeakRate, NoRate,
-    Notice, OpenLeak, Party, PersonAtWork, RateInput, RecordState, RepairFacts, Rulebook, ServiceRecord, SignedBy, SiteText, TestFacts,
+    AppliancePart, ApplianceText, Caution, Counterparty, DutyFacts, DutyStep, EntryFacts, Finding, Fingerprint, LeakRate, NoRate, Notice,
+    OpenLeak, Party, PersonAtWork, RateInput, RecordState, RepairFacts, Rulebook, ServiceRecord, SignedBy, SiteText, TestFacts,
     TransferFacts, Verdict, Way, WeightedAmount, Work,
 };

@@ -80,7 +80,6 @@ impl Fingerprint {
     }
 }
 
-
 /// A rulebook that this record was judged by.
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
 pub struct Rulebook {
@@ -223,7 +222,11 @@ pub enum Work {
     Repair(RepairFacts),
     /// Any other entry, under its own word: `mothball`, `note`, `recycle`.
     /// `text` is one finished sentence, which may be empty; `figure` stands at the right.
-    Other { name: String, text: String, figure: String },
+    Other {
+        name: String,
+        text: String,
+        figure: String,
+    },
 }
 
 /// Which way gas went.
