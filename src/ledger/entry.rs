@@ -35,7 +35,8 @@ pub struct Line {
 }
 
 /// What an entry says was done.
-#[derive(Debug, Clone, PartialEq, Eq)]
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(tag = "act", rename_all = "kebab-case")]
 pub enum Act {
     /// Gas added to the appliance.
     Charge {
@@ -80,7 +81,7 @@ pub enum Act {
 }
 
 /// A mass known by weighing.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
 pub struct Transfer {
     /// Always above zero.
     pub mass: Mass,

@@ -1,15 +1,19 @@
 //! The ledger: what exists (registers), what was done (entries of visits), and
 //! the fold from entries to balances. Gas moves only by transfers.
 
+mod balance;
 mod entry;
 mod register;
+mod registers;
 mod visit;
 mod words;
 
+pub use balance::{ApplianceTotals, Content, CylinderBalance, KnownGross, Movement, MovementKind, appliance_totals, cylinder_balance};
 pub use entry::{Act, CautionSeen, Detail, Entry, LeakPlace, Line, Moment, Position, Reading, Transfer, WeighingMode};
 pub use register::{
     Appliance, ApplianceFacts, Company, Cylinder, CylinderFacts, Dated, Instrument, InstrumentKind, Person, Site, SiteFacts, Versions,
 };
+pub use registers::Registers;
 pub use visit::{Closing, Counterpart, Ink, Signature, Visit, VisitState};
 pub use words::{
     Category, ChargeMethod, ChargePurpose, CylinderKind, Equipment, GasStatus, RateMethod, RecoveryPurpose, Scope, TestKind, TestResult,

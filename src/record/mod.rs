@@ -1,12 +1,16 @@
 //! What a service record and an annual account contain, as data, without layout.
 
 mod account;
+mod canonical;
+mod closed;
 mod exact;
 mod service;
 
 pub use account::{
     AccountLine, AnnualAccount, ApplianceAccount, DutyCounts, DutyTally, GasAccount, WeightedLoss, account_csv, account_json,
 };
+pub use canonical::{NotCanonical, canonical_json};
+pub use closed::{Closed, ClosedEntry, ClosedVisit, FORMAT, NotClosed, VisitFacts, close, fingerprint, read_closed};
 pub use service::{
     AppliancePart, ApplianceText, Caution, Counterparty, DutyFacts, DutyStep, EntryFacts, Finding, Fingerprint, LeakRate, NoRate, Notice,
     OpenLeak, Party, PersonAtWork, RateInput, RecordState, RepairFacts, Rulebook, ServiceRecord, SignedBy, SiteText, TestFacts,

@@ -1,0 +1,241 @@
+//! Drafts: what is typed and not saved yet, kept so that it outlives the
+//! program being killed. They have their own connection and thread, which
+//! does not wait for the disk (`synchronous=NORMAL`).
+
+use super::sql_types::Instant;
+use super::{Store, StoreError, Writing};
+use crate::ledger::VisitId;
+use chrono::{DateTime, Utc};
+use rusqlite::{OptionalExtension, params};
+use std::collections::BTreeMap;
+use std::sync::mpsc::{Receiver, RecvTimeoutError, Sender, channel};
+use std::thread::JoinHandle;
+use std::time::{Duration, Instant as Tick};
+
+/// What was being typed.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Draft {
+    pub visit: VisitId,
+    /// Which action of the visit: `charge`, `close`, …
+    pub action: String,
+    pub body: String,
+    pub saved: DateTime<Utc>,
+}
+
+impl Store {
+    /// # Errors
+    /// The store's own, as for all below.
+    pub fn draft(&self, visit: VisitId, action: &str) -> Result<Option<Draft>, StoreError> {
+        self.read(|c| {
+            c.prepare_cached("SELECT body, saved FROM drafts WHERE visit = ?1 AND action = ?2")?
+                .query_row(params![visit, action], |row| {
+                    let Instant(saved) = row.get(1)?;
+                    Ok(Draft { visit, action: action.to_owned(), body: row.get(0)?, saved })
+                })
+                .optional()
+        })
+    }
+
+    pub fn drafts_of(&self, visit: VisitId) -> Result<Vec<Draft>, StoreError> {
+        self.read(|c| {
+            let mut statement = c.prepare_cached("SELECT action, body, saved FROM drafts WHERE visit = ?1 ORDER BY action")?;
+            let drafts = statement.query_map([visit], |row| {
+                let Instant(saved) = row.get(2)?;
+                Ok(Draft { visit, action: row.get(0)?, body: row.get(1)?, saved })
+            })?;
+            drafts.collect()
+        })
+    }
+}
+
+impl Writing<'_> {
+    /// # Errors
+    /// The store's own.
+    pub fn put_draft(&self, draft: &Draft) -> Result<(), StoreError> {
+        self.run(|c| put(c, draft))
+    }
+
+    /// # Errors
+    /// The store's own.
+    pub fn clear_draft(&self, visit: VisitId, action: &str) -> Result<(), StoreError> {
+        self.run(|c| clear(c, visit, action))
+    }
+}
+
+fn put(c: &rusqlite::Connection, draft: &Draft) -> rusqlite::Result<()> {
+    // A draft that comes late, after its visit was closed, is of no use.
+    c.prepare_cached(
+        "INSERT INTO drafts (visit, action, body, saved) SELECT ?1, ?2, ?3, ?4 FROM visits WHERE id = ?1 AND state = 'open' \
+         ON CONFLICT (visit, action) DO UPDATE SET body = excluded.body, saved = excluded.saved",
+    )?
+    .execute(params![draft.visit, draft.action, draft.body, Instant(draft.saved)])
+    .map(drop)
+}
+
+fn clear(c: &rusqlite::Connection, visit: VisitId, action: &str) -> rusqlite::Result<()> {
+    c.prepare_cached("DELETE FROM drafts WHERE visit = ?1 AND action = ?2")?.execute(params![visit, action]).map(drop)
+}
+
+/// The longest a draft waits for further typing before it is written; with
+/// the writing itself it stays under a quarter of a second.
+const WAIT: Duration = Duration::from_millis(100);
+
+enum Order {
+    Put(Draft),
+    Clear(VisitId, String),
+    Flush(Sender<Option<StoreError>>),
+}
+
+/// Writes drafts on a thread of its own; of several for one action within a
+/// tenth of a second only the last is written.
+pub struct DraftWriter {
+    orders: Option<Sender<Order>>,
+    thread: Option<JoinHandle<()>>,
+}
+
+impl DraftWriter {
+    /// Opens the thread's own connection to the file of `store`.
+    ///
+    /// # Errors
+    /// As [`Store::another`].
+    pub fn open(store: &Store) -> Result<Self, StoreError> {
+        let own = store.another()?;
+        own.read(|c| c.pragma_update(None, "synchronous", "NORMAL"))?;
+        let (orders, received) = channel();
+        let thread = std::thread::Builder::new()
+            .name("drafts".to_owned())
+            .spawn(move || keep(&own, &received))
+            .map_err(|e| StoreError::CannotOpen { path: store.path().map(Into::into).unwrap_or_default(), detail: e.to_string() })?;
+        Ok(Self { orders: Some(orders), thread: Some(thread) })
+    }
+
+    /// Never waits; the draft is on disk at most a quarter of a second later.
+    pub fn put(&self, draft: Draft) {
+        self.order(Order::Put(draft));
+    }
+
+    pub fn clear(&self, visit: VisitId, action: &str) {
+        self.order(Order::Clear(visit, action.to_owned()));
+    }
+
+    /// Waits until all is written that was put before.
+    ///
+    /// # Errors
+    /// The last error of writing since the last flush.
+    pub fn flush(&self) -> Result<(), StoreError> {
+        let (answer, done) = channel();
+        self.order(Order::Flush(answer));
+        // A thread that has ended has nothing left to write.
+        done.recv().ok().flatten().map_or(Ok(()), Err)
+    }
+
+    fn order(&self, order: Order) {
+        if let Some(orders) = &self.orders {
+            // Fails only when the thread has ended; a flush then reports it.
+            let _ = orders.send(order);
+        }
+    }
+}
+
+impl Drop for DraftWriter {
+    fn drop(&mut self) {
+        // Hanging up ends the thread, which writes what it holds first.
+        self.orders = None;
+        if let Some(thread) = self.thread.take() {
+            let _ = thread.join();
+        }
+    }
+}
+
+/// Draft by visit and action; `None` clears it.
+type Held = BTreeMap<(VisitId, String), Option<Draft>>;
+
+fn keep(store: &Store, orders: &Receiver<Order>) {
+    let mut failed: Option<StoreError> = None;
+    let mut held = Held::new();
+    while let Ok(first) = orders.recv() {
+        let until = Tick::now() + WAIT;
+        let mut waiting = Vec::new();
+        let mut hung_up = false;
+        take(first, &mut held, &mut waiting);
+        while waiting.is_empty() {
+            match orders.recv_timeout(until.saturating_duration_since(Tick::now())) {
+                Ok(order) => take(order, &mut held, &mut waiting),
+                Err(RecvTimeoutError::Timeout) => break,
+                Err(RecvTimeoutError::Disconnected) => {
+                    hung_up = true;
+                    break;
+                }
+            }
+        }
+        // What could not be written is held for the next time.
+        match write(store, &held) {
+            Ok(()) => held.clear(),
+            Err(error) => failed = Some(error),
+        }
+        for answer in waiting {
+            // Whoever asked may have gone.
+            let _ = answer.send(failed.take());
+        }
+        if hung_up {
+            return;
+        }
+    }
+}
+
+fn take(order: Order, held: &mut Held, waiting: &mut Vec<Sender<Option<StoreError>>>) {
+    match order {
+        Order::Put(draft) => drop(held.insert((draft.visit, draft.action.clone()), Some(draft))),
+        Order::Clear(visit, action) => drop(held.insert((visit, action), None)),
+        Order::Flush(answer) => waiting.push(answer),
+    }
+}
+
+fn write(store: &Store, held: &Held) -> Result<(), StoreError> {
+    if held.is_empty() {
+        return Ok(());
+    }
+    store.read(|c| {
+        let transaction = rusqlite::Transaction::new_unchecked(c, rusqlite::TransactionBehavior::Immediate)?;
+        for ((visit, action), draft) in held {
+            match draft {
+                Some(draft) => put(c, draft)?,
+                None => clear(c, *visit, action)?,
+            }
+        }
+        transaction.commit()
+    })
+}
+
+#[cfg(test)]
+mod tests {
+    use super::super::OpenMode;
+    use super::super::samples::{fill, ids, now};
+    use super::*;
+
+    fn draft(body: &str) -> Draft {
+        Draft { visit: ids::VISIT, action: "charge".to_owned(), body: body.to_owned(), saved: now() }
+    }
+
+    #[test]
+    fn drafts_arrive_without_being_waited_for() {
+        let folder = tempfile::tempdir().unwrap();
+        let store = Store::open(&folder.path().join("a.store"), OpenMode::Create).unwrap();
+        fill(&store);
+        let writer = DraftWriter::open(&store).unwrap();
+        for body in ["1", "12", "12.", "12.5"] {
+            writer.put(draft(body));
+        }
+        std::thread::sleep(Duration::from_millis(250));
+        assert_eq!(store.draft(ids::VISIT, "charge").unwrap(), Some(draft("12.5")));
+
+        writer.put(draft("13"));
+        writer.clear(ids::VISIT, "charge");
+        writer.flush().unwrap();
+        assert_eq!(store.drafts_of(ids::VISIT).unwrap(), []);
+
+        writer.put(draft("14"));
+        drop(writer);
+        assert_eq!(store.draft(ids::VISIT, "charge").unwrap(), Some(draft("14")));
+    }
+}
