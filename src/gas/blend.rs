@@ -70,7 +70,7 @@ impl Gas {
 
     /// kg CFC-11 equivalent per kg, by the Montreal Protocol's annexes, part by part.
     pub fn odp(&self) -> Ratio {
-        self.parts.iter().map(|part| part.fraction * part.substance.odp().value).sum()
+        mixture(self.parts.iter().map(|part| (part.fraction, part.substance.odp().value)))
     }
 
     /// kg CO₂ equivalent per kg by one set, part by part, not rounded; `None` if the set lacks a part.
@@ -93,7 +93,8 @@ impl Gas {
     }
 
     pub(super) fn sum_of(&self, value: impl Fn(&Part) -> Option<Figure>) -> Option<Ratio> {
-        self.parts.iter().map(|part| Some(part.fraction * value(part)?.value)).sum()
+        let parts: Option<Vec<_>> = self.parts.iter().map(|part| Some((part.fraction, value(part)?.value))).collect();
+        Some(mixture(parts?))
     }
 
     /// Any part is controlled by Annex A, B, C or E of the Montreal Protocol.
@@ -186,6 +187,11 @@ impl Gas {
             designation: designation.to_owned(),
         })
     }
+}
+
+/// The mixture rule of Regulation (EU) 2024/573, Annex VI, and 40 CFR 84.64(b): the sum of mass fraction times value, not rounded.
+pub fn mixture(parts: impl IntoIterator<Item = (Ratio, Ratio)>) -> Ratio {
+    parts.into_iter().map(|(fraction, value)| fraction * value).sum()
 }
 
 /// Blend, its parts, their source.

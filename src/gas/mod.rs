@@ -11,7 +11,7 @@ mod substance;
 mod table;
 mod weight;
 
-pub use blend::{Gas, Part, Role, all, find, like};
+pub use blend::{Gas, Part, Role, all, find, like, mixture};
 pub use safety::{Limits, SafetyClass};
 pub use source::{Figure, Source, Standing};
 pub use substance::{EuListing, GwpSet, Substance, substances};

@@ -179,7 +179,7 @@ fn density_limits(gas: &Gas, missing: &mut Vec<Missing>) -> Vec<DensityLimit> {
     if !is_low_pressure(gas) {
         missing.push(Missing::EightyPercentNearCritical);
     } else if let Some(density) = kg_per_litre(gas, 25.0) {
-        found.push((LimitKind::EightyPercent, density * Ratio::new(4, 5), None));
+        found.push((LimitKind::EightyPercent, eighty_percent(density), None));
     } else {
         missing.push(Missing::Density(25));
     }
@@ -201,6 +201,11 @@ fn density_limits(gas: &Gas, missing: &mut Vec<Missing>) -> Vec<DensityLimit> {
         }
     }
     found
+}
+
+/// kg per litre of water capacity by the 80 % rule, from the liquid's density at 25 °C (77 °F) in kg/l.
+pub fn eighty_percent(density: Ratio) -> Ratio {
+    density * Ratio::new(4, 5)
 }
 
 fn named(gas: &Gas) -> Option<&'static (&'static str, i128, Option<i128>)> {

@@ -7,7 +7,8 @@ mod room;
 mod weighing;
 
 pub use cylinder_limit::{
-    Cylinder, CylinderLaw, CylinderLimit, Limit, LimitKind, Missing, Rating, cylinder_limit, default_oil_factor, oil_factor_is_sound,
+    Cylinder, CylinderLaw, CylinderLimit, Limit, LimitKind, Missing, Rating, cylinder_limit, default_oil_factor, eighty_percent,
+    oil_factor_is_sound,
 };
 pub use cylinder_pressure::{PressureCheck, PressureVerdict, pressure_check};
 pub use leak::{Leak, LeakUnit};
