@@ -145,7 +145,9 @@ fn table(args: &FillArgs, gas: &Gas, cylinder: &Cylinder, limit: &CylinderLimit)
         let mark = sheet.cite(&format!("{}: {}", one.kind.name(), one.kind.basis()));
         rows.push(row([one.kind.name(), &kilograms(one.net), &pounds(one.net), &mark, word]));
     }
-    sheet.rows("", &rows);
+    if !limit.limits.is_empty() {
+        sheet.rows("", &rows);
+    }
     let mut rows = Vec::new();
     match &limit.binding {
         Some(binding) => rows.push(row(["net", &format!("{} kg", kilograms(binding.net)), &format!("{} lb", pounds(binding.net))])),

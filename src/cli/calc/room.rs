@@ -62,12 +62,12 @@ fn table(args: &RoomArgs, gas: &Gas, check: &RoomCheck) -> String {
     );
     let mut sheet = Sheet::titled(&title);
     let mut rows = vec![row(["", "kg/m\u{b3}", "ppm", "largest charge", "", ""])];
-    rows.push(row(["this charge", &rounded_text(check.concentration, 4), &ppm(gas, check.concentration)]));
+    rows.push(row(["this charge", &significant(float(check.concentration), 4), &ppm(gas, check.concentration)]));
     for limit in &check.limits {
         let mark = sheet.cite(&format!("{}: {}", limit.kind.name(), limit.source));
         let word = if limit.passes { "passes" } else { "OVER" };
         let largest = format!("{} kg", rounded_text(limit.largest.kg(), 3));
-        rows.push(row([limit.kind.name(), &rounded_text(limit.limit, 4), &limit_ppm(gas, limit), &largest, word, &mark]));
+        rows.push(row([limit.kind.name(), &decimal_text(limit.limit).unwrap_or_default(), &limit_ppm(gas, limit), &largest, word, &mark]));
     }
     sheet.rows("", &rows);
     match check.largest {
