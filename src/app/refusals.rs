@@ -1,0 +1,512 @@
+//! The rules for new entries: what protects people or law. Pure functions of
+//! what stands and what is to be entered; window and commands ask them alike.
+//!
+//! History that is imported is taken as it happened and does not pass here.
+
+use super::service_bans::service_bans;
+use super::standing::{ApplianceStanding, CylinderStanding};
+use crate::gas;
+use crate::ledger::{Act, ChargePurpose, CylinderKind, GasStatus, Moment};
+use crate::measure::{self, CylinderLaw, Rating, cylinder_limit};
+use crate::quantity::{GaugePressure, Mass, Ratio, Volume, parse_decimal};
+use chrono::NaiveDate;
+use std::fmt;
+
+/// What a refusal is about.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
+pub enum Kind {
+    InTheFuture,
+    BeforeInstallation,
+    Retired,
+    AlreadyMothballed,
+    UnknownGas,
+    OtherGas,
+    MixedGas,
+    RecoveredGas,
+    ServiceBan,
+    BelowTare,
+    MoreThanHeld,
+    MoreThanFull,
+    OutOfUse,
+    NotRefillable,
+    Overdue,
+    OverLimit,
+    NotRated,
+    NothingToRecycle,
+    WeighingGap,
+}
+
+/// Why something is not entered.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Refusal {
+    pub kind: Kind,
+    pub sentence: String,
+    /// Article or other basis; empty where it is plain sense.
+    pub source: &'static str,
+    /// The law leaves it to judgement: a reason, which is printed, lets it pass.
+    pub judgement: bool,
+}
+
+impl fmt::Display for Refusal {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        f.write_str(&self.sentence)?;
+        if !self.source.is_empty() {
+            write!(f, " ({})", self.source)?;
+        }
+        if self.judgement {
+            f.write_str(" Going on needs a reason, which is printed.")?;
+        }
+        Ok(())
+    }
+}
+
+impl Refusal {
+    fn firm(kind: Kind, sentence: String, source: &'static str) -> Self {
+        Self { kind, sentence, source, judgement: false }
+    }
+
+    fn judgement(kind: Kind, sentence: String, source: &'static str) -> Self {
+        Self { kind, sentence, source, judgement: true }
+    }
+}
+
+const SAME_OWNER: &str = "40 CFR 82.156(h), 82.154(d)";
+const EU_RECOVERED: &str = "Regulation (EU) 2024/573 Art. 8(6)";
+const OVERDUE: &str = "49 CFR 180.205(c), 173.301(a)(6)";
+const NON_REFILLABLE: &str = "49 CFR 178.65";
+
+/// What holds for every entry on an appliance.
+pub fn of_entry(standing: &ApplianceStanding, act: &Act, at: Moment, today: NaiveDate) -> Vec<Refusal> {
+    let mut refusals = Vec::new();
+    let name = &standing.appliance.name;
+    if at.date > today {
+        let sentence = format!("{} has not come yet at this site; today is {today}. Correct the date.", at.date);
+        refusals.push(Refusal::firm(Kind::InTheFuture, sentence, ""));
+    }
+    if let Some(installed) = standing.facts.installed_on.filter(|installed| at.date < *installed) {
+        let sentence = format!("{name} was installed on {installed}, after {}. Correct one of the two.", at.date);
+        refusals.push(Refusal::firm(Kind::BeforeInstallation, sentence, ""));
+    }
+    // A chronic leak report is still due after retirement; a note harms nobody.
+    let may_follow = matches!(act, Act::ReportSent | Act::Note);
+    if let Some(retired) = standing.retired_on.filter(|retired| *retired <= at.date && !may_follow) {
+        let sentence = format!("{name} was retired on {retired}; nothing more is done to it. If that was wrong, correct that entry first.");
+        refusals.push(Refusal::firm(Kind::Retired, sentence, ""));
+    }
+    if let (Act::Mothball, Some(since)) = (act, standing.mothballed_on) {
+        let sentence = format!("{name} is mothballed since {since}.");
+        refusals.push(Refusal::firm(Kind::AlreadyMothballed, sentence, ""));
+    }
+    refusals
+}
+
+/// What holds for gas that goes into an appliance. `cylinder` is `None` for a factory charge.
+pub fn of_charge(
+    standing: &ApplianceStanding,
+    cylinder: Option<&CylinderStanding>,
+    purpose: ChargePurpose,
+    net: Mass,
+    gross_after: Option<Mass>,
+    day: NaiveDate,
+) -> Vec<Refusal> {
+    let mut refusals = Vec::new();
+    let facts = &standing.facts;
+    if gas::find(&facts.refrigerant).is_none() {
+        refusals.push(unknown_gas(&facts.refrigerant));
+    }
+    if let Some(full) = facts.full_charge.filter(|full| net > *full) {
+        let sentence =
+            format!("{} kg is more than the full charge of {}, {} kg.", net.kg_text(), standing.appliance.name, full.kg_text());
+        refusals.push(Refusal::judgement(Kind::MoreThanFull, sentence, ""));
+    }
+    let Some(cylinder) = cylinder else { return refusals };
+    let name = &cylinder.cylinder.name;
+    let balance = &cylinder.balance;
+    if balance.is_mixed() {
+        let sentence = format!("Cylinder {name} holds mixed gas, which is never charged. It goes for reclamation or destruction.");
+        refusals.push(Refusal::firm(Kind::MixedGas, sentence, "40 CFR 82.154(d); common practice"));
+    } else if let Some(gas) = balance.gas.as_ref().filter(|gas| !same_gas(gas, &facts.refrigerant)) {
+        let sentence = format!("Cylinder {name} holds {gas}, {} takes {}.", standing.appliance.name, facts.refrigerant);
+        refusals.push(Refusal::firm(Kind::OtherGas, sentence, ""));
+    } else if balance.gas.is_none() {
+        let sentence = format!("Nothing is known to be in cylinder {name}. Write down its gas first.");
+        refusals.push(Refusal::firm(Kind::OtherGas, sentence, ""));
+    }
+    if balance.status == Some(GasStatus::Recovered) {
+        refusals.extend(recovered_gas(standing, cylinder, purpose));
+    }
+    // Gas of unknown origin is taken as virgin: the safe side.
+    let status = balance.status.unwrap_or(GasStatus::Virgin);
+    for ban in service_bans(&standing.site_facts.rulebooks, facts, &facts.refrigerant, status, day) {
+        let sentence = format!("{} takes no {} {}: {}.", standing.appliance.name, status.name(), facts.refrigerant, ban.forbids);
+        refusals.push(Refusal { kind: Kind::ServiceBan, sentence, source: ban.source, judgement: ban.leaves_room() });
+    }
+    refusals.extend(below_tare(cylinder, gross_after));
+    if let Some(held) = balance.content.mass().filter(|held| gross_after.is_none() && net > *held) {
+        let sentence = format!("Cylinder {name} held {} kg, {} kg is more.", held.kg_text(), net.kg_text());
+        refusals.push(Refusal::judgement(Kind::MoreThanHeld, sentence, ""));
+    }
+    refusals
+}
+
+fn recovered_gas(standing: &ApplianceStanding, cylinder: &CylinderStanding, purpose: ChargePurpose) -> Option<Refusal> {
+    let name = &cylinder.cylinder.name;
+    let under = |start: &str| standing.site_facts.rulebooks.iter().any(|id| id.starts_with(start));
+    if under("eu-") {
+        let sentence = format!("Cylinder {name} holds recovered gas, which is not charged before it is recycled or reclaimed.");
+        return Some(Refusal::firm(Kind::RecoveredGas, sentence, EU_RECOVERED));
+    }
+    if under("us-") {
+        if purpose == ChargePurpose::Returned {
+            return None;
+        }
+        let owner = standing.site_facts.owner.trim();
+        let stated = cylinder.facts.gas_owner.trim();
+        let gas_owner = if stated.is_empty() { cylinder.recovered_from.as_deref().unwrap_or("") } else { stated };
+        if !owner.is_empty() && owner.eq_ignore_ascii_case(gas_owner) {
+            return None;
+        }
+        if owner.is_empty() || gas_owner.is_empty() {
+            let sentence = format!(
+                "Cylinder {name} holds recovered gas, which goes back only to the owner it came from, and whose it is was not written down."
+            );
+            return Some(Refusal::judgement(Kind::RecoveredGas, sentence, SAME_OWNER));
+        }
+        let sentence = format!("Cylinder {name} holds gas recovered from {gas_owner}; it is not charged for {owner} before it is reclaimed.");
+        return Some(Refusal::firm(Kind::RecoveredGas, sentence, SAME_OWNER));
+    }
+    let sentence = format!("Cylinder {name} holds recovered gas. Make sure that the law here lets it be charged.");
+    Some(Refusal::judgement(Kind::RecoveredGas, sentence, ""))
+}
+
+/// What holds for gas that goes from an appliance into a cylinder.
+pub fn of_recovery(
+    standing: &ApplianceStanding,
+    cylinder: &CylinderStanding,
+    net: Mass,
+    gross_after: Option<Mass>,
+    oil_factor: Ratio,
+    day: NaiveDate,
+) -> Vec<Refusal> {
+    let mut refusals = Vec::new();
+    let name = &cylinder.cylinder.name;
+    let refrigerant = &standing.facts.refrigerant;
+    if let Some(reason) = &cylinder.facts.scrapped {
+        let sentence = format!("Cylinder {name} is out of use: {reason}. It may be emptied, not filled.");
+        refusals.push(Refusal::firm(Kind::OutOfUse, sentence, "49 CFR 173.301(a)(2)"));
+    }
+    if cylinder.facts.kind == CylinderKind::NonRefillable {
+        let sentence = format!("Cylinder {name} is non-refillable and is never filled again.");
+        refusals.push(Refusal::firm(Kind::NotRefillable, sentence, NON_REFILLABLE));
+    }
+    if let Some(due) = cylinder.facts.requalify_by.filter(|due| day > *due) {
+        let sentence = format!("Cylinder {name} was to be requalified by {due}. It may be emptied, not filled.");
+        refusals.push(Refusal::firm(Kind::Overdue, sentence, OVERDUE));
+    }
+    let holds_some = cylinder.balance.content.mass().is_none_or(Mass::is_positive);
+    if cylinder.balance.is_mixed() && holds_some {
+        let sentence = format!("Cylinder {name} holds mixed gas: what is added to it cannot be used again.");
+        refusals.push(Refusal::judgement(Kind::MixedGas, sentence, "common practice"));
+    } else if let Some(gas) = cylinder.balance.gas.as_ref().filter(|gas| holds_some && !same_gas(gas, refrigerant)) {
+        let sentence = format!("Cylinder {name} holds {gas}; {refrigerant} on top would make a mix. Take another cylinder.");
+        refusals.push(Refusal::firm(Kind::OtherGas, sentence, "49 CFR 173.301(d); common practice"));
+    }
+    refusals.extend(below_tare(cylinder, gross_after));
+    match gas::find(refrigerant) {
+        None => refusals.push(unknown_gas(refrigerant)),
+        Some(gas) => {
+            let content = gross_after.map(|gross| gross - cylinder.facts.tare).or_else(|| cylinder.balance.content.mass().map(|held| held + net));
+            refusals.extend(of_limit(standing, cylinder, gas, content, oil_factor));
+        }
+    }
+    refusals
+}
+
+fn of_limit(
+    standing: &ApplianceStanding,
+    cylinder: &CylinderStanding,
+    gas: &gas::Gas,
+    content: Option<Mass>,
+    oil_factor: Ratio,
+) -> Vec<Refusal> {
+    let name = &cylinder.cylinder.name;
+    let mut refusals = Vec::new();
+    let limit = cylinder_limit(gas, &measured(standing, cylinder), oil_factor);
+    if let (Some(content), Some(binding)) = (content, &limit.binding)
+        && content > binding.net
+    {
+        let sentence = format!(
+            "Cylinder {name} would hold {} kg, over its limit of {} kg ({}). Stop before that; if it has happened, write why and empty it at once.",
+            content.kg_text(),
+            binding.net.kg_text(),
+            binding.kind.name(),
+        );
+        refusals.push(Refusal::judgement(Kind::OverLimit, sentence, binding.kind.basis()));
+    }
+    if let Rating::Judged { suffices: false, pressure, allowed, basis, at } = limit.rating {
+        let bar = |pressure: GaugePressure| crate::quantity::rounded_text(pressure.bar(), 1);
+        let sentence = format!(
+            "Cylinder {name} is not rated for {}: {} bar gauge at {at} °C, {} bar are allowed.",
+            gas.designation(),
+            bar(pressure),
+            bar(allowed),
+        );
+        refusals.push(Refusal::firm(Kind::NotRated, sentence, basis));
+    }
+    refusals
+}
+
+/// The cylinder as the limits are worked out from it.
+pub fn measured(standing: &ApplianceStanding, cylinder: &CylinderStanding) -> measure::Cylinder {
+    let facts = &cylinder.facts;
+    let number = |text: &Option<String>| text.as_ref().and_then(|text| parse_decimal(text).ok());
+    let united_states = standing.site_facts.rulebooks.iter().any(|id| id.starts_with("us-"));
+    measure::Cylinder {
+        water_capacity: number(&facts.water_capacity_l).and_then(Volume::from_litres),
+        tare: Some(facts.tare),
+        stamped_maximum: facts.stamped_maximum,
+        service_pressure: number(&facts.service_pressure_psig).map(GaugePressure::from_psi),
+        test_pressure: number(&facts.test_pressure_bar).map(|bar| GaugePressure::from_pascal(bar * Ratio::from_integer(100_000))),
+        law: if united_states { CylinderLaw::UnitedStates } else { CylinderLaw::Adr },
+    }
+}
+
+/// What holds for making recovered gas fit for use.
+pub fn of_recycling(cylinder: &CylinderStanding) -> Vec<Refusal> {
+    if cylinder.balance.status == Some(GasStatus::Recovered) {
+        return Vec::new();
+    }
+    let holds = cylinder.balance.status.map_or("nothing that was recovered".to_owned(), |status| format!("{status} gas"));
+    let sentence = format!("Cylinder {} holds {holds}; only recovered gas is recycled.", cylinder.cylinder.name);
+    vec![Refusal::firm(Kind::NothingToRecycle, sentence, "")]
+}
+
+/// A gross reading that differs from the last one known by more than both scales' error asks for its reason.
+pub fn of_gap(cylinder: &CylinderStanding, before: Mass, division: Mass, explained: bool) -> Option<Refusal> {
+    let gap = cylinder.gap(before, division).filter(|_| !explained)?;
+    let sentence = format!(
+        "Cylinder {} weighed {} kg when last known, now {} kg. Say why: used elsewhere, wrong weight, leaking cylinder, cap or hose, or do not know.",
+        cylinder.cylinder.name,
+        gap.known.gross.kg_text(),
+        before.kg_text(),
+    );
+    Some(Refusal::judgement(Kind::WeighingGap, sentence, ""))
+}
+
+fn below_tare(cylinder: &CylinderStanding, gross_after: Option<Mass>) -> Option<Refusal> {
+    let gross = gross_after.filter(|gross| *gross < cylinder.facts.tare)?;
+    let sentence = format!(
+        "{} kg is less than cylinder {} weighs empty, {} kg. Look at the reading and the tare.",
+        gross.kg_text(),
+        cylinder.cylinder.name,
+        cylinder.facts.tare.kg_text(),
+    );
+    Some(Refusal::firm(Kind::BelowTare, sentence, ""))
+}
+
+fn unknown_gas(name: &str) -> Refusal {
+    let like = gas::like(name);
+    let hint = if like.is_empty() { String::new() } else { format!(" Like it are: {}.", like.join(", ")) };
+    Refusal::firm(Kind::UnknownGas, format!("\u{201c}{name}\u{201d} is not in the gas catalogue.{hint}"), "")
+}
+
+/// Names of the catalogue are compared there, others as written.
+fn same_gas(a: &str, b: &str) -> bool {
+    match (gas::find(a), gas::find(b)) {
+        (Some(a), Some(b)) => a.designation() == b.designation(),
+        _ => a == b,
+    }
+}
+
+#[cfg(test)]
+pub(super) mod tests {
+    use super::*;
+    use crate::ledger::{
+        Appliance, ApplianceFacts, ApplianceId, Category, Content, Cylinder, CylinderBalance, CylinderFacts, CylinderId, RateMethod, Site,
+        SiteFacts, SiteId, Versions,
+    };
+    use crate::quantity::{MassUnit, Weighing};
+    use uuid::Uuid;
+
+    pub fn appliance_facts(refrigerant: &str) -> ApplianceFacts {
+        ApplianceFacts {
+            category: Category::CommercialRefrigeration,
+            refrigerant: refrigerant.to_owned(),
+            full_charge: Some(kg("45")),
+            full_charge_written: None,
+            charge_method: None,
+            installed_on: Some(day("2020-05-01")),
+            equipment: None,
+            assembly: String::new(),
+            description: String::new(),
+            serial: String::new(),
+            place: String::new(),
+            labelled_hermetically_sealed: false,
+            residential: false,
+            leakage_detection_system: false,
+            residential_or_light_commercial_ac: false,
+            product_below_minus_50c: false,
+            military: false,
+            room_volume_m3: None,
+        }
+    }
+
+    fn kg(text: &str) -> Mass {
+        Mass::parse(text, MassUnit::Kilogram).unwrap()
+    }
+
+    fn day(text: &str) -> NaiveDate {
+        text.parse().unwrap()
+    }
+
+    fn standing(rulebook: &str, gas: &str) -> ApplianceStanding {
+        let site_facts = SiteFacts {
+            rulebooks: vec![rulebook.to_owned()],
+            owner: "Harbour Fish Ltd".to_owned(),
+            operator: String::new(),
+            address: String::new(),
+            rate_method: RateMethod::Annualizing,
+            time_zone: String::new(),
+        };
+        let site = Site { id: SiteId(Uuid::nil()), name: "Quay".to_owned(), versions: Versions::always(site_facts.clone()) };
+        let facts = appliance_facts(gas);
+        let appliance =
+            Appliance { id: ApplianceId(Uuid::nil()), site: site.id, name: "R-1".to_owned(), versions: Versions::always(facts.clone()) };
+        ApplianceStanding { site, site_facts, appliance, facts, lines: Vec::new(), retired_on: None, mothballed_on: None }
+    }
+
+    fn cylinder(gas: Option<&str>, status: Option<GasStatus>, content: &str) -> CylinderStanding {
+        let facts = CylinderFacts {
+            kind: CylinderKind::Recovery,
+            tare: kg("10"),
+            tare_written: Weighing::new("10", MassUnit::Kilogram),
+            refrigerant: gas.map(str::to_owned),
+            gas_status: status,
+            gross: None,
+            gross_written: None,
+            water_capacity_l: Some("26.2".to_owned()),
+            stamped_maximum: None,
+            service_pressure_psig: Some("400".to_owned()),
+            test_pressure_bar: None,
+            requalify_by: None,
+            owner: String::new(),
+            gas_owner: String::new(),
+            location: String::new(),
+            gas_source: String::new(),
+            scrapped: None,
+        };
+        let cylinder = Cylinder { id: CylinderId(Uuid::nil()), name: "S-204".to_owned(), versions: Versions::always(facts.clone()) };
+        let balance = CylinderBalance { content: Content::Known(kg(content)), gas: gas.map(str::to_owned), status, last_gross: None };
+        CylinderStanding { cylinder, facts, balance, recovered_from: None }
+    }
+
+    fn kinds(refusals: Vec<Refusal>) -> Vec<(Kind, bool)> {
+        refusals.into_iter().map(|refusal| (refusal.kind, refusal.judgement)).collect()
+    }
+
+    fn charge(standing: &ApplianceStanding, cylinder: &CylinderStanding, net: &str) -> Vec<(Kind, bool)> {
+        kinds(of_charge(standing, Some(cylinder), ChargePurpose::Leak, kg(net), None, day("2026-06-01")))
+    }
+
+    fn recover(standing: &ApplianceStanding, cylinder: &CylinderStanding, net: &str) -> Vec<(Kind, bool)> {
+        kinds(of_recovery(standing, cylinder, kg(net), None, measure::default_oil_factor(), day("2026-06-01")))
+    }
+
+    #[test]
+    fn days_that_cannot_be_are_refused() {
+        let standing = ApplianceStanding { retired_on: Some(day("2026-04-01")), ..standing("us-82f", "R-22") };
+        let on = |act: &Act, text| kinds(of_entry(&standing, act, Moment { date: day(text), minute: None }, day("2026-06-01")));
+        let repair = Act::Repair { temporary: false };
+        assert_eq!(on(&repair, "2026-06-02"), [(Kind::InTheFuture, false), (Kind::Retired, false)]);
+        assert_eq!(on(&repair, "2020-04-30"), [(Kind::BeforeInstallation, false)]);
+        assert_eq!(on(&repair, "2026-04-01"), [(Kind::Retired, false)]);
+        assert_eq!(on(&repair, "2026-03-31"), []);
+        assert_eq!(on(&Act::ReportSent, "2026-05-01"), []);
+    }
+
+    #[test]
+    fn gas_that_does_not_belong_is_not_charged() {
+        let plant = standing("us-82f", "R-22");
+        assert_eq!(charge(&plant, &cylinder(Some("R-22"), Some(GasStatus::Virgin), "5"), "4"), []);
+        assert_eq!(charge(&plant, &cylinder(Some("r22"), Some(GasStatus::Virgin), "5"), "4"), []);
+        assert_eq!(charge(&plant, &cylinder(Some("R-410A"), Some(GasStatus::Virgin), "5"), "4"), [(Kind::OtherGas, false)]);
+        assert_eq!(charge(&plant, &cylinder(Some("R-22"), Some(GasStatus::Mixed), "5"), "4"), [(Kind::MixedGas, false)]);
+        assert_eq!(charge(&plant, &cylinder(None, None, "0"), "4"), [(Kind::OtherGas, false), (Kind::MoreThanHeld, true)]);
+    }
+
+    #[test]
+    fn recovered_gas_goes_back_to_its_owner_in_the_united_states() {
+        let plant = standing("us-82f", "R-22");
+        let mut recovered = cylinder(Some("R-22"), Some(GasStatus::Recovered), "5");
+        assert_eq!(charge(&plant, &recovered, "4"), [(Kind::RecoveredGas, true)]);
+        recovered.recovered_from = Some("harbour fish ltd".to_owned());
+        assert_eq!(charge(&plant, &recovered, "4"), []);
+        recovered.facts.gas_owner = "Ice Rink Trust".to_owned();
+        assert_eq!(charge(&plant, &recovered, "4"), [(Kind::RecoveredGas, false)]);
+        let back = of_charge(&plant, Some(&recovered), ChargePurpose::Returned, kg("4"), None, day("2026-06-01"));
+        assert_eq!(back, []);
+    }
+
+    #[test]
+    fn recovered_gas_is_recycled_first_in_the_union() {
+        let plant = standing("eu-573", "R-410A");
+        assert_eq!(charge(&plant, &cylinder(Some("R-410A"), Some(GasStatus::Recovered), "5"), "4"), [(Kind::RecoveredGas, false)]);
+        assert_eq!(charge(&plant, &cylinder(Some("R-410A"), Some(GasStatus::Recycled), "5"), "4"), []);
+    }
+
+    #[test]
+    fn service_bans_reach_the_charge() {
+        assert_eq!(charge(&standing("eu-590", "R-22"), &cylinder(Some("R-22"), Some(GasStatus::Reclaimed), "5"), "4"), [(Kind::ServiceBan, false)]);
+        assert_eq!(charge(&standing("eu-573", "R-404A"), &cylinder(Some("R-404A"), None, "5"), "4"), [(Kind::ServiceBan, false)]);
+    }
+
+    #[test]
+    fn masses_that_cannot_be_are_refused() {
+        let plant = standing("us-82f", "R-22");
+        let bottle = cylinder(Some("R-22"), Some(GasStatus::Virgin), "60");
+        assert_eq!(charge(&plant, &bottle, "45.001"), [(Kind::MoreThanFull, true)]);
+        assert_eq!(charge(&plant, &cylinder(Some("R-22"), Some(GasStatus::Virgin), "3"), "4"), [(Kind::MoreThanHeld, true)]);
+        let below = of_charge(&plant, Some(&bottle), ChargePurpose::Leak, kg("4"), Some(kg("9.99")), day("2026-06-01"));
+        assert_eq!(kinds(below), [(Kind::BelowTare, false)]);
+    }
+
+    #[test]
+    fn a_cylinder_that_is_not_to_be_filled_is_not() {
+        let plant = standing("us-82f", "R-410A");
+        let good = cylinder(Some("R-410A"), Some(GasStatus::Recovered), "2");
+        assert_eq!(recover(&plant, &good, "4"), []);
+        let with = |change: &dyn Fn(&mut CylinderStanding)| {
+            let mut changed = good.clone();
+            change(&mut changed);
+            recover(&plant, &changed, "4")
+        };
+        assert_eq!(with(&|c| c.facts.requalify_by = Some(day("2026-05-31"))), [(Kind::Overdue, false)]);
+        assert_eq!(with(&|c| c.facts.requalify_by = Some(day("2026-06-01"))), []);
+        assert_eq!(with(&|c| c.facts.kind = CylinderKind::NonRefillable), [(Kind::NotRefillable, false)]);
+        assert_eq!(with(&|c| c.facts.scrapped = Some("valve bent".to_owned())), [(Kind::OutOfUse, false)]);
+        assert_eq!(with(&|c| c.balance.gas = Some("R-22".to_owned())), [(Kind::OtherGas, false)]);
+        assert_eq!(with(&|c| c.balance.status = Some(GasStatus::Mixed)), [(Kind::MixedGas, true)]);
+        // 49 CFR 173.301(a)(8): R-410A reaches 484 psig at 55 °C; 350 psig allow 437.5.
+        assert_eq!(with(&|c| c.facts.service_pressure_psig = Some("350".to_owned())), [(Kind::NotRated, false)]);
+        // 0.8 × 1.0589 kg/l × 26.2 l × 0.9 = 19.97 kg.
+        assert_eq!(recover(&plant, &good, "17.9"), []);
+        assert_eq!(recover(&plant, &good, "18.1"), [(Kind::OverLimit, true)]);
+    }
+
+    #[test]
+    fn only_recovered_gas_is_recycled() {
+        assert_eq!(kinds(of_recycling(&cylinder(Some("R-22"), Some(GasStatus::Recovered), "5"))), []);
+        assert_eq!(kinds(of_recycling(&cylinder(Some("R-22"), Some(GasStatus::Virgin), "5"))), [(Kind::NothingToRecycle, false)]);
+    }
+
+    #[test]
+    fn a_weighing_gap_asks_why() {
+        use crate::ledger::KnownGross;
+        let mut bottle = cylinder(Some("R-22"), Some(GasStatus::Virgin), "5");
+        bottle.balance.last_gross = Some(KnownGross { gross: kg("15"), at: None, read: true, division: Some(kg("0.01")) });
+        // Error of two readings of 0.01 kg: 2 √2 × 0.01/√12 = 0.0082 kg.
+        assert!(of_gap(&bottle, kg("14.992"), kg("0.01"), false).is_none());
+        assert!(of_gap(&bottle, kg("14.99"), kg("0.01"), false).is_some());
+        assert!(of_gap(&bottle, kg("14.99"), kg("0.01"), true).is_none());
+    }
+}
