@@ -136,3 +136,10 @@ words! {
         Part = "part",
     }
 }
+
+impl ChargePurpose {
+    /// Gas recovered for a repair in the same work is used up by these.
+    pub const fn nets_recovered(self) -> bool {
+        matches!(self, Self::Leak | Self::SameLeak | Self::Returned | Self::Replacement)
+    }
+}
