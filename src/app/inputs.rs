@@ -135,6 +135,20 @@ pub enum NewEntry {
 }
 
 impl NewEntry {
+    /// The action of a visit that this comes from; the key of its draft.
+    pub fn action(&self) -> &'static str {
+        match self {
+            Self::Charge(_) => "charge",
+            Self::Recover(_) => "recover",
+            Self::Recycle(_) => "recycle",
+            Self::Test(_) => "leak test",
+            Self::Repair(_) => "repair",
+            Self::Retrofit(_) => "retrofit",
+            Self::Pressure(_) => "pressure",
+            Self::Simple(_, _) => "note",
+        }
+    }
+
     pub fn common(&self) -> &Common {
         match self {
             Self::Charge(input) => &input.common,

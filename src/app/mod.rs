@@ -11,19 +11,21 @@ mod error;
 mod inputs;
 mod refusals;
 mod service_bans;
+mod service_record;
 mod standing;
 pub mod testing;
 mod visits;
+mod weighing;
 
 pub use clock::{Clock, FreshIds, IdSource, SystemClock};
-pub use closing::{ClosingInput, CounterpartInput};
+pub use closing::Correction;
 pub use edits::{NewAppliance, NewSite};
-pub use entries::{Correction, Prepared};
+pub use entries::Prepared;
 pub use error::AppError;
 pub use inputs::{
     ChargeInput, Common, NewEntry, PressureInput, RecoverInput, RecycleInput, RepairInput, RetrofitInput, SimpleAct, TestInput,
 };
-pub use refusals::{Kind, Refusal};
+pub use refusals::{Kind, Refusal, measured};
 pub use service_bans::{ServiceBan, service_bans};
 pub use standing::{ApplianceStanding, CylinderStanding, WeighingGap};
 pub use visits::OpenVisit;

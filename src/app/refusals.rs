@@ -115,8 +115,7 @@ pub fn of_charge(
         refusals.push(unknown_gas(&facts.refrigerant));
     }
     if let Some(full) = facts.full_charge.filter(|full| net > *full) {
-        let sentence =
-            format!("{} kg is more than the full charge of {}, {} kg.", net.kg_text(), standing.appliance.name, full.kg_text());
+        let sentence = format!("{} kg is more than the full charge of {}, {} kg.", net.kg_text(), standing.appliance.name, full.kg_text());
         refusals.push(Refusal::judgement(Kind::MoreThanFull, sentence, ""));
     }
     let Some(cylinder) = cylinder else { return refusals };
@@ -172,7 +171,8 @@ fn recovered_gas(standing: &ApplianceStanding, cylinder: &CylinderStanding, purp
             );
             return Some(Refusal::judgement(Kind::RecoveredGas, sentence, SAME_OWNER));
         }
-        let sentence = format!("Cylinder {name} holds gas recovered from {gas_owner}; it is not charged for {owner} before it is reclaimed.");
+        let sentence =
+            format!("Cylinder {name} holds gas recovered from {gas_owner}; it is not charged for {owner} before it is reclaimed.");
         return Some(Refusal::firm(Kind::RecoveredGas, sentence, SAME_OWNER));
     }
     let sentence = format!("Cylinder {name} holds recovered gas. Make sure that the law here lets it be charged.");
@@ -215,7 +215,8 @@ pub fn of_recovery(
     match gas::find(refrigerant) {
         None => refusals.push(unknown_gas(refrigerant)),
         Some(gas) => {
-            let content = gross_after.map(|gross| gross - cylinder.facts.tare).or_else(|| cylinder.balance.content.mass().map(|held| held + net));
+            let content =
+                gross_after.map(|gross| gross - cylinder.facts.tare).or_else(|| cylinder.balance.content.mass().map(|held| held + net));
             refusals.extend(of_limit(standing, cylinder, gas, content, oil_factor));
         }
     }
@@ -456,7 +457,10 @@ pub(super) mod tests {
 
     #[test]
     fn service_bans_reach_the_charge() {
-        assert_eq!(charge(&standing("eu-590", "R-22"), &cylinder(Some("R-22"), Some(GasStatus::Reclaimed), "5"), "4"), [(Kind::ServiceBan, false)]);
+        assert_eq!(
+            charge(&standing("eu-590", "R-22"), &cylinder(Some("R-22"), Some(GasStatus::Reclaimed), "5"), "4"),
+            [(Kind::ServiceBan, false)]
+        );
         assert_eq!(charge(&standing("eu-573", "R-404A"), &cylinder(Some("R-404A"), None, "5"), "4"), [(Kind::ServiceBan, false)]);
     }
 

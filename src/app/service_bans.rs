@@ -226,7 +226,13 @@ impl EquipmentTest {
 /// The rows that forbid charging this gas, in this state, into this appliance
 /// on this day at a site under these rulebooks. An unknown gas is forbidden
 /// by none. A gas of unknown status is passed as virgin.
-pub fn service_bans(rulebooks: &[String], facts: &ApplianceFacts, refrigerant: &str, status: GasStatus, day: NaiveDate) -> Vec<&'static ServiceBan> {
+pub fn service_bans(
+    rulebooks: &[String],
+    facts: &ApplianceFacts,
+    refrigerant: &str,
+    status: GasStatus,
+    day: NaiveDate,
+) -> Vec<&'static ServiceBan> {
     let Some(gas) = gas::find(refrigerant) else { return Vec::new() };
     ROWS.iter().filter(|row| rulebooks.iter().any(|id| id == row.rulebook) && row.forbids_on(day, gas, status, facts)).collect()
 }

@@ -63,7 +63,7 @@ impl App {
     /// # Errors
     /// Unknown appliance; the store's own.
     pub fn appliance_standing(&self, appliance: ApplianceId, on: NaiveDate) -> Result<ApplianceStanding, AppError> {
-        appliance_standing(&self.store, appliance, on)
+        appliance_standing(&self.store, appliance, on, None)
     }
 
     /// What holds for a cylinder on a day.
@@ -71,7 +71,7 @@ impl App {
     /// # Errors
     /// Unknown cylinder; the store's own.
     pub fn cylinder_standing(&self, cylinder: CylinderId, on: NaiveDate) -> Result<CylinderStanding, AppError> {
-        cylinder_standing(&self.store, cylinder, on)
+        cylinder_standing(&self.store, cylinder, on, None)
     }
 
     /// Every cylinder on a day, in order of identification.
@@ -93,10 +93,17 @@ impl App {
     }
 }
 
-pub(super) fn appliance_standing(store: &Store, appliance: ApplianceId, on: NaiveDate) -> Result<ApplianceStanding, AppError> {
+/// `without` leaves out an entry that is about to be corrected; likewise below.
+pub(super) fn appliance_standing(
+    store: &Store,
+    appliance: ApplianceId,
+    on: NaiveDate,
+    without: Option<EntryId>,
+) -> Result<ApplianceStanding, AppError> {
     let appliance = store.appliance(appliance)?.ok_or(AppError::Unknown { what: "appliance" })?;
     let site = store.site(appliance.site)?.ok_or(AppError::Unknown { what: "site" })?;
-    let lines = store.lines_of(appliance.id)?;
+    let mut lines = store.lines_of(appliance.id)?;
+    lines.retain(|line| Some(line.entry) != without);
     let history = History::new(&appliance, &lines, on);
     // Before the first version, the first version is the best there is.
     let facts = history.facts_on(on).unwrap_or_else(|| &appliance.versions.first().facts).clone();
@@ -108,9 +115,15 @@ pub(super) fn appliance_standing(store: &Store, appliance: ApplianceId, on: Naiv
     Ok(ApplianceStanding { site_facts, facts, retired_on, mothballed_on, site, appliance, lines })
 }
 
-pub(super) fn cylinder_standing(store: &Store, cylinder: CylinderId, on: NaiveDate) -> Result<CylinderStanding, AppError> {
+pub(super) fn cylinder_standing(
+    store: &Store,
+    cylinder: CylinderId,
+    on: NaiveDate,
+    without: Option<EntryId>,
+) -> Result<CylinderStanding, AppError> {
     let cylinder = store.cylinder(cylinder)?.ok_or(AppError::Unknown { what: "cylinder" })?;
-    let movements = store.movements_of(cylinder.id)?;
+    let mut movements = store.movements_of(cylinder.id)?;
+    movements.retain(|movement| Some(movement.entry) != without);
     let mut registers = Registers::default();
     let mut lines = Vec::new();
     for id in filled_from(&movements) {

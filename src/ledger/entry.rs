@@ -230,6 +230,14 @@ impl Act {
         }
     }
 
+    /// The cylinder that gas came from or went into.
+    pub fn cylinder(&self) -> Option<CylinderId> {
+        match self {
+            Self::Recycle { cylinder } => *cylinder,
+            other => other.transfer().and_then(|transfer| transfer.cylinder),
+        }
+    }
+
     /// The mass moved, for charges and recoveries.
     pub fn transfer(&self) -> Option<&Transfer> {
         match self {

@@ -3,6 +3,7 @@
 
 mod balance;
 mod entry;
+mod leaks;
 mod register;
 mod registers;
 mod visit;
@@ -10,6 +11,7 @@ mod words;
 
 pub use balance::{ApplianceTotals, Content, CylinderBalance, KnownGross, Movement, MovementKind, appliance_totals, cylinder_balance};
 pub use entry::{Act, CautionSeen, Detail, Entry, LeakPlace, Line, Moment, Position, Reading, Transfer, WeighingMode};
+pub use leaks::{OpenLeak, open_leaks};
 pub use register::{
     Appliance, ApplianceFacts, Company, Cylinder, CylinderFacts, Dated, Instrument, InstrumentKind, Person, Site, SiteFacts, Versions,
 };

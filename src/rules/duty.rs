@@ -158,17 +158,14 @@ impl DutySource<'_> {
         let history = self.history;
         let start = history.first_charge_of_chain(rate.charge).unwrap_or(rate.charge);
         let before = history.last_charge_before(start);
-        let jobs: Vec<&str> =
-            history.chain(rate.charge).flat_map(|work| work.lines.iter()).filter_map(|&line| history.job(line)).collect();
+        let jobs: Vec<&str> = history.chain(rate.charge).flat_map(|work| work.lines.iter()).filter_map(|&line| history.job(line)).collect();
         let earliest = rate.on.checked_sub_days(Days::new(30)).unwrap_or(NaiveDate::MIN);
         let repair = history.first_after(before, |line| {
-            history.is_lasting_repair(line)
-                && (history.date(line) >= earliest || history.job(line).is_some_and(|job| jobs.contains(&job)))
+            history.is_lasting_repair(line) && (history.date(line) >= earliest || history.job(line).is_some_and(|job| jobs.contains(&job)))
         });
         let initial = repair.and_then(|repair| history.first_after(Some(repair), |line| history.is_passed_initial_test(line)));
-        let follow_up = initial.and_then(|initial| {
-            history.first_after(Some(initial.max(rate.charge)), |line| history.is_follow_up_that_counts(line))
-        });
+        let follow_up =
+            initial.and_then(|initial| history.first_after(Some(initial.max(rate.charge)), |line| history.is_follow_up_that_counts(line)));
         Answer { repair, initial, follow_up }
     }
 
@@ -250,9 +247,10 @@ impl DutySource<'_> {
             );
             series.push(duty);
             // Calendar years end by twelve months without a rate over.
-            let over = self.rates.iter().any(|other| {
-                other.verdict == Verdict::Over && other.charge > rate.charge && other.on > begin && other.on <= end
-            });
+            let over = self
+                .rates
+                .iter()
+                .any(|other| other.verdict == Verdict::Over && other.charge > rate.charge && other.on > begin && other.on <= end);
             clean = if over { 0 } else { clean + 1 };
             if row.calendar_year {
                 let last_over = self
@@ -284,7 +282,10 @@ impl DutySource<'_> {
         let history = self.history;
         let Some(row) = self.row(DutyKind::Plan, facts, rate.on) else { return };
         let mut duty = self.duty(row, rate.on, Some(rate.charge), Some(after_days(rate.on, row.days)));
-        duty.meet(history, history.first_after(None, |line| matches!(history.lines[line].act, Act::PlanMade) && history.date(line) >= rate.on));
+        duty.meet(
+            history,
+            history.first_after(None, |line| matches!(history.lines[line].act, Act::PlanMade) && history.date(line) >= rate.on),
+        );
         self.suspend(&mut duty);
         if self.over_again(index, rate, row) {
             duties.push(duty);

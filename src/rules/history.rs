@@ -313,21 +313,21 @@ fn facts_over_time(appliance: &Appliance, lines: &[&Line]) -> Vec<(NaiveDate, Op
         .all()
         .iter()
         .map(|version| (version.from.unwrap_or(NaiveDate::MIN), None, Some(&version.facts)))
-        .chain(lines.iter().enumerate().filter_map(|(index, line)| {
-            matches!(line.act, Act::Retrofit { .. }).then_some((line.at.date, Some(index), None))
-        }))
+        .chain(
+            lines
+                .iter()
+                .enumerate()
+                .filter_map(|(index, line)| matches!(line.act, Act::Retrofit { .. }).then_some((line.at.date, Some(index), None))),
+        )
         .collect();
     changes.sort_by_key(|(day, line, _)| (*day, *line));
     let mut timeline: Vec<(NaiveDate, Option<usize>, ApplianceFacts)> = Vec::with_capacity(changes.len());
     for (day, line, version) in changes {
         let facts = match (version, line.map(|index| &lines[index].act), timeline.last()) {
             (Some(version), _, _) => version.clone(),
-            (None, Some(Act::Retrofit { refrigerant, full_charge }), Some((_, _, before))) => ApplianceFacts {
-                refrigerant: refrigerant.clone(),
-                full_charge: *full_charge,
-                full_charge_written: None,
-                ..before.clone()
-            },
+            (None, Some(Act::Retrofit { refrigerant, full_charge }), Some((_, _, before))) => {
+                ApplianceFacts { refrigerant: refrigerant.clone(), full_charge: *full_charge, full_charge_written: None, ..before.clone() }
+            }
             _ => continue,
         };
         timeline.push((day, line, facts));

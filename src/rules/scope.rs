@@ -49,9 +49,11 @@ pub fn applicability(book: &Rulebook, facts: &ApplianceFacts, day: NaiveDate) ->
         return no(format!("{} ({})", exemption.why, exemption.source));
     }
     match strictest_band(book, facts, day) {
-        Some(band) => {
-            Applicability { applies: true, why: format!("{}: {} ({})", row.why, measured(band, gas, facts, book), band.source), until: row.validity.to }
-        }
+        Some(band) => Applicability {
+            applies: true,
+            why: format!("{}: {} ({})", row.why, measured(band, gas, facts, book), band.source),
+            until: row.validity.to,
+        },
         None if facts.full_charge.is_none() => no("full charge not determined".to_owned()),
         None => {
             let first = book.bands.first();
@@ -69,9 +71,8 @@ pub fn strictest_band<'b>(book: &'b Rulebook, facts: &ApplianceFacts, day: Naive
         .iter()
         .filter(|band| band.validity.holds_on(day))
         .filter(|band| {
-            amount(band.basis, gas, facts, book).is_some_and(|amount| {
-                band.at_least.is_none_or(|least| amount >= least) && band.over.is_none_or(|over| amount > over)
-            })
+            amount(band.basis, gas, facts, book)
+                .is_some_and(|amount| band.at_least.is_none_or(|least| amount >= least) && band.over.is_none_or(|over| amount > over))
         })
         .min_by_key(|band| months(band, facts))
 }

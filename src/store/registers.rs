@@ -31,6 +31,14 @@ impl Store {
         })
     }
 
+    /// The company with all its versions; `None` until someone has written it down.
+    ///
+    /// # Errors
+    /// The store's own.
+    pub fn company_versions(&self) -> Result<Option<Versions<Company>>, StoreError> {
+        self.read(company)
+    }
+
     /// One site, without reading the others; likewise below.
     ///
     /// # Errors

@@ -1,0 +1,190 @@
+//! One entry as a record says it.
+
+use super::{instrument_text, wording};
+use crate::ledger::{Act, ApplianceFacts, Detail, Entry, EntryId, LeakPlace, Registers, Scope, TestKind, Transfer, WeighingMode};
+use crate::measure::Uncertainty;
+use crate::quantity::{Mass, Weighing};
+use crate::record::{EntryFacts, Fingerprint, RepairFacts, TestFacts, TransferFacts, Way, Work};
+use std::collections::HashMap;
+
+/// Where names are looked up.
+pub struct Names<'a> {
+    pub registers: &'a Registers,
+    /// All entries on the appliance.
+    pub all: &'a [Entry],
+    pub facts: &'a ApplianceFacts,
+    /// Tests that do not count as what they are named, and why.
+    pub history: &'a HashMap<EntryId, String>,
+}
+
+/// `struck_by` is the entry that strikes this one, `mends` the closed one
+/// that this one corrects, with the fingerprint of its record.
+pub fn facts(
+    entry: &Entry,
+    struck_by: Option<&Entry>,
+    mends: Option<&Entry>,
+    mended_record: Option<String>,
+    names: &Names<'_>,
+) -> EntryFacts {
+    let detail = &entry.detail;
+    let person = detail.person.and_then(|id| names.registers.person(id)).map(|person| person.name.clone());
+    let struck_because = struck_by.map(|by| {
+        let reason = if by.detail.reason.is_empty() { "no reason was given" } else { &by.detail.reason };
+        format!("struck {}: {reason}", wording::at(by.line.at.date, by.line.at.minute))
+    });
+    let corrects = mends.map(|wrong| {
+        let record = mended_record.map(|full| format!(", record {}", Fingerprint { full }.short())).unwrap_or_default();
+        format!("{}{record}: {}", wording::entry_name(wrong), detail.reason)
+    });
+    EntryFacts {
+        on: entry.line.at.date,
+        at: wording::clock(entry.line.at.minute),
+        person: person.unwrap_or_default(),
+        job: entry.line.job.as_deref().unwrap_or_default().to_owned(),
+        work: work(entry, names),
+        parts: detail.parts.clone(),
+        note: note(entry),
+        reason: if corrects.is_some() { String::new() } else { detail.reason.clone() },
+        corrects: corrects.unwrap_or_default(),
+        struck: struck_by.is_some(),
+        struck_because: struck_because.unwrap_or_default(),
+        imported_from: detail.imported_from.clone(),
+    }
+}
+
+/// A repair's note is what was done, and stands there.
+fn note(entry: &Entry) -> String {
+    if matches!(entry.line.act, Act::Repair { .. }) { String::new() } else { entry.detail.note.clone() }
+}
+
+fn work(entry: &Entry, names: &Names<'_>) -> Work {
+    let detail = &entry.detail;
+    match &entry.line.act {
+        Act::Charge { purpose, transfer } => Work::Transfer(Box::new(moved(entry, Way::Charge, purpose.name(), transfer, names))),
+        Act::Recover { purpose, transfer } => Work::Transfer(Box::new(moved(entry, Way::Recover, purpose.name(), transfer, names))),
+        Act::Test { kind, result, scope, .. } => Work::Test(Box::new(TestFacts {
+            kind: kind.name().to_owned(),
+            method: detail.method.clone(),
+            direct: direct(&detail.method),
+            scope: match scope {
+                Some(Scope::Whole) => "whole appliance".to_owned(),
+                Some(Scope::Part) => "part".to_owned(),
+                None => String::new(),
+            },
+            instrument: instrument(detail, names),
+            place: detail.place.clone(),
+            result: result.map(|result| result.name().to_owned()).unwrap_or_default(),
+            leaks: detail.leaks.iter().map(leak).collect(),
+            running_hours: if detail.running_hours.is_empty() { String::new() } else { format!("{} h", detail.running_hours) },
+            of_repair: detail
+                .repair
+                .and_then(|id| names.all.iter().find(|entry| entry.line.entry == id))
+                .map(wording::entry_name)
+                .unwrap_or_default(),
+            certification: certification(*kind, *scope),
+            does_not_count: names.history.get(&entry.line.entry).cloned().unwrap_or_default(),
+        })),
+        Act::Repair { temporary } => {
+            Work::Repair(RepairFacts { place: detail.place.clone(), done: detail.note.clone(), temporary: *temporary })
+        }
+        Act::Retrofit { refrigerant, full_charge } => {
+            let charge = match (&detail.new_full_charge, full_charge) {
+                (Some(written), _) => written.text(),
+                (None, Some(charge)) => format!("{} kg", charge.kg_text()),
+                (None, None) => "to complete".to_owned(),
+            };
+            other(entry, format!("Now {refrigerant}, full charge {charge}."), String::new())
+        }
+        Act::Recycle { cylinder } => {
+            let cylinder = cylinder.and_then(|id| names.registers.cylinder(id)).map(|cylinder| format!("Cylinder {}", cylinder.name));
+            let text = [cylinder, Some(detail.method.clone()), Some(instrument(detail, names))];
+            let text = text.into_iter().flatten().filter(|text| !text.is_empty()).collect::<Vec<_>>().join(", ");
+            other(entry, text, String::new())
+        }
+        _ => other(entry, detail.method.clone(), detail.level_reached.clone()),
+    }
+}
+
+fn other(entry: &Entry, text: String, figure: String) -> Work {
+    Work::Other { name: entry.line.act.name().to_owned(), text, figure }
+}
+
+fn moved(entry: &Entry, way: Way, purpose: &str, transfer: &Transfer, names: &Names<'_>) -> TransferFacts {
+    let detail = &entry.detail;
+    let unit = wording::unit_of(entry);
+    let reading = detail.reading.as_ref();
+    let written = |weighing: Option<&Weighing>| weighing.map(Weighing::text).unwrap_or_default();
+    let cylinder = transfer.cylinder.and_then(|id| names.registers.cylinder(id));
+    let division = transfer.division.map(|division| format!("division {}", wording::mass(division, unit)));
+    let scale = reading.and_then(|reading| reading.scale).and_then(|id| names.registers.instrument(id));
+    let scale = scale.map_or_else(|| division.clone().unwrap_or_default(), |scale| instrument_text(scale, division.clone()));
+    let hoses = match (transfer.hoses.is_positive(), reading.is_some_and(|reading| reading.mode != WeighingMode::NetOnly)) {
+        (true, _) => format!("hoses up to {}", wording::mass(transfer.hoses, unit)),
+        (false, true) => "hoses emptied".to_owned(),
+        (false, false) => String::new(),
+    };
+    let fill = match (way, &detail.short_by, reading) {
+        (Way::Charge, Some(short), _) => format!("short by about {}", short.text()),
+        (Way::Charge, None, Some(reading)) if reading.mode != WeighingMode::NetOnly => "to full charge".to_owned(),
+        _ => String::new(),
+    };
+    TransferFacts {
+        way,
+        refrigerant: names.facts.refrigerant.clone(),
+        purpose: purpose.to_owned(),
+        cylinder: cylinder.map(|cylinder| cylinder.name.clone()).unwrap_or_default(),
+        gas_status: detail.gas_status.map(|status| status.name().to_owned()).unwrap_or_default(),
+        gas_source: detail.gas_source.clone(),
+        phase: detail.phase.clone(),
+        weighing: reading.map_or(WeighingMode::NetOnly, |reading| reading.mode),
+        before: written(reading.and_then(|reading| reading.before.as_ref())),
+        after: written(reading.and_then(|reading| reading.after.as_ref())),
+        scale,
+        net: wording::mass(transfer.mass, unit),
+        net_mass: transfer.mass,
+        error: transfer.division.map(|division| error(division, transfer.hoses)).unwrap_or_default(),
+        hoses,
+        fill,
+        level_required: String::new(),
+        level_reached: detail.level_reached.clone(),
+        weighing_gap: detail.weighing_gap.clone(),
+    }
+}
+
+/// `± 0.008 kg`, k = 2.
+fn error(division: Mass, hoses: Mass) -> String {
+    format!("± {} kg", Uncertainty::of_net(division, hoses).expanded_kg_text(3))
+}
+
+fn instrument(detail: &Detail, names: &Names<'_>) -> String {
+    let found = detail.instrument.and_then(|id| names.registers.instrument(id));
+    let checked = |checked: chrono::NaiveDate| format!("checked {}", wording::day(checked));
+    found.map(|instrument| instrument_text(instrument, instrument.checked_on.map(checked))).unwrap_or_default()
+}
+
+fn leak(leak: &LeakPlace) -> String {
+    if leak.state.is_empty() { leak.place.clone() } else { format!("{}: {}", leak.place, leak.state) }
+}
+
+/// Methods that show the place of a leak (Regulation (EC) No 1516/2007 Art. 6);
+/// those that only show its effects are indirect (Art. 7).
+fn direct(method: &str) -> Option<bool> {
+    let method = method.to_lowercase();
+    let any = |words: &[&str]| words.iter().any(|word| method.contains(word));
+    if any(&["detector", "soap", "bubble", "ultraviolet", "uv", "sniff", "tracer"]) {
+        Some(true)
+    } else if any(&["pressure", "vacuum", "indirect", "sight glass", "temperature", "current"]) {
+        Some(false)
+    } else {
+        None
+    }
+}
+
+/// 40 CFR 82.157(l)(3)(iv), 84.106(l)(5): a leak inspection certifies its reach.
+fn certification(kind: TestKind, scope: Option<Scope>) -> String {
+    if kind == TestKind::LeakInspection && scope == Some(Scope::Whole) {
+        "All visible and accessible parts were inspected.".to_owned()
+    } else {
+        String::new()
+    }
+}

@@ -1,0 +1,271 @@
+//! What the rules make of an appliance, as a record says it.
+
+use super::wording;
+use crate::gas::{self, Weighting};
+use crate::ledger::{Act, Appliance, ApplianceFacts, ChargePurpose, Entry, EntryId, Line, RateMethod, Site, TestKind};
+use crate::quantity::{Mass, MassUnit, Ratio, decimal_text, parse_decimal, rounded_text};
+use crate::record::{DutyFacts, DutyStep, LeakRate, NoRate, Notice, RateInput, Verdict, WeightedAmount};
+use crate::rules::{self, Assessment, Duty, DutyState, Judgement, assess, loss_entries};
+use chrono::NaiveDate;
+use std::collections::{HashMap, HashSet};
+
+/// What [`judge`] finds.
+#[derive(Default)]
+pub struct Judged {
+    /// In force on the last day; `None` where nothing holds then.
+    pub facts: Option<ApplianceFacts>,
+    pub leak_rates: Vec<LeakRate>,
+    pub no_rates: Vec<NoRate>,
+    pub duties: Vec<DutyFacts>,
+    pub amounts: Vec<WeightedAmount>,
+    pub readings: Vec<Notice>,
+    pub does_not_count: HashMap<EntryId, String>,
+}
+
+const ODP_TABLE: &str = "Montreal Protocol, annexes A to E, by composition";
+
+/// Judges an appliance as of the visit's last day. `own` are the visit's entries on it.
+pub fn judge(site: &Site, appliance: &Appliance, lines: &[Line], own: &[&Entry], last_day: NaiveDate) -> Judged {
+    let Some(assessment) = assess(site, appliance, lines, last_day) else { return Judged::default() };
+    let here: HashSet<EntryId> = own.iter().filter(|entry| entry.struck_by.is_none()).map(|entry| entry.line.entry).collect();
+    let sight = Sight { unit: unit(own, &assessment.facts), assessment: &assessment, here };
+    Judged {
+        leak_rates: sight.leak_rates(),
+        no_rates: sight.no_rates(),
+        duties: sight.duties(),
+        amounts: sight.amounts(),
+        readings: sight.readings(),
+        does_not_count: sight.tests_that_do_not_count(),
+        facts: Some(assessment.facts.clone()),
+    }
+}
+
+/// The record speaks in the unit of its first weighing, else of the full charge.
+fn unit(own: &[&Entry], facts: &ApplianceFacts) -> MassUnit {
+    let weighed = own.iter().find(|entry| entry.line.act.transfer().is_some()).map(|entry| wording::unit_of(entry));
+    weighed.or_else(|| facts.full_charge_written.as_ref().map(|written| written.unit)).unwrap_or(MassUnit::Kilogram)
+}
+
+struct Sight<'a> {
+    assessment: &'a Assessment<'a>,
+    here: HashSet<EntryId>,
+    unit: MassUnit,
+}
+
+impl Sight<'_> {
+    fn is_here(&self, line: usize) -> bool {
+        self.assessment.history.lines.get(line).is_some_and(|line| self.here.contains(&line.entry))
+    }
+
+    fn mass(&self, mass: Mass) -> String {
+        wording::mass(mass, self.unit)
+    }
+
+    /// The rates that this visit's additions asked for; where there was none, the latest.
+    fn leak_rates(&self) -> Vec<LeakRate> {
+        let mut found = Vec::new();
+        for judgement in &self.assessment.rulebooks {
+            let own: Vec<&rules::LeakRate> = judgement.rates.iter().filter(|rate| self.is_here(rate.charge)).collect();
+            let chosen = if own.is_empty() { judgement.rate().into_iter().collect() } else { own };
+            found.extend(chosen.into_iter().map(|rate| self.leak_rate(judgement, rate)));
+        }
+        found
+    }
+
+    fn leak_rate(&self, judgement: &Judgement, rate: &rules::LeakRate) -> LeakRate {
+        let since = rate.window_from.map(|from| format!("from {} to {}", wording::day(from), wording::day(rate.on)));
+        let mut inputs = vec![
+            RateInput { caption: "added".to_owned(), value: self.mass(rate.added), from: since.unwrap_or_default() },
+            RateInput { caption: "full charge".to_owned(), value: self.mass(rate.full_charge), from: String::new() },
+        ];
+        if let Some(days) = rate.days {
+            inputs.push(RateInput { caption: "days".to_owned(), value: days.to_string(), from: rate.notes.join("; ") });
+        }
+        LeakRate {
+            source: rate.source.clone(),
+            applies_because: judgement.why.clone(),
+            on: rate.on,
+            method: rate.method,
+            percent: rate.percent,
+            trigger: rate.trigger,
+            trigger_source: rate.trigger_source.clone(),
+            band: rate.error.as_ref().and_then(|band| parse_decimal(&band.percent).ok()),
+            verdict: match rate.verdict {
+                rules::Verdict::Under => Verdict::Under,
+                rules::Verdict::At => Verdict::At,
+                rules::Verdict::Over => Verdict::Over,
+            },
+            within_weighing_error: rate.error.as_ref().is_some_and(|band| band.holds_trigger),
+            working: self.working(rate),
+            inputs,
+        }
+    }
+
+    fn working(&self, rate: &rules::LeakRate) -> String {
+        let sum = format!("{} ÷ {}", self.mass(rate.added), self.mass(rate.full_charge));
+        let per_year = rate.days.map(|days| format!(" × 365 ÷ {days}")).unwrap_or_default();
+        let exact = decimal_text(rate.percent).map_or_else(
+            || format!("{}/{} % = {} %", rate.percent.numer(), rate.percent.denom(), rounded_text(rate.percent, 2)),
+            |decimal| format!("{decimal} %"),
+        );
+        format!("{sum}{per_year} × 100 % = {exact}")
+    }
+
+    /// Additions of this visit that asked for no rate, and why.
+    fn no_rates(&self) -> Vec<NoRate> {
+        let history = &self.assessment.history;
+        let has_rates = self.assessment.rulebooks.iter().any(|judgement| judgement.method.is_some());
+        let charges = history.lines.iter().enumerate().filter(|(index, _)| has_rates && self.is_here(*index) && !history.counted[*index]);
+        let no_rate = |(_, line): (usize, &&Line)| {
+            let Act::Charge { purpose, transfer } = &line.act else { return None };
+            let (because, source) = why_no_rate(*purpose);
+            Some(NoRate { on: line.at.date, amount: self.mass(transfer.mass), because: because.to_owned(), source: source.to_owned() })
+        };
+        charges.filter_map(no_rate).collect()
+    }
+
+    fn duties(&self) -> Vec<DutyFacts> {
+        self.assessment.duties.iter().filter_map(|duty| self.duty(duty)).collect()
+    }
+
+    fn duty(&self, duty: &Duty) -> Option<DutyFacts> {
+        let on = self.assessment.on;
+        let state = duty.state(on);
+        let here = |line: Option<usize>| line.is_some_and(|line| self.is_here(line));
+        let own_days: HashSet<NaiveDate> =
+            self.assessment.history.lines.iter().filter(|line| self.here.contains(&line.entry)).map(|line| line.at.date).collect();
+        let step = if here(duty.met_by) {
+            DutyStep::Met
+        } else if duty.ended_on.is_some_and(|ended| own_days.contains(&ended)) && state == DutyState::Ended {
+            DutyStep::Ended
+        } else if matches!(state, DutyState::Open | DutyState::Late | DutyState::Suspended) {
+            if here(duty.from_line) { DutyStep::Started } else { DutyStep::StillOpen }
+        } else {
+            return None;
+        };
+        let due_words = match (duty.due, state) {
+            (Some(_), _) => "",
+            (None, DutyState::Suspended) => "suspended",
+            (None, _) if duty.rulebook.starts_with("us-") => "no day yet",
+            (None, _) => "without undue delay",
+        };
+        Some(DutyFacts {
+            duty: duty.kind.name().to_owned(),
+            source: duty.source.clone(),
+            step,
+            from: duty.from,
+            due: duty.due,
+            due_words: due_words.to_owned(),
+            met_on: duty.met_on,
+            state: state.name().to_owned(),
+        })
+    }
+
+    fn amounts(&self) -> Vec<WeightedAmount> {
+        let history = &self.assessment.history;
+        let mut charged = Vec::new();
+        let mut recovered = Vec::new();
+        for (index, line) in history.lines.iter().enumerate().filter(|(index, _)| self.is_here(*index)) {
+            let gas = history.facts_at(index).map_or_else(String::new, |facts| facts.refrigerant.clone());
+            match &line.act {
+                Act::Charge { transfer, .. } => charged.push((gas, transfer.mass)),
+                Act::Recover { transfer, .. } => recovered.push((gas, transfer.mass)),
+                _ => {}
+            }
+        }
+        let lost: Vec<(String, Mass)> =
+            loss_entries(history).into_iter().filter(|loss| self.is_here(loss.line)).map(|loss| (loss.refrigerant, loss.mass)).collect();
+        let mut amounts = Vec::new();
+        for (what, masses) in [("charged", charged), ("recovered", recovered), ("lost, by what was added", lost)] {
+            if !masses.is_empty() {
+                amounts.push(self.weighted(what, &masses));
+            }
+        }
+        let year = &self.assessment.this_year;
+        let year_name = format!("lost in {}", self.assessment.on.format("%Y"));
+        amounts.push(self.amount(&year_name, year.lost, year.odp_kg, year.co2e_t));
+        amounts
+    }
+
+    fn weighted(&self, what: &str, masses: &[(String, Mass)]) -> WeightedAmount {
+        let sum = |weight: &dyn Fn(&gas::Gas) -> Option<Ratio>| -> Option<Ratio> {
+            masses.iter().map(|(name, mass)| Some(mass.kg() * weight(gas::find(name)?)?)).sum()
+        };
+        let odp_kg = sum(&|gas| Some(gas.odp()));
+        let co2e_t = sum(&|gas| gas.weight(self.assessment.weights)).map(|kg| kg / Ratio::from_integer(1000));
+        self.amount(what, masses.iter().map(|(_, mass)| *mass).sum(), odp_kg, co2e_t)
+    }
+
+    fn amount(&self, what: &str, mass: Mass, odp_kg: Option<Ratio>, co2e_t: Option<Ratio>) -> WeightedAmount {
+        WeightedAmount {
+            what: what.to_owned(),
+            mass,
+            mass_written: self.mass(mass),
+            odp_kg,
+            co2e_t,
+            odp_table: ODP_TABLE.to_owned(),
+            gwp_table: Weighting::name(self.assessment.weights).to_owned(),
+        }
+    }
+
+    /// Where the text allows more than one reading, the one that was taken.
+    fn readings(&self) -> Vec<Notice> {
+        let methods: HashSet<RateMethod> = self
+            .assessment
+            .rulebooks
+            .iter()
+            .flat_map(|judgement| &judgement.rates)
+            .filter(|rate| self.is_here(rate.charge))
+            .map(|rate| rate.method)
+            .collect();
+        let mut notices = Vec::new();
+        if methods.contains(&RateMethod::Annualizing) {
+            notices.push(Notice {
+                text: "Days are counted from the latest day with any charge before this work, and never more than 365.".to_owned(),
+                source: "40 CFR 82.152, leak rate, annualizing method".to_owned(),
+            });
+        }
+        if methods.contains(&RateMethod::RollingAverage) {
+            notices.push(Notice {
+                text: "Counted is what was added on the 365 days up to the addition, or since the last follow-up test that counts."
+                    .to_owned(),
+                source: "40 CFR 82.152, leak rate, rolling average method".to_owned(),
+            });
+        }
+        notices
+    }
+
+    fn tests_that_do_not_count(&self) -> HashMap<EntryId, String> {
+        let history = &self.assessment.history;
+        let follow_up = |line: &Line| matches!(line.act, Act::Test { kind: TestKind::FollowUpVerification, .. });
+        let tests = history.lines.iter().enumerate().filter(|(index, line)| self.is_here(*index) && follow_up(line));
+        tests
+            .filter(|(index, _)| !history.is_follow_up_that_counts(*index))
+            .map(|(_, line)| {
+                let why = match &line.act {
+                    Act::Test { partial: true, .. } => "does not count: not all identified leaks were tested",
+                    Act::Test { result: Some(crate::ledger::TestResult::Pass), .. } => {
+                        "does not count: no initial test that passed stands between the repair and it"
+                    }
+                    _ => "does not count: it was not passed",
+                };
+                (line.entry, why.to_owned())
+            })
+            .collect()
+    }
+}
+
+fn why_no_rate(purpose: ChargePurpose) -> (&'static str, &'static str) {
+    const RATE: &str = "40 CFR 82.157(b), 84.106(b)";
+    match purpose {
+        ChargePurpose::Installation => ("charged at installation", RATE),
+        ChargePurpose::FactoryCharge => ("factory charge", RATE),
+        ChargePurpose::Trim => ("trimmed at commissioning", RATE),
+        ChargePurpose::Retrofit => ("charged after a retrofit", RATE),
+        ChargePurpose::Seasonal => ("returned for the season; as much was recovered before", "40 CFR 82.152, seasonal variance"),
+        ChargePurpose::Mothball => ("put back after mothballing; as much was recovered before", "40 CFR 82.152, mothball"),
+        ChargePurpose::Returned | ChargePurpose::Replacement | ChargePurpose::Leak | ChargePurpose::SameLeak => {
+            ("put back; as much was recovered in this work", "40 CFR 82.152, leak rate")
+        }
+    }
+}
