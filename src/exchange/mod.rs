@@ -1,1 +1,3 @@
 //! Files that come in and go out: CSV, calendars, exchange files.
+
+pub mod csv;
