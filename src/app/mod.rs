@@ -8,6 +8,7 @@ mod closing;
 mod edits;
 mod entries;
 mod error;
+mod import;
 mod inputs;
 mod refusals;
 mod service_bans;
@@ -22,6 +23,7 @@ pub use closing::Correction;
 pub use edits::{NewAppliance, NewSite};
 pub use entries::Prepared;
 pub use error::AppError;
+pub use import::{ImportError, Imported, Remark};
 pub use inputs::{
     ChargeInput, Common, NewEntry, PressureInput, RecoverInput, RecycleInput, RepairInput, RetrofitInput, SimpleAct, TestInput,
 };
