@@ -1,3 +1,5 @@
-fn main() {
-    println!("bubblepoint");
+//! The program: parses its arguments and does what they say.
+
+fn main() -> std::process::ExitCode {
+    bubblepoint::cli::main()
 }

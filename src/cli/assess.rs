@@ -1,0 +1,91 @@
+//! `assess`: leak rates, verdicts, duties and losses as of a day.
+
+mod answer;
+mod sheet;
+
+use super::visits::{appliance_named, site_named};
+use super::{Answer, day, open_store, today};
+use crate::ledger::{ApplianceId, Line, Registers};
+use crate::rules::{Assessment, assess};
+use chrono::NaiveDate;
+use clap::{Args, ValueEnum};
+use std::collections::HashMap;
+use std::path::Path;
+
+#[derive(Debug, Args)]
+pub struct AssessArgs {
+    /// As of this day; without it, today
+    #[arg(long, value_parser = day, value_name = "DATE")]
+    on: Option<NaiveDate>,
+    /// Only this site
+    #[arg(long)]
+    site: Option<String>,
+    /// Only this appliance
+    #[arg(long)]
+    appliance: Option<String>,
+    /// Spell out the sums and readings behind each figure
+    #[arg(long)]
+    explain: bool,
+    #[arg(long, value_enum, default_value_t)]
+    format: AssessFormat,
+}
+
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, ValueEnum)]
+pub enum AssessFormat {
+    #[default]
+    Table,
+    Json,
+    Csv,
+}
+
+pub fn run(store: Option<&Path>, args: &AssessArgs) -> anyhow::Result<Answer> {
+    let store = open_store(store)?;
+    let registers = store.registers()?;
+    let on = args.on.unwrap_or_else(today);
+    let site = args.site.as_deref().map(|name| site_named(&registers, name)).transpose()?;
+    let appliance = args.appliance.as_deref().map(|name| appliance_named(&registers, name, site)).transpose()?;
+    let lines = match appliance {
+        Some(appliance) => store.lines_of(appliance.id)?,
+        None => store.lines()?,
+    };
+    let lines = by_appliance(lines);
+    let wanted = |id: ApplianceId| appliance.is_none_or(|appliance| appliance.id == id);
+    let assessments =
+        assess_all(&registers, &lines, on, |appliance| wanted(appliance.id) && site.is_none_or(|site| appliance.site == site));
+    let text = match args.format {
+        AssessFormat::Json => answer::json(on, &assessments, args.explain)?,
+        AssessFormat::Table => sheet::text(on, &assessments, args.explain),
+        AssessFormat::Csv => sheet::csv(&assessments)?,
+    };
+    Ok(Answer::well(text))
+}
+
+/// Lines by appliance, each in the order in which they were read.
+pub fn by_appliance(lines: Vec<Line>) -> HashMap<ApplianceId, Vec<Line>> {
+    let mut by_appliance: HashMap<ApplianceId, Vec<Line>> = HashMap::new();
+    for line in lines {
+        by_appliance.entry(line.appliance).or_default().push(line);
+    }
+    by_appliance
+}
+
+/// Every wanted appliance judged, by site and identification.
+pub fn assess_all<'a>(
+    registers: &'a Registers,
+    lines: &'a HashMap<ApplianceId, Vec<Line>>,
+    on: NaiveDate,
+    wanted: impl Fn(&crate::ledger::Appliance) -> bool,
+) -> Vec<Assessment<'a>> {
+    let sites: HashMap<_, _> = registers.sites.iter().map(|site| (site.id, site)).collect();
+    let mut assessments: Vec<Assessment> = registers
+        .appliances
+        .iter()
+        .filter(|appliance| wanted(appliance))
+        .filter_map(|appliance| {
+            let lines = lines.get(&appliance.id).map(Vec::as_slice).unwrap_or_default();
+            assess(sites.get(&appliance.site)?, appliance, lines, on)
+        })
+        .collect();
+    assessments.sort_by(|a, b| (&a.site.name, &a.history.appliance.name).cmp(&(&b.site.name, &b.history.appliance.name)));
+    assessments
+}
