@@ -7,11 +7,13 @@ use super::scope::{applicability, months, strictest_band};
 use crate::ledger::{Act, ApplianceFacts, Scope, TestKind, TestResult};
 use crate::quantity::{Mass, Ratio, add_months, days_between};
 use chrono::{Datelike, Days, NaiveDate};
+use std::collections::HashSet;
 
 /// Months for which a met or ended duty stays listed.
 const LISTED_MONTHS: u32 = 12;
 /// Clean periods in a row that end three-monthly inspections (82.157(g)(1)).
 const CLEAN_PERIODS: usize = 4;
+const MONTHS_A_YEAR: u32 = 12;
 /// No inspection series is followed further than this.
 const MOST_PERIODS: u32 = 400;
 
@@ -50,6 +52,10 @@ pub struct Duty {
     pub met_on: Option<NaiveDate>,
     pub ended_on: Option<NaiveDate>,
     pub suspended: bool,
+    /// Day from which mothballing can stop its clock.
+    clock_from: NaiveDate,
+    /// Last day of the rule that asks for it, where it has one.
+    rule_ends: Option<NaiveDate>,
     /// The line it comes from.
     pub from_line: Option<usize>,
     /// The line that met it.
@@ -83,7 +89,6 @@ impl Duty {
         if self.met_on.is_none_or(|met| met > day) {
             self.met_on = None;
             self.met_by = None;
-            self.suspended = false;
             self.ended_on = Some(self.ended_on.map_or(day, |before| before.min(day)));
         }
     }
@@ -111,6 +116,11 @@ pub fn duties(source: &DutySource) -> Vec<Duty> {
     source.found_leaks(&mut duties);
     source.detection_system(&mut duties);
     source.full_charge(&mut duties);
+    // What would begin later, or only after its rule had ended, is no duty.
+    duties.retain(|duty| duty.from <= source.on && duty.rule_ends.is_none_or(|last| duty.from <= last));
+    // Two exceedances answered by one follow-up test share its inspections.
+    let mut seen = HashSet::new();
+    duties.retain(|duty| duty.kind != DutyKind::LeakInspection || seen.insert((duty.from, duty.due, duty.from_line)));
     for duty in &mut duties {
         source.end_with_rule_or_appliance(duty);
     }
@@ -149,6 +159,8 @@ impl DutySource<'_> {
             met_on: None,
             ended_on: None,
             suspended: false,
+            clock_from: from,
+            rule_ends: row.validity.to,
             from_line,
             met_by: None,
         }
@@ -178,169 +190,193 @@ impl DutySource<'_> {
             if let Some(row) = self.row(kind, facts, rate.on) {
                 let mut duty = self.duty(row, rate.on, Some(rate.charge), Some(after_days(rate.on, row.days)));
                 duty.meet(history, met_by);
+                self.stop_clock(&mut duty);
                 duties.push(duty);
             }
         }
         if let (Some(initial), Some(row)) = (answer.initial, self.row(DutyKind::FollowUpVerification, facts, rate.on)) {
-            let due = self.follow_up_due(rate, initial, row);
+            let latest = self.follow_up_from(rate, initial);
+            let due = self.follow_up_runs(rate, initial).then(|| after_days(latest, row.days));
             let mut duty = self.duty(row, history.date(initial), Some(initial), due);
+            duty.clock_from = latest;
             duty.meet(history, answer.follow_up);
+            self.stop_clock(&mut duty);
             duties.push(duty);
         }
-        self.inspections(rate, &answer, facts, duties);
-        for duty in &mut duties[first..] {
-            self.suspend(duty);
-        }
         self.plan(index, rate, &answer, facts, duties);
+        self.inspections(rate, &answer, facts, duties);
+        // A rule's end ends all that followed from an exceedance under it.
+        let scope_ends = applicability(self.book, facts, rate.on).until;
+        for duty in &mut duties[first..] {
+            duty.rule_ends = [duty.rule_ends, scope_ends].into_iter().flatten().min();
+        }
     }
 
-    /// Ten days after the latest of the test, the rate's day, the return to
-    /// normal operation, and, where gas was recovered in between, the charge
-    /// that followed (none yet: not running).
-    fn follow_up_due(&self, rate: &LeakRate, initial: usize, row: &DutyRow) -> Option<NaiveDate> {
+    /// The latest of the test, the rate's day, the return to normal operation
+    /// and, where gas was recovered in between, the charge that followed.
+    fn follow_up_from(&self, rate: &LeakRate, initial: usize) -> NaiveDate {
         let history = self.history;
-        let mut latest = history.date(initial).max(rate.on);
-        if let Some(normal) = history.first_after(Some(initial), |line| matches!(history.lines[line].act, Act::NormalOperation)) {
-            latest = latest.max(history.date(normal));
-        }
-        if (rate.charge + 1..initial).any(|line| history.is_recovery(line)) {
-            let recharge = history.first_after(Some(initial), |line| history.is_charge(line))?;
-            latest = latest.max(history.date(recharge));
-        }
-        Some(after_days(latest, row.days))
+        let normal = history.first_after(Some(initial), |line| matches!(history.lines[line].act, Act::NormalOperation));
+        let recharge = self.recharge(rate, initial).flatten();
+        [Some(initial), normal, recharge].into_iter().flatten().map(|line| history.date(line)).fold(rate.on, NaiveDate::max)
+    }
+
+    /// Not before the appliance was charged again, where it was emptied.
+    fn follow_up_runs(&self, rate: &LeakRate, initial: usize) -> bool {
+        self.recharge(rate, initial).is_none_or(|charge| charge.is_some())
+    }
+
+    /// Where gas was recovered between the exceedance and the test: the charge
+    /// after the test, if there was one yet.
+    fn recharge(&self, rate: &LeakRate, initial: usize) -> Option<Option<usize>> {
+        let history = self.history;
+        (rate.charge + 1..initial)
+            .any(|line| history.is_recovery(line))
+            .then(|| history.first_after(Some(initial), |line| history.is_charge(line)))
     }
 
     /// Inspections at set periods, until enough of them in a row had no rate over.
     fn inspections(&self, rate: &LeakRate, answer: &Answer, facts: &ApplianceFacts, duties: &mut Vec<Duty>) {
         let history = self.history;
-        let Some(row) = self.row(DutyKind::LeakInspection, facts, rate.on) else { return };
-        let start = match row.counted_from {
-            Some(CountedFrom::FollowUpVerification) => match answer.follow_up {
-                Some(test) => test,
-                None => return,
-            },
-            _ => rate.charge,
+        let after_test = self
+            .row(DutyKind::LeakInspection, facts, rate.on)
+            .is_some_and(|row| row.counted_from == Some(CountedFrom::FollowUpVerification));
+        let start = match (after_test, answer.follow_up) {
+            (true, Some(test)) => test,
+            (true, None) => return,
+            (false, _) => rate.charge,
         };
         let from = history.date(start);
-        let quarterly = row.months == Some(3);
-        let needed = if quarterly { CLEAN_PERIODS } else { 1 };
-        let mut clean = 0;
-        let mut begin = from;
-        let mut series: Vec<Duty> = Vec::new();
-        let mut ended = None;
-        for period in 1..=MOST_PERIODS {
-            let end = match row.months {
-                Some(months) if !row.calendar_year => add_months(from, months * period),
-                _ => NaiveDate::from_ymd_opt(from.year() + period.cast_signed() - 1, 12, 31).unwrap_or(NaiveDate::MAX),
-            };
-            if begin > self.on {
+        let Some(facts) = history.facts_at(start) else { return };
+        let Some(row) = self.row(DutyKind::LeakInspection, facts, rate.on) else { return };
+        let periods = self.inspection_periods(row, from);
+        let series_ends = periods.ends;
+        let scope_ends = applicability(self.book, facts, rate.on).until;
+        for (number, (after, end)) in periods.days.into_iter().enumerate() {
+            let begins = if number == 0 { from } else { after_days(after, Some(1)) };
+            if begins > self.on || scope_ends.is_some_and(|last| begins > last) {
                 break;
             }
             let mut duty = self.duty(row, from, Some(start), Some(end));
-            let after_start = if period == 1 { Some(start) } else { None };
-            duty.meet(
-                history,
-                history.first_after(after_start, |line| {
-                    let day = history.date(line);
-                    is_inspection(history, line) && day <= end && if period == 1 { day >= begin } else { day > begin }
-                }),
-            );
-            series.push(duty);
-            // Calendar years end by twelve months without a rate over.
-            let over = self
-                .rates
-                .iter()
-                .any(|other| other.verdict == Verdict::Over && other.charge > rate.charge && other.on > begin && other.on <= end);
-            clean = if over { 0 } else { clean + 1 };
-            if row.calendar_year {
-                let last_over = self
-                    .rates
-                    .iter()
-                    .filter(|other| other.verdict == Verdict::Over && other.on >= rate.on)
-                    .map(|other| other.on)
-                    .fold(rate.on, |latest, on| if on <= add_months(latest, 12) { latest.max(on) } else { latest });
-                let clean_from = add_months(last_over, 12);
-                if clean_from <= end {
-                    ended = Some(clean_from).filter(|&day| day <= self.on);
+            // A calendar year's clock starts with the year.
+            duty.clock_from = if row.calendar_year { begins } else { from };
+            let inspected = history.first_after(Some(start), |line| {
+                let day = history.date(line);
+                is_inspection(history, line) && day <= end && (number == 0 || day > after)
+            });
+            duty.meet(history, inspected);
+            self.stop_clock(&mut duty);
+            if series_ends <= self.on {
+                duty.end(series_ends);
+            }
+            duties.push(duty);
+        }
+    }
+
+    /// The periods of a series that begins on a day, and the day it ends on.
+    fn inspection_periods(&self, row: &DutyRow, from: NaiveDate) -> Periods {
+        let over: Vec<NaiveDate> = self.rates.iter().filter(|rate| rate.verdict == Verdict::Over).map(|rate| rate.on).collect();
+        let over_within = |after: NaiveDate, end: NaiveDate| over.iter().copied().filter(|&day| after < day && day <= end).max();
+        let months = row.months.unwrap_or(MONTHS_A_YEAR);
+        if months < MONTHS_A_YEAR {
+            let (mut days, mut clean, mut after) = (Vec::new(), 0, from);
+            for period in 1..=MOST_PERIODS {
+                let end = add_months(from, months * period);
+                clean = if over_within(after, end).is_some() { 0 } else { clean + 1 };
+                days.push((after, end));
+                after = end;
+                if clean == CLEAN_PERIODS {
                     break;
                 }
-            } else if clean >= needed {
-                ended = Some(end).filter(|&day| day < self.on);
+            }
+            return Periods { days, ends: after };
+        }
+        let mut last_over = from;
+        while let Some(day) = over_within(last_over, add_months(last_over, MONTHS_A_YEAR)) {
+            last_over = day;
+        }
+        let ends = add_months(last_over, MONTHS_A_YEAR);
+        let mut days = Vec::new();
+        let mut after = from;
+        for period in 1..=MOST_PERIODS {
+            let end = if row.calendar_year {
+                NaiveDate::from_ymd_opt(from.year() + period.cast_signed() - 1, 12, 31).unwrap_or(NaiveDate::MAX)
+            } else {
+                add_months(from, months * period)
+            };
+            days.push((after, end));
+            after = end;
+            // The next period would begin on the series' last day or after it.
+            let next = if row.calendar_year { after_days(end, Some(1)) } else { end };
+            if next >= ends {
                 break;
             }
-            begin = end;
         }
-        if let Some(ended) = ended {
-            for duty in &mut series {
-                duty.end(ended);
-            }
-        }
-        duties.extend(series);
+        Periods { days, ends }
     }
 
     fn plan(&self, index: usize, rate: &LeakRate, answer: &Answer, facts: &ApplianceFacts, duties: &mut Vec<Duty>) {
         let history = self.history;
         let Some(row) = self.row(DutyKind::Plan, facts, rate.on) else { return };
         let mut duty = self.duty(row, rate.on, Some(rate.charge), Some(after_days(rate.on, row.days)));
-        duty.meet(
-            history,
-            history.first_after(None, |line| matches!(history.lines[line].act, Act::PlanMade) && history.date(line) >= rate.on),
-        );
-        self.suspend(&mut duty);
-        if self.over_again(index, rate, row) {
+        let made = history.first_after(Some(rate.charge), |line| matches!(history.lines[line].act, Act::PlanMade));
+        if self.over_again(rate, row) {
+            duty.meet(history, made);
+            self.stop_clock(&mut duty);
             duties.push(duty);
             return;
         }
         // Not over again: asked for only where nothing was repaired in time.
-        let Some(shown_from) = duty.due else { return };
+        self.stop_clock(&mut duty);
+        let Some(shown_from) = duty.due.filter(|_| !duty.suspended) else { return };
         let repaired = answer.repair.is_some_and(|line| history.date(line) <= shown_from);
         if repaired || self.on < shown_from {
             return;
         }
+        duty.meet(history, made);
         if let Some(under) = self.rates[index + 1..].iter().find(|later| later.verdict == Verdict::Under) {
             duty.end(under.on);
         }
         duties.push(duty);
     }
 
-    /// The rate is over again after a repair and tests that count, no rate in
-    /// between was under the trigger, and the repair (or its follow-up test)
-    /// is not longer ago than the rule presumes it good.
-    fn over_again(&self, index: usize, rate: &LeakRate, row: &DutyRow) -> bool {
+    /// The rate is over again after a repair and tests that count, no rate
+    /// since was under the trigger, and the repair (or its follow-up test) is
+    /// not longer ago than the rule presumes it good.
+    fn over_again(&self, rate: &LeakRate, row: &DutyRow) -> bool {
         let history = self.history;
         let Some(within) = row.months else { return false };
-        self.rates[..index].iter().rev().filter(|earlier| earlier.verdict == Verdict::Over).any(|earlier| {
-            let Answer { repair: Some(repair), follow_up: Some(test), .. } = self.answer(earlier) else { return false };
-            let counted = if row.counted_from == Some(CountedFrom::FollowUpVerification) { test } else { repair };
-            test < rate.charge
-                && rate.on <= add_months(history.date(counted), within)
-                && !self.rates[..index].iter().any(|between| between.charge > repair && between.verdict == Verdict::Under)
-        })
+        let test = (0..rate.charge).rev().find(|&line| history.is_follow_up_that_counts(line));
+        let Some(test) = test else { return false };
+        let Some(repair) = (0..test).rev().find(|&line| history.is_lasting_repair(line)) else { return false };
+        let counted = if row.counted_from == Some(CountedFrom::FollowUpVerification) { test } else { repair };
+        let over_before = self.rates.iter().any(|earlier| earlier.verdict == Verdict::Over && earlier.charge < test);
+        let under_since =
+            self.rates.iter().any(|between| between.verdict == Verdict::Under && (test..rate.charge).contains(&between.charge));
+        over_before && !under_since && rate.on <= add_months(history.date(counted), within)
     }
 
     /// Mothballing stops an open duty's clock until gas is charged again.
-    fn suspend(&self, duty: &mut Duty) {
+    fn stop_clock(&self, duty: &mut Duty) {
         let history = self.history;
-        let start = duty.from_line.unwrap_or(0);
-        for (line, entry) in history.lines.iter().enumerate().skip(start + 1) {
+        for (line, entry) in history.lines.iter().enumerate() {
             if !matches!(entry.act, Act::Mothball) {
                 continue;
             }
             let day = history.date(line);
-            let done = duty.met_by.is_some_and(|met| met < line) || duty.ended_on.is_some_and(|ended| ended <= day);
+            let resumed = history.first_after(Some(line), |after| history.is_charge(after));
+            let over_before_it_began = resumed.is_some_and(|charge| history.date(charge) <= duty.clock_from);
+            let met_before = duty.met_by.is_some_and(|met| met < line || resumed.is_none_or(|charge| met < charge));
             let late = duty.due.is_some_and(|due| due < day);
-            if done || late {
+            if over_before_it_began || met_before || late {
                 continue;
             }
-            match history.first_after(Some(line), |after| history.is_charge(after)) {
-                Some(resumed) => {
-                    let stopped = days_between(day, history.date(resumed));
+            match resumed {
+                Some(charge) => {
+                    let stopped = days_between(day.max(duty.clock_from), history.date(charge));
                     duty.due = duty.due.map(|due| after_days(due, Some(stopped)));
                 }
-                None => {
-                    duty.due = None;
-                    duty.suspended = duty.met_on.is_none();
-                }
+                None => duty.suspended = true,
             }
         }
     }
@@ -367,7 +403,8 @@ impl DutySource<'_> {
                 let due = NaiveDate::from_ymd_opt(day.year() + 1, 3, 1);
                 let mut duty = self.duty(row, day, Some(line), due);
                 duty.meet(history, history.first_after(Some(line), |later| matches!(history.lines[later].act, Act::ReportSent)));
-                self.suspend(&mut duty);
+                self.stop_clock(&mut duty);
+                duty.rule_ends = [duty.rule_ends, applicability(self.book, facts, day).until].into_iter().flatten().min();
                 duties.push(duty);
             }
         }
@@ -385,7 +422,8 @@ impl DutySource<'_> {
         let Some(band) = strictest_band(self.book, facts, self.on) else { return };
         let last = (0..history.lines.len()).rev().find(|&line| is_leak_check(history, line));
         let first_entry = history.lines.first().map(|line| line.at.date);
-        let Some(from) = last.map(|line| history.date(line)).or(facts.installed_on).or(first_entry) else { return };
+        let begun = last.map(|line| history.date(line)).or(facts.installed_on).or(first_entry);
+        let Some(from) = begun.filter(|&from| from <= self.on) else { return };
         let mut due = add_months(from, months(band, facts));
         if band.or_end_of_next_year {
             // Once per calendar year: by the end of the year after the last
@@ -445,7 +483,7 @@ impl DutySource<'_> {
 
     fn detection_system(&self, duties: &mut Vec<Duty>) {
         let history = self.history;
-        let Some(facts) = self.today() else { return };
+        let Some(facts) = self.today().filter(|facts| facts.leakage_detection_system) else { return };
         let Some(row) = self.row(DutyKind::DetectionSystemCheck, facts, self.on) else { return };
         let last = (0..history.lines.len()).rev().find(|&line| matches!(history.lines[line].act, Act::DetectionSystemCheck));
         if let (Some(line), Some(months)) = (last, row.months) {
@@ -467,22 +505,25 @@ impl DutySource<'_> {
         }
     }
 
-    /// A rule that ends, and an appliance that is retired, end what is unmet.
+    /// A rule that ends, and an appliance that is retired, end what is unmet;
+    /// a duty whose clock stands still has no due day.
     fn end_with_rule_or_appliance(&self, duty: &mut Duty) {
-        let history = self.history;
-        let facts = duty.from_line.and_then(|line| history.facts_at(line)).or_else(|| history.facts_on(self.on));
-        let begun = duty.from_line.map_or(duty.from, |line| history.date(line));
-        if let Some(facts) = facts {
-            let row_end = self.row(duty.kind, facts, begun).and_then(|row| row.validity.to);
-            let until = applicability(self.book, facts, begun).until;
-            if let Some(last) = [row_end, until].into_iter().flatten().min().filter(|&last| last <= self.on) {
-                duty.end(last);
-            }
+        if let Some(last) = duty.rule_ends.filter(|&last| last <= self.on) {
+            duty.end(last);
         }
-        if let Some(retired) = history.retired_on().filter(|_| duty.kind != DutyKind::ChronicLeakReport) {
+        if let Some(retired) = self.history.retired_on().filter(|_| duty.kind != DutyKind::ChronicLeakReport) {
             duty.end(retired);
         }
+        if duty.suspended && duty.met_on.is_none() && duty.ended_on.is_none() {
+            duty.due = None;
+        }
     }
+}
+
+/// The periods of an inspection series: each from after a day to a day.
+struct Periods {
+    days: Vec<(NaiveDate, NaiveDate)>,
+    ends: NaiveDate,
 }
 
 fn is_inspection(history: &History, line: usize) -> bool {
