@@ -1,8 +1,7 @@
 //! `import`: registers and logs from CSV.
 
-use super::{Answer, place, today};
-use crate::app::{Clock, FreshIds, SystemClock, import};
-use crate::store::{OpenMode, Store};
+use super::{Answer, open};
+use crate::store::OpenMode;
 use anyhow::Context;
 use clap::Args;
 use std::path::{Path, PathBuf};
@@ -23,8 +22,7 @@ pub fn run(store: Option<&Path>, args: &ImportArgs) -> anyhow::Result<Answer> {
             Ok((path.display().to_string(), bytes))
         })
         .collect::<anyhow::Result<Vec<_>>>()?;
-    let store = Store::open(&place::store_path(store)?, OpenMode::Create)?;
-    let taken = import(&store, &FreshIds, SystemClock.now(), today(), &files)?;
+    let taken = open(store, OpenMode::Create)?.import(&files)?;
     let mut text = String::new();
     for remark in &taken.remarks {
         text.push_str(&format!("{}, line {}: remark: {}\n", remark.file, remark.line, remark.message));

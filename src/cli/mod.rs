@@ -8,7 +8,7 @@ mod place;
 mod table;
 mod visits;
 
-use crate::app::{Clock, SystemClock};
+use crate::app::{App, Clock, SystemClock};
 use crate::store::{OpenMode, Store};
 use chrono::NaiveDate;
 use clap::{Parser, Subcommand, ValueEnum};
@@ -41,7 +41,7 @@ pub enum Command {
     /// A consistent copy of the store while it is in use
     Backup(check::BackupArgs),
     /// Field calculations
-    Calc(calc::CalcArgs),
+    Calc(Box<calc::CalcArgs>),
 }
 
 /// How a listing is printed.
@@ -106,6 +106,11 @@ fn run(arguments: &Arguments) -> anyhow::Result<Answer> {
         Some(Command::Calc(args)) => Ok(Answer::well(calc::run(args)?)),
         None => anyhow::bail!("this build has no window; see bubblepoint --help for the commands"),
     }
+}
+
+/// Opens the named store, or the default one.
+fn open(store: Option<&Path>, mode: OpenMode) -> anyhow::Result<App> {
+    Ok(App::open(&place::store_path(store)?, mode)?)
 }
 
 /// Opens for reading; the store must be there.

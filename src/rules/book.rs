@@ -101,6 +101,7 @@ pub enum EquipmentTest {
     #[default]
     #[serde(rename = "any")]
     Any,
+    /// Refrigeration, air conditioning, heat pumps, fire protection.
     #[serde(rename = "stationary")]
     Stationary,
     #[serde(rename = "stationary, trucks and trailers")]

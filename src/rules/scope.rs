@@ -145,9 +145,10 @@ fn equipment_fits(test: EquipmentTest, facts: &ApplianceFacts) -> bool {
     let truck = facts.equipment == Some(Equipment::RefrigeratedTruckOrTrailer);
     let other_mobile = facts.equipment == Some(Equipment::OtherMobile);
     let transport = facts.category == Category::RefrigeratedTransport;
+    let generator_or_switchgear = matches!(facts.equipment, Some(Equipment::OrganicRankineCycle | Equipment::Switchgear));
     match test {
         EquipmentTest::Any => true,
-        EquipmentTest::Stationary => !truck && !other_mobile && !transport,
+        EquipmentTest::Stationary => !truck && !other_mobile && !transport && !generator_or_switchgear,
         EquipmentTest::StationaryTrucksAndTrailers => truck || (!other_mobile && !transport),
         EquipmentTest::OtherMobile => other_mobile && !transport,
     }
