@@ -1,3 +1,6 @@
 //! One integration binary.
 
+mod app;
+mod faults;
 mod reference;
+mod support;

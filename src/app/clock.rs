@@ -1,6 +1,6 @@
 //! Where time and ids come from.
 
-use chrono::{DateTime, Utc};
+use chrono::{DateTime, SubsecRound, Utc};
 use chrono_tz::Tz;
 use uuid::{NoContext, Timestamp, Uuid};
 
@@ -22,7 +22,8 @@ pub struct SystemClock;
 
 impl Clock for SystemClock {
     fn now(&self) -> DateTime<Utc> {
-        std::time::SystemTime::now().into()
+        // The store keeps milliseconds; what is signed says the same.
+        DateTime::<Utc>::from(std::time::SystemTime::now()).trunc_subsecs(3)
     }
 
     fn zone(&self) -> Tz {

@@ -83,7 +83,7 @@ pub fn of_entry(standing: &ApplianceStanding, act: &Act, at: Moment, today: Naiv
         let sentence = format!("{} has not come yet at this site; today is {today}. Correct the date.", at.date);
         refusals.push(Refusal::firm(Kind::InTheFuture, sentence, ""));
     }
-    if let Some(installed) = standing.facts.installed_on.filter(|installed| at.date < *installed) {
+    if let Some(installed) = standing.installed_on.filter(|installed| at.date < *installed) {
         let sentence = format!("{name} was installed on {installed}, after {}. Correct one of the two.", at.date);
         refusals.push(Refusal::firm(Kind::BeforeInstallation, sentence, ""));
     }
@@ -373,7 +373,16 @@ pub(super) mod tests {
         let facts = appliance_facts(gas);
         let appliance =
             Appliance { id: ApplianceId(Uuid::nil()), site: site.id, name: "R-1".to_owned(), versions: Versions::always(facts.clone()) };
-        ApplianceStanding { site, site_facts, appliance, facts, lines: Vec::new(), retired_on: None, mothballed_on: None }
+        ApplianceStanding {
+            site,
+            site_facts,
+            appliance,
+            facts,
+            lines: Vec::new(),
+            installed_on: Some(day("2020-05-01")),
+            retired_on: None,
+            mothballed_on: None,
+        }
     }
 
     fn cylinder(gas: Option<&str>, status: Option<GasStatus>, content: &str) -> CylinderStanding {

@@ -22,6 +22,8 @@ pub struct ApplianceStanding {
     /// With what retrofits changed.
     pub facts: ApplianceFacts,
     pub lines: Vec<Line>,
+    /// As last written down: it was true all along.
+    pub installed_on: Option<NaiveDate>,
     pub retired_on: Option<NaiveDate>,
     /// Mothballed and not charged since.
     pub mothballed_on: Option<NaiveDate>,
@@ -112,7 +114,8 @@ pub(super) fn appliance_standing(
     let mothballed = history.lines.iter().rposition(|line| line.act == Act::Mothball);
     let mothballed_on = mothballed.filter(|mothball| last_charge.is_none_or(|charge| charge < *mothball)).map(|index| history.date(index));
     let retired_on = lines.iter().find(|line| line.act == Act::Retire).map(|line| line.at.date);
-    Ok(ApplianceStanding { site_facts, facts, retired_on, mothballed_on, site, appliance, lines })
+    let installed_on = appliance.versions.all().iter().rev().find_map(|version| version.facts.installed_on);
+    Ok(ApplianceStanding { site_facts, facts, installed_on, retired_on, mothballed_on, site, appliance, lines })
 }
 
 pub(super) fn cylinder_standing(

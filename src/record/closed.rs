@@ -144,3 +144,206 @@ pub fn read_closed(bytes: &[u8]) -> Result<ClosedVisit, NotClosed> {
         newer => Err(NotClosed::Newer(newer)),
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::ledger::{
+        ApplianceFacts, Category, ChargePurpose, Counterpart, CylinderFacts, CylinderId, CylinderKind, GasStatus, Ink, PersonId,
+        RateMethod, Reading, Scope, Signature, SiteFacts, TestKind, TestResult, Transfer, Versions, WeighingMode,
+    };
+    use crate::quantity::{Mass, MassUnit, Weighing};
+    use crate::record::{Party, RecordState, SiteText};
+    use uuid::Uuid;
+
+    fn lb(text: &str) -> Weighing {
+        Weighing::new(text, MassUnit::Pound)
+    }
+
+    fn entry(number: u128, what: Act, detail: Detail) -> ClosedEntry {
+        ClosedEntry {
+            id: EntryId(Uuid::from_u128(number)),
+            appliance: ApplianceId(Uuid::from_u128(2)),
+            date: "2026-03-03".parse().unwrap(),
+            minute: Some(580),
+            job: Some("W-1187".to_owned()),
+            written: "2026-03-03T14:40:00Z".parse().unwrap(),
+            strikes: None,
+            struck_by: None,
+            what,
+            detail,
+        }
+    }
+
+    fn entries() -> Vec<ClosedEntry> {
+        let transfer = Transfer {
+            mass: Mass::from_lb(10),
+            cylinder: Some(CylinderId(Uuid::from_u128(3))),
+            division: lb("0.1").mass().ok(),
+            hoses: Mass::ZERO,
+        };
+        let reading = Reading { mode: WeighingMode::Gross, before: Some(lb("70.0")), after: Some(lb("60.0")), net: None, scale: None };
+        let test = Act::Test {
+            kind: TestKind::FollowUpVerification,
+            result: Some(TestResult::Pass),
+            scope: Some(Scope::Part),
+            partial: false,
+            running_hundredths: Some(2450),
+        };
+        let weighed = Detail { reading: Some(reading), gas_status: Some(GasStatus::Virgin), ..Detail::default() };
+        let note = Detail { note: "Łącznik \u{201c}B\u{201d}\n2 × dokręcony".to_owned(), ..Detail::default() };
+        vec![
+            entry(10, Act::Charge { purpose: ChargePurpose::Leak, transfer }, weighed),
+            entry(11, test, Detail::default()),
+            entry(12, Act::Retrofit { refrigerant: "R-448A".to_owned(), full_charge: Some(Mass::from_kg(40)) }, Detail::default()),
+            ClosedEntry { strikes: Some(EntryId(Uuid::from_u128(11))), minute: None, job: None, ..entry(13, Act::Note, note) },
+        ]
+    }
+
+    fn site() -> Site {
+        let facts = SiteFacts {
+            rulebooks: vec!["us-82f".to_owned()],
+            owner: "Harbour Fish Ltd".to_owned(),
+            operator: String::new(),
+            address: "Quay 3".to_owned(),
+            rate_method: RateMethod::Annualizing,
+            time_zone: "America/New_York".to_owned(),
+        };
+        Site { id: SiteId(Uuid::from_u128(1)), name: "Fish market cold store".to_owned(), versions: Versions::always(facts) }
+    }
+
+    fn appliance() -> Appliance {
+        let facts = ApplianceFacts {
+            category: Category::CommercialRefrigeration,
+            refrigerant: "R-22".to_owned(),
+            full_charge: Some(Mass::from_lb(100)),
+            full_charge_written: Some(lb("100")),
+            charge_method: None,
+            installed_on: None,
+            equipment: None,
+            assembly: String::new(),
+            description: String::new(),
+            serial: String::new(),
+            place: String::new(),
+            labelled_hermetically_sealed: false,
+            residential: false,
+            leakage_detection_system: false,
+            residential_or_light_commercial_ac: false,
+            product_below_minus_50c: false,
+            military: false,
+            room_volume_m3: None,
+        };
+        let id = ApplianceId(Uuid::from_u128(2));
+        Appliance { id, site: SiteId(Uuid::from_u128(1)), name: "R-1".to_owned(), versions: Versions::always(facts) }
+    }
+
+    fn cylinder() -> Cylinder {
+        let facts = CylinderFacts {
+            kind: CylinderKind::Supply,
+            tare: Mass::from_lb(20),
+            tare_written: lb("20"),
+            refrigerant: Some("R-22".to_owned()),
+            gas_status: Some(GasStatus::Virgin),
+            gross: Some(Mass::from_lb(70)),
+            gross_written: Some(lb("70")),
+            water_capacity_l: Some("21.6".to_owned()),
+            stamped_maximum: None,
+            service_pressure_psig: None,
+            test_pressure_bar: None,
+            requalify_by: None,
+            owner: String::new(),
+            gas_owner: String::new(),
+            location: String::new(),
+            gas_source: String::new(),
+            scrapped: None,
+        };
+        Cylinder { id: CylinderId(Uuid::from_u128(3)), name: "S-204".to_owned(), versions: Versions::always(facts) }
+    }
+
+    fn visit() -> ClosedVisit {
+        let day: NaiveDate = "2026-03-03".parse().unwrap();
+        let closed: DateTime<Utc> = "2026-03-03T16:20:00Z".parse().unwrap();
+        let signature = Signature { name: "Ada Quill".to_owned(), ink: Ink(vec![vec![(100, 500), (200, 400)], vec![(350, 450)]]) };
+        let counterpart = Counterpart::Refused { name: "Mara Brandeis".to_owned(), reason: "disputes the weight".to_owned() };
+        let person = Person {
+            id: PersonId(Uuid::from_u128(4)),
+            name: "Ada Quill".to_owned(),
+            certificate: "F-17".to_owned(),
+            certificate_kind: "608 universal".to_owned(),
+            valid_from: None,
+            valid_to: None,
+            company: String::new(),
+            company_certificate: String::new(),
+        };
+        ClosedVisit {
+            visit: VisitFacts {
+                id: VisitId(Uuid::from_u128(5)),
+                site: SiteId(Uuid::from_u128(1)),
+                date: day,
+                minute: Some(492),
+                time_zone: "America/New_York".to_owned(),
+                begun: "2026-03-03T13:12:00Z".parse().unwrap(),
+            },
+            entries: entries(),
+            cautions: vec![CautionSeen { caution: "1".to_owned(), at_minute: 493 }],
+            closing: Closing { closed, date: day, minute: 680, technician: signature, counterpart, handed_over: String::new() },
+            site: site(),
+            appliances: vec![appliance()],
+            cylinders: vec![cylinder()],
+            people: vec![person],
+            paper: ServiceRecord {
+                state: RecordState::Closed { on: day, at: "11:20".to_owned() },
+                fingerprint: None,
+                copy: 1,
+                demonstration: false,
+                program: "bubblepoint 0.1.0".to_owned(),
+                rulebooks: Vec::new(),
+                company: Party::default(),
+                site: SiteText::default(),
+                jobs: vec!["W-1187".to_owned()],
+                first_day: day,
+                last_day: day,
+                people: Vec::new(),
+                appliances: Vec::new(),
+                cautions: Vec::new(),
+                technician: None,
+                counterparty: None,
+                handed_over: String::new(),
+                remarks: Vec::new(),
+            },
+        }
+    }
+
+    /// FROZEN. If this fails, the change must be undone, or become format 2:
+    /// records of format 1 are in the hands of people who signed them.
+    #[test]
+    fn format_1_is_frozen() {
+        let path = concat!(env!("CARGO_MANIFEST_DIR"), "/tests/fixtures/closed-record-1");
+        let closed = close(&visit()).unwrap();
+        if std::env::var_os("BUBBLEPOINT_WRITE_GOLDEN").is_some() {
+            std::fs::write(path, &closed.bytes).unwrap();
+        }
+        let kept = std::fs::read(path).unwrap();
+        assert_eq!(String::from_utf8_lossy(&closed.bytes), String::from_utf8_lossy(&kept));
+        assert_eq!(closed.fingerprint, FROZEN);
+        assert_eq!(read_closed(&kept).unwrap(), visit());
+    }
+
+    const FROZEN: &str = "574d7e001c6ceb6726d568445c70bb42c23d148ea5b0de67d10af9c1fb4820b7";
+
+    #[test]
+    fn any_change_changes_the_fingerprint() {
+        let mut changed = visit();
+        changed.entries[0].minute = Some(581);
+        assert_ne!(close(&changed).unwrap().fingerprint, close(&visit()).unwrap().fingerprint);
+    }
+
+    #[test]
+    fn what_is_no_record_is_told() {
+        assert_eq!(read_closed(b"{}"), Err(NotClosed::NoFormat));
+        assert_eq!(read_closed(b"one\n{}"), Err(NotClosed::NoFormat));
+        assert_eq!(read_closed(b"\xff\n{}"), Err(NotClosed::NoFormat));
+        assert_eq!(read_closed(b"2\n{}"), Err(NotClosed::Newer(2)));
+        assert!(matches!(read_closed(b"1\n{}"), Err(NotClosed::Unreadable(_))));
+    }
+}

@@ -158,7 +158,8 @@ fn keep(store: &Store, orders: &Receiver<Order>) {
         let mut waiting = Vec::new();
         let mut hung_up = false;
         take(first, &mut held, &mut waiting);
-        while waiting.is_empty() {
+        // Whoever types without a pause is written all the same.
+        while waiting.is_empty() && Tick::now() < until {
             match orders.recv_timeout(until.saturating_duration_since(Tick::now())) {
                 Ok(order) => take(order, &mut held, &mut waiting),
                 Err(RecvTimeoutError::Timeout) => break,
@@ -195,16 +196,14 @@ fn write(store: &Store, held: &Held) -> Result<(), StoreError> {
     if held.is_empty() {
         return Ok(());
     }
-    store.read(|c| {
-        let transaction = rusqlite::Transaction::new_unchecked(c, rusqlite::TransactionBehavior::Immediate)?;
-        for ((visit, action), draft) in held {
-            match draft {
-                Some(draft) => put(c, draft)?,
-                None => clear(c, *visit, action)?,
-            }
-        }
-        transaction.commit()
-    })
+    let (_turn, transaction) = store.begin_writing()?;
+    for ((visit, action), draft) in held {
+        store.read(|c| match draft {
+            Some(draft) => put(c, draft),
+            None => clear(c, *visit, action),
+        })?;
+    }
+    transaction.commit().map_err(|e| store.told(e))
 }
 
 #[cfg(test)]

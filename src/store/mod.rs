@@ -31,6 +31,8 @@ pub use writing::Writing;
 use chrono::{DateTime, Utc};
 use rusqlite::{Connection, Transaction, TransactionBehavior};
 use std::path::{Path, PathBuf};
+use std::sync::{Arc, Mutex, MutexGuard, PoisonError};
+use std::time::Duration;
 
 /// An open store: one connection. A second thread opens its own with
 /// [`Store::another`].
@@ -38,6 +40,10 @@ pub struct Store {
     connection: Connection,
     /// `None` for a store in memory.
     path: Option<PathBuf>,
+    /// Taken by whoever of this program writes. SQLite alone would let a busy
+    /// writer keep another out for long: who waits there asks again at
+    /// growing intervals, who waits here is woken.
+    turn: Arc<Mutex<()>>,
 }
 
 impl Store {
@@ -52,8 +58,7 @@ impl Store {
     /// # Errors
     /// That of `act`, or the store's own: busy, full, read-only, damaged.
     pub fn write<T, E: From<StoreError>>(&self, now: DateTime<Utc>, act: impl FnOnce(&Writing<'_>) -> Result<T, E>) -> Result<T, E> {
-        // Dropped without commit, the transaction rolls back.
-        let transaction = Transaction::new_unchecked(&self.connection, TransactionBehavior::Immediate).map_err(|e| self.told(e))?;
+        let (_turn, transaction) = self.begin_writing()?;
         let writing = Writing::begin(self, now)?;
         let done = act(&writing)?;
         writing.count_rows()?;
@@ -67,6 +72,30 @@ impl Store {
     /// The store's own.
     pub fn limit_pages(&self, pages: u32) -> Result<(), StoreError> {
         self.read(|connection| connection.pragma_update_and_check(None, "max_page_count", pages, |_| Ok(())))
+    }
+
+    /// Pages of the file, for [`Store::limit_pages`].
+    ///
+    /// # Errors
+    /// The store's own.
+    pub fn pages(&self) -> Result<i64, StoreError> {
+        self.read(|connection| connection.pragma_query_value(None, "page_count", |row| row.get(0)))
+    }
+
+    /// How long a write waits for another program's before it gives up; five seconds unless set.
+    ///
+    /// # Errors
+    /// The store's own.
+    pub fn wait_at_most(&self, patience: Duration) -> Result<(), StoreError> {
+        self.read(|connection| connection.busy_timeout(patience))
+    }
+
+    /// Dropped without commit, the transaction rolls back; then the turn is over.
+    fn begin_writing(&self) -> Result<(Option<MutexGuard<'_, ()>>, Transaction<'_>), StoreError> {
+        // Inside a transaction the turn is ours already, and SQLite says what is wrong.
+        let turn = self.connection.is_autocommit().then(|| self.turn.lock().unwrap_or_else(PoisonError::into_inner));
+        let transaction = Transaction::new_unchecked(&self.connection, TransactionBehavior::Immediate).map_err(|e| self.told(e))?;
+        Ok((turn, transaction))
     }
 
     fn read<T>(&self, query: impl FnOnce(&Connection) -> rusqlite::Result<T>) -> Result<T, StoreError> {

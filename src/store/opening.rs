@@ -8,6 +8,7 @@ use rusqlite::{Connection, OpenFlags, Transaction, TransactionBehavior};
 use std::fs::File;
 use std::io::Read;
 use std::path::{Path, PathBuf};
+use std::sync::Arc;
 use std::time::Duration;
 
 /// What to do when there is no store at the path.
@@ -42,7 +43,7 @@ impl Store {
             Found::Nothing | Found::Empty => true,
             Found::Store => false,
         };
-        let store = Self { connection: connect(path)?, path: Some(path.to_owned()) };
+        let store = Self { connection: connect(path)?, path: Some(path.to_owned()), turn: Arc::default() };
         if fresh {
             store.make(migrations)?;
         } else {
@@ -62,7 +63,7 @@ impl Store {
     /// Out of memory.
     pub fn in_memory() -> Result<Self, StoreError> {
         let connection = Connection::open_in_memory().map_err(|e| StoreError::from_sqlite(e, None))?;
-        let store = Self { connection, path: None };
+        let store = Self { connection, path: None, turn: Arc::default() };
         store.make(MIGRATIONS)?;
         store.read(set_up)?;
         Ok(store)
@@ -74,7 +75,7 @@ impl Store {
     /// As [`Store::open`]; a store in memory has no second connection.
     pub fn another(&self) -> Result<Self, StoreError> {
         let path = self.path.as_deref().ok_or(StoreError::OnlyInMemory { what: "open a second connection" })?;
-        Self::open(path, OpenMode::MustExist)
+        Ok(Self { turn: Arc::clone(&self.turn), ..Self::open(path, OpenMode::MustExist)? })
     }
 
     /// A new store is made in one transaction before the write-ahead log is

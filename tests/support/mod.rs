@@ -1,0 +1,3 @@
+//! What several kinds of test stand on.
+
+pub mod plant;
