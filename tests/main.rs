@@ -1,6 +1,8 @@
-//! One integration binary.
+//! One integration binary; this is its table of contents.
 
 mod app;
+mod architecture;
 mod faults;
+mod property;
 mod reference;
 mod support;

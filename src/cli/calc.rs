@@ -3,6 +3,7 @@
 mod fill;
 mod gas;
 mod leak;
+mod rate;
 mod room;
 mod saturation;
 mod sheet;
@@ -31,6 +32,8 @@ pub struct CalcArgs {
 pub enum CalcCommand {
     /// What a gas is: composition, ODP, GWP by each set, safety class, limits, sources
     Gas(gas::GasArgs),
+    /// A leak rate by the annualizing method, and how it stands to the triggers
+    Rate(rate::RateArgs),
     /// How much a cylinder may take, and which limit binds
     Fill(fill::FillArgs),
     /// A leak in all its units
@@ -56,6 +59,7 @@ pub enum CalcFormat {
 pub fn run(args: &CalcArgs) -> Result<String, CalcError> {
     match &args.command {
         CalcCommand::Gas(args) => gas::run(args),
+        CalcCommand::Rate(args) => rate::run(args),
         CalcCommand::Fill(args) => fill::run(args),
         CalcCommand::Leak(args) => leak::run(args),
         CalcCommand::Room(args) => room::run(args),

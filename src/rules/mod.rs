@@ -13,5 +13,5 @@ pub use book::{Band, Basis, DutyKind, DutyRow, Rulebook, Validity, built_in, rul
 pub use duty::{Duty, DutyState};
 pub use history::{History, Work};
 pub use loss::{Loss, LossEntry, loss_between, loss_entries};
-pub use rate::{LeakRate, Verdict, WeighingBand, leak_rates, trigger};
+pub use rate::{LeakRate, Verdict, WeighingBand, annualized, leak_rates, trigger};
 pub use scope::{Applicability, applicability, months, strictest_band};

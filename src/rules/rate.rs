@@ -20,6 +20,15 @@ pub enum Verdict {
 }
 
 impl Verdict {
+    /// How a rate in percent stands to a trigger in percent.
+    pub fn of(rate: Ratio, trigger: Ratio) -> Self {
+        match rate.cmp(&trigger) {
+            std::cmp::Ordering::Less => Self::Under,
+            std::cmp::Ordering::Equal => Self::At,
+            std::cmp::Ordering::Greater => Self::Over,
+        }
+    }
+
     pub const fn name(self) -> &'static str {
         match self {
             Self::Under => "under trigger",
@@ -62,6 +71,12 @@ pub struct WeighingBand {
     pub holds_trigger: bool,
     /// The band as a share of a percent, for drawing only: the digits above.
     pub hundredths: u64,
+}
+
+/// The annualizing method of 40 CFR 82.152: percent of full charge a year.
+/// Days over 365 count as 365; both masses and the days must be above zero.
+pub fn annualized(added: Mass, full_charge: Mass, days: i64) -> Ratio {
+    Ratio::new(100 * i128::from(LONGEST) * added.units(), full_charge.units() * i128::from(days.min(LONGEST)))
 }
 
 /// All leak rates of an appliance under a rulebook, oldest first.
@@ -124,14 +139,10 @@ fn leak_rate(book: &Rulebook, history: &History, method: RateMethod, first: usiz
         }
     };
     let percent = match days {
-        Some(days) => Ratio::new(100 * i128::from(LONGEST) * added.units(), full_charge.units() * i128::from(days)),
+        Some(days) => annualized(added, full_charge, days),
         None => Ratio::new(100 * added.units(), full_charge.units()),
     };
-    let verdict = match percent.cmp(&trigger.percent) {
-        std::cmp::Ordering::Less => Verdict::Under,
-        std::cmp::Ordering::Equal => Verdict::At,
-        std::cmp::Ordering::Greater => Verdict::Over,
-    };
+    let verdict = Verdict::of(percent, trigger.percent);
     // Percent per unit of mass, as numerator and denominator.
     let factor = match days {
         Some(days) => (100 * LONGEST, full_charge.units() * i128::from(days)),

@@ -3,12 +3,14 @@
 mod ahri_guideline_k;
 mod ashrae_handbook;
 mod blends;
+mod cfr_40_leak_rates;
 mod cfr_49_173;
 mod co2_equivalent_tables;
 mod coolprop;
 mod epa_reference_table;
 mod eu_2024_573;
 mod eu_2024_590;
+mod eu_boundaries;
 mod ipcc;
 mod montreal_annexes;
 mod ozone_secretariat;
