@@ -10,8 +10,8 @@
 //! mass, purpose, result or scope as the act has them.
 
 use bubblepoint::ledger::{
-    Act, Appliance, ApplianceFacts, ApplianceId, Category, ChargePurpose, EntryId, Equipment, Line, Moment, RateMethod, RecoveryPurpose,
-    Scope, Site, SiteFacts, SiteId, TestKind, TestResult, Transfer, Versions,
+    Act, Appliance, ApplianceFacts, ApplianceId, Category, ChargePurpose, EntryId, Line, Moment, RateMethod, RecoveryPurpose, Scope, Site,
+    SiteFacts, SiteId, TestKind, TestResult, Transfer, Versions,
 };
 use bubblepoint::quantity::{Mass, MassUnit, Ratio, Weighing};
 use bubblepoint::rules::{Assessment, DutyState, LeakRate, assess};
