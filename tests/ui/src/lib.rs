@@ -1,1 +1,14 @@
-//! Headless tests of the screens.
+//! Opens the program's window without a display, draws it, and looks it over.
+//!
+//! Slint's platform and windows belong to one thread, so the checks in
+//! `tests/main.rs` and the pictures of `src/bin/pictures.rs` run on one.
+
+mod picture;
+mod sources;
+mod sweep;
+mod window;
+
+pub use picture::{Picture, draw, save};
+pub use sources::{SlintFile, literals, raw_text, screens};
+pub use sweep::{Acting, Fault, acting, sweep};
+pub use window::{DESK, PHONE, SIZES, Size, TABLET, TABLET_UPRIGHT, open, press, press_key, settle};

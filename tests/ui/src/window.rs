@@ -1,0 +1,90 @@
+//! The window, opened headless at a given size.
+
+use bubblepoint_ui::{AppWindow, Appearance, Theme};
+use i_slint_backend_testing::{ElementHandle, ElementQuery, TestingBackend, TestingBackendOptions};
+use slint::platform::{PointerEventButton, WindowEvent};
+use slint::{ComponentHandle, LogicalSize, SharedString};
+use std::cell::Cell;
+use std::time::Duration;
+
+/// Width and height of a window in logical pixels.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct Size {
+    pub name: &'static str,
+    pub width: u32,
+    pub height: u32,
+}
+
+pub const PHONE: Size = Size { name: "phone", width: 390, height: 844 };
+pub const TABLET_UPRIGHT: Size = Size { name: "tablet-upright", width: 820, height: 1180 };
+pub const TABLET: Size = Size { name: "tablet", width: 1180, height: 820 };
+pub const DESK: Size = Size { name: "desk", width: 1440, height: 900 };
+pub const SIZES: [Size; 4] = [PHONE, TABLET_UPRIGHT, TABLET, DESK];
+
+thread_local! {
+    static PREPARED: Cell<bool> = const { Cell::new(false) };
+}
+
+/// Sets the headless platform, once per thread. The software renderer draws, so pictures are what a user sees.
+fn prepare() {
+    if PREPARED.replace(true) {
+        return;
+    }
+    let options = TestingBackendOptions {
+        mock_time: true,
+        threading: false,
+        renderer_name: Some("software".into()),
+        ..TestingBackendOptions::default()
+    };
+    slint::platform::set_platform(Box::new(TestingBackend::new(options))).expect("no other platform is set on this thread");
+}
+
+/// Opens the window with the screens' own preview content.
+pub fn open(size: Size, appearance: Appearance, text_factor: f32) -> AppWindow {
+    prepare();
+    let window = AppWindow::new().expect("the headless platform makes windows");
+    let theme = window.global::<Theme>();
+    theme.set_appearance(appearance);
+    theme.set_text_factor(text_factor);
+    window.show().expect("the headless platform shows windows");
+    window.window().set_size(LogicalSize::new(size.width as f32, size.height as f32));
+    settle();
+    window
+}
+
+/// Lets motion end and change handlers run.
+pub fn settle() {
+    for _ in 0..4 {
+        i_slint_backend_testing::mock_elapsed_time(Duration::from_millis(200));
+    }
+}
+
+/// Taps the acting element with this label, in its middle, as a finger would.
+///
+/// # Panics
+/// When there is none, with the labels there are.
+pub fn press(window: &AppWindow, label: &str) {
+    let all = crate::acting(window);
+    let Some(found) = all.iter().find(|a| a.label == label) else {
+        let labels: Vec<&str> = all.iter().map(|a| a.label.as_str()).collect();
+        panic!("nothing to press is labelled \u{201c}{label}\u{201d}; there are {labels:?}");
+    };
+    click(&found.element);
+    settle();
+}
+
+fn click(element: &ElementHandle) {
+    element.mock_single_click(PointerEventButton::Left);
+}
+
+/// Presses and releases one key.
+pub fn press_key(window: &AppWindow, text: impl Into<SharedString>) {
+    let text = text.into();
+    window.window().dispatch_event(WindowEvent::KeyPressed { text: text.clone() });
+    window.window().dispatch_event(WindowEvent::KeyReleased { text });
+    settle();
+}
+
+pub(crate) fn every_element(window: &AppWindow) -> Vec<ElementHandle> {
+    ElementQuery::from_root(window).match_descendants().find_all()
+}
