@@ -3,7 +3,7 @@
 use bubblepoint_ui::{AppWindow, Appearance, Theme};
 use i_slint_backend_testing::{ElementHandle, ElementQuery, TestingBackend, TestingBackendOptions};
 use slint::platform::{PointerEventButton, WindowEvent};
-use slint::{ComponentHandle, LogicalSize, SharedString};
+use slint::{ComponentHandle, LogicalPosition, LogicalSize, SharedString};
 use std::cell::Cell;
 use std::time::Duration;
 
@@ -73,6 +73,30 @@ pub fn press(window: &AppWindow, label: &str) {
     settle();
 }
 
+/// Draws a line across the element with this label; points are shares of its width and height.
+///
+/// # Panics
+/// When there is no such element.
+pub fn drag(window: &AppWindow, label: &str, points: &[(f32, f32)]) {
+    let all = every_element(window);
+    let Some(element) = all.iter().find(|e| e.accessible_label().is_some_and(|l| l == label)) else {
+        panic!("nothing to draw on is labelled \u{201c}{label}\u{201d}");
+    };
+    let (at, size) = (element.absolute_position(), element.size());
+    let place = |(x, y): (f32, f32)| LogicalPosition::new(at.x + size.width * x, at.y + size.height * y);
+    let button = PointerEventButton::Left;
+    let win = window.window();
+    win.dispatch_event(WindowEvent::PointerMoved { position: place(points[0]) });
+    win.dispatch_event(WindowEvent::PointerPressed { position: place(points[0]), button });
+    for point in &points[1..] {
+        i_slint_backend_testing::mock_elapsed_time(Duration::from_millis(16));
+        win.dispatch_event(WindowEvent::PointerMoved { position: place(*point) });
+    }
+    i_slint_backend_testing::mock_elapsed_time(Duration::from_millis(16));
+    win.dispatch_event(WindowEvent::PointerReleased { position: place(points[points.len() - 1]), button });
+    settle();
+}
+
 fn click(element: &ElementHandle) {
     element.mock_single_click(PointerEventButton::Left);
 }
@@ -86,5 +110,5 @@ pub fn press_key(window: &AppWindow, text: impl Into<SharedString>) {
 }
 
 pub(crate) fn every_element(window: &AppWindow) -> Vec<ElementHandle> {
-    ElementQuery::from_root(window).match_descendants().find_all()
+    ElementQuery::from_root(window).find_all()
 }

@@ -1,6 +1,7 @@
 //! The screens' checks, one after another on one thread: Slint's windows
 //! belong to the thread that made them. Takes a filter, as other tests do.
 
+mod acts;
 mod contrast;
 mod keyboard;
 mod pages;
@@ -13,7 +14,7 @@ type Check = (&'static str, fn());
 
 fn main() -> ExitCode {
     let words: Vec<String> = std::env::args().skip(1).filter(|a| !a.starts_with('-')).collect();
-    let checks: Vec<Check> = [contrast::CHECKS, rules::CHECKS, pages::CHECKS, keyboard::CHECKS].concat();
+    let checks: Vec<Check> = [contrast::CHECKS, rules::CHECKS, pages::CHECKS, keyboard::CHECKS, acts::CHECKS].concat();
     if std::env::args().any(|a| a == "--list") {
         for (name, _) in &checks {
             println!("{name}: test");
