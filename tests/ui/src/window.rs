@@ -30,12 +30,7 @@ fn prepare() {
     if PREPARED.replace(true) {
         return;
     }
-    let options = TestingBackendOptions {
-        mock_time: true,
-        threading: false,
-        renderer_name: Some("software".into()),
-        ..TestingBackendOptions::default()
-    };
+    let options = TestingBackendOptions { mock_time: true, threading: false, renderer_name: Some("software".into()) };
     slint::platform::set_platform(Box::new(TestingBackend::new(options))).expect("no other platform is set on this thread");
 }
 
