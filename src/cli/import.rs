@@ -1,6 +1,6 @@
 //! `import`: registers and logs from CSV.
 
-use super::{Answer, open};
+use super::{Answer, open, place};
 use crate::store::OpenMode;
 use anyhow::Context;
 use clap::Args;
@@ -22,7 +22,18 @@ pub fn run(store: Option<&Path>, args: &ImportArgs) -> anyhow::Result<Answer> {
             Ok((path.display().to_string(), bytes))
         })
         .collect::<anyhow::Result<Vec<_>>>()?;
-    let taken = open(store, OpenMode::Create)?.import(&files)?;
+    let path = place::store_path(store)?;
+    let was_there = path.exists();
+    let imported = open(store, OpenMode::Create).and_then(|app| Ok(app.import(&files)?));
+    if imported.is_err() && !was_there {
+        // Nothing was taken in: no empty store stays behind either.
+        for ending in ["", "-wal", "-shm"] {
+            let mut file = path.clone().into_os_string();
+            file.push(ending);
+            let _ = std::fs::remove_file(file);
+        }
+    }
+    let taken = imported?;
     let mut text = String::new();
     for remark in &taken.remarks {
         text.push_str(&format!("{}, line {}: remark: {}\n", remark.file, remark.line, remark.message));

@@ -75,7 +75,7 @@ fn verdict(rate: &LeakRate) -> String {
         Some(band) if band.holds_trigger => ", by less than the weighing error",
         _ => "",
     };
-    format!("{} of {}{band}", rate.verdict.name(), percent(rate.trigger))
+    format!("{} of {} %{band}", rate.verdict.name(), exact(rate.trigger))
 }
 
 /// Each rate with its sum worked through, each charge that asked for none with the reason.
@@ -102,7 +102,7 @@ pub fn explanations(assessment: &Assessment) -> Vec<String> {
                 rate.method.name(),
                 rate.percent,
                 percent(rate.percent),
-                percent(rate.trigger),
+                format_args!("{} %", exact(rate.trigger)),
                 rate.trigger_source,
                 rate.source,
             ));
