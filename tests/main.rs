@@ -3,6 +3,7 @@
 mod app;
 mod architecture;
 mod faults;
+mod print;
 mod property;
 mod reference;
 mod support;
