@@ -4,13 +4,14 @@
 //! `tests/main.rs` and the pictures of `src/bin/pictures.rs` run on one.
 
 mod picture;
+mod place_scenes;
 mod scenes;
 mod sources;
 mod sweep;
 mod window;
 
 pub use picture::{Picture, draw, save};
-pub use scenes::{SCENES, Scene};
+pub use scenes::{Scene, scenes};
 pub use sources::{SlintFile, literals, raw_text, screens};
 pub use sweep::{Acting, Fault, acting, sweep};
 pub use window::{DESK, PHONE, SIZES, Size, TABLET, TABLET_UPRIGHT, drag, open, press, press_key, settle};

@@ -1,6 +1,7 @@
 //! The pages with their preview content, each in the states worth looking at:
 //! what the pictures show and the sweep goes over.
 
+use crate::place_scenes::PLACE_SCENES;
 use bubblepoint_ui::{
     Act, AppWindow, BeginAdapter, ChargeAdapter, ChooseApplianceAdapter, ChooseCylinderAdapter, CloseAdapter, EntryAdapter, EntryStep,
     LeakTestAdapter, Page, Place, Reading, Refusal, RepairAdapter, Shell, VisitAdapter, VisitClosedAdapter,
@@ -14,8 +15,12 @@ pub struct Scene {
     pub set: fn(&AppWindow),
 }
 
-/// Every scene, in the order of a day's work.
-pub const SCENES: &[Scene] = &[
+/// Every scene: the visit in the order of a day's work, then the places.
+pub fn scenes() -> impl Iterator<Item = &'static Scene> {
+    VISIT_SCENES.iter().chain(PLACE_SCENES)
+}
+
+const VISIT_SCENES: &[Scene] = &[
     Scene { name: "begin", set: |w| open_without_visit(w, false) },
     Scene { name: "begin-add-site", set: |w| open_without_visit(w, true) },
     Scene { name: "visit", set: |w| act(w, Act::None) },

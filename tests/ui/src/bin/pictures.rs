@@ -3,7 +3,7 @@
 //! `pictures <folder> [words…]`: with words, only pages whose name holds one of them.
 
 use bubblepoint_ui::Appearance;
-use bubblepoint_ui_tests::{PHONE, SCENES, SIZES, draw, open, save, settle};
+use bubblepoint_ui_tests::{PHONE, SIZES, draw, open, save, scenes, settle};
 use std::path::PathBuf;
 use std::process::ExitCode;
 
@@ -19,7 +19,7 @@ fn main() -> ExitCode {
         return ExitCode::FAILURE;
     }
     let mut drawn = 0;
-    for scene in SCENES.iter().filter(|s| only.is_empty() || only.iter().any(|w| s.name.contains(w.as_str()))) {
+    for scene in scenes().filter(|s| only.is_empty() || only.iter().any(|w| s.name.contains(w.as_str()))) {
         for size in SIZES {
             let mut looks = vec![("light", Appearance::Light, 1.0), ("dark", Appearance::Dark, 1.0)];
             if size == PHONE {
