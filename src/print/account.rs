@@ -5,7 +5,7 @@ use super::fonts::Fonts;
 use super::layout::{Flow, Running};
 use super::mark::rising_bubbles;
 use super::plate::{Cell, Column, Field, dashed, grid, heading, table};
-use super::sheet::{Block, Paper, Style, paragraph};
+use super::sheet::{Block, Paper, Style, paragraph, wrap};
 use super::{PrintError, must_show, pdf, service::first_half, words};
 use crate::quantity::{Mass, Ratio};
 use crate::record::{AccountLine, AnnualAccount, DutyCounts, WeightedLoss};
@@ -61,7 +61,7 @@ fn running(fonts: &Fonts, account: &AnnualAccount) -> Running {
         head: [words::ANNUAL_ACCOUNT, &year, whose(account)].join(words::DOT),
         stamp: None,
         head_right: String::new(),
-        foot: fonts.visible(&["annual account", &year, whose(account), &account.program].join(words::DOT)),
+        foot: fonts.visible(&["annual account", &year, &account.program, whose(account)].join(words::DOT)),
         foot_notice: if account.demonstration { words::DEMONSTRATION.to_owned() } else { String::new() },
     }
 }
@@ -106,11 +106,15 @@ fn summary(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
         x += column;
     }
     flow.put(block);
-    let fields = [
+    let mut fields = Vec::new();
+    if flow.strip_cuts(whose(account), "") {
+        fields.push(Field::required("owner", whose(account)).strong());
+    }
+    fields.extend([
         Field::required("account kept by", &account.company.name).strong(),
         Field::required("address", &account.company.address),
         Field::required("certificate", &account.company.certificate),
-    ];
+    ]);
     for (index, row) in grid(fonts, inner, COLUMNS, &fields).into_iter().enumerate() {
         flow.put(if index == 0 { Block::empty(5.0).below(0.0, row).parted(inner, 0.25) } else { row });
     }
@@ -255,9 +259,13 @@ fn appliances(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
 }
 
 fn site_head(fonts: &Fonts, width: f32, site: &str, owner: &str) -> Block {
-    let mut block = Block::empty(17.0).parted(width, 0.5);
-    block.text(0.0, 13.5, &fonts.visible(site), Style::STRONG);
-    block.text_right(fonts, width, 13.5, &fonts.visible(owner), Style::CAPTION);
+    let name = paragraph(fonts, site, Style::STRONG, width * 0.55);
+    let owners = wrap(fonts, &fonts.visible(owner), Style::CAPTION, width * 0.4);
+    let mut block = Block::empty(4.8 + name.height.max(Style::CAPTION.leading() * owners.len() as f32)).parted(width, 0.5);
+    block.lay(name, 0.0, 4.8);
+    for (row, line) in owners.iter().enumerate() {
+        block.text_right(fonts, width, 13.5 + Style::CAPTION.leading() * row as f32, line, Style::CAPTION);
+    }
     block
 }
 
@@ -308,9 +316,9 @@ fn losses(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
 }
 
 fn duties(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
-    flow.open_plate("Duties that fell due", "", 40.0 + 18.0 * account.duties.len().min(12) as f32);
     let inner = flow.inner();
     if account.duties.is_empty() {
+        flow.open_plate("Duties that fell due", "", 20.0);
         flow.put(paragraph(fonts, "None fell due in this year.", Style::BODY, inner));
         flow.close_plate();
         return;
@@ -334,6 +342,8 @@ fn duties(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
     all = all.into_iter().map(Cell::bold).collect();
     rows.push(all);
     let set = table(fonts, inner, &heads, &rows, Style::BODY.size);
+    let height: f32 = set.rows.iter().map(|row| row.height).sum();
+    flow.open_plate("Duties that fell due", "", (set.head.height + height).min(250.0));
     flow.put_table(None, set.head, set.rows);
     flow.close_plate();
 }

@@ -185,7 +185,7 @@ fn say_transfer(transfer: &TransferFacts) -> Said {
 
 fn say_test(test: &TestFacts) -> Said {
     let kind = test.direct.map_or("", |direct| if direct { "direct" } else { "indirect" });
-    let mut fields: Vec<Field> = vec![Field::required(&["method", kind].join(", ").trim_end_matches(", ").to_owned(), &test.method)];
+    let mut fields: Vec<Field> = vec![Field::required(["method", kind].join(", ").trim_end_matches(", "), &test.method)];
     fields.push(Field::required("scope", &test.scope));
     fields.extend(Field::known("place", &test.place));
     fields.extend(Field::known("instrument", &test.instrument));

@@ -130,10 +130,11 @@ fn read(face: Face) -> Result<Glyphs, String> {
     let mut of = HashMap::new();
     let units = f32::from(head.units_per_em);
     let mapped = subtable.mappings_fn(|code, glyph| {
-        if let (Some(character), Ok(advance)) = (char::from_u32(code), hmtx.horizontal_advance(glyph)) {
-            if glyph != 0 && !character.is_control() {
-                of.insert(character, (glyph, f32::from(advance) * 1000.0 / units));
-            }
+        if let (Some(character), Ok(advance)) = (char::from_u32(code), hmtx.horizontal_advance(glyph))
+            && glyph != 0
+            && !character.is_control()
+        {
+            of.insert(character, (glyph, f32::from(advance) * 1000.0 / units));
         }
     });
     mapped.map_err(|_| failed("cmap"))?;

@@ -197,6 +197,13 @@ impl Flow {
         self.begin(title, state, "");
     }
 
+    /// Whether a plate's strip cannot hold its title in full, on a later page either.
+    pub(super) fn strip_cuts(&self, title: &str, state: &str) -> bool {
+        let wide = |text: &str, style: Style| self.fonts.width(&self.fonts.visible(text), style.face, style.size);
+        let room = self.width() - 3.0 * INSET - wide(state, Style::STRONG) - wide(words::CONTINUED, Style::BODY) - 6.0;
+        wide(title, Style::LEAD) > room
+    }
+
     fn begin(&mut self, title: String, state: String, after: &str) {
         let width = self.width();
         let mut strip = Block::empty(STRIP + 6.0);

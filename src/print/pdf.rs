@@ -83,9 +83,14 @@ fn finish(pdf: &PdfDocument, about: &About) -> Result<Vec<u8>, PrintError> {
     }
     let info = file.trailer.get(b"Info").and_then(|info| info.as_reference()).map_err(|why| failed(&why))?;
     let info = file.get_dictionary_mut(info).map_err(|why| failed(&why))?;
+    // Screen readers ask for the language. The catalogue takes over a string
+    // that is there, since printpdf does not hand on its string type.
+    let mut language = info.get(b"Identifier").map_err(|why| failed(&why))?.clone();
+    *language.as_str_mut().map_err(|why| failed(&why))? = b"en".to_vec();
     for key in ["GTS_PDFXVersion", "CreationDate", "ModDate", "Keywords", "Trapped"] {
         info.remove(key.as_bytes());
     }
+    file.catalog_mut().map_err(|why| failed(&why))?.set("Lang", language);
     file.compress();
     let mut bytes = Vec::new();
     file.save_to(&mut bytes).map_err(|why| failed(&why))?;

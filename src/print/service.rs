@@ -32,9 +32,10 @@ pub fn service_record(record: &ServiceRecord, paper: Paper) -> Result<Vec<u8>, P
     flow.space(GAP);
     cautions(&mut flow, fonts, record);
     flow.space(GAP);
-    signing::signatures(&mut flow, fonts, record);
+    let last = foot(flow.width(), fonts, record);
+    signing::signatures(&mut flow, fonts, record, last.iter().map(|line| line.height).sum());
     flow.space(GAP);
-    foot(&mut flow, fonts, record);
+    flow.put_together(last);
     let pages = flow.finish();
     pdf::write(fonts, &pages, &about(record, paper)?)
 }
@@ -86,12 +87,13 @@ fn running(fonts: &Fonts, record: &ServiceRecord) -> Running {
     let when = words::days(record.first_day, record.last_day);
     let stamp = |word: &str, below: &str| Some(Stamp { word: word.to_owned(), below: below.to_owned() });
     let short = short_fingerprint(record);
-    let mut foot = vec![words::SERVICE_RECORD.to_lowercase(), fonts.visible(&record.site.name)];
+    let mut foot = vec![words::SERVICE_RECORD.to_lowercase()];
     if !short.is_empty() {
         foot.push(format!("fingerprint {short}"));
         foot.push(words::copy(record.copy));
     }
     foot.push(fonts.visible(&record.program));
+    foot.push(fonts.visible(&record.site.name));
     Running {
         head: [words::SERVICE_RECORD, &record.site.name, &when].join(words::DOT),
         stamp: match &record.state {
@@ -144,11 +146,15 @@ fn visit(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord) {
     flow.open_plate(&record.site.name, &state, 60.0);
     let inner = flow.inner();
     let site = &record.site;
-    let mut fields = vec![
+    let mut fields = Vec::new();
+    if flow.strip_cuts(&site.name, &state) {
+        fields.push(Field::required("site", &site.name).strong());
+    }
+    fields.extend([
         Field::required("site address", &site.address),
         Field::required("owner", &site.owner),
         Field::required("operator", &site.operator),
-    ];
+    ]);
     if subtitle(fonts, record).1 {
         fields.extend(Field::known("job", &record.jobs.join(", ")));
         fields.extend(Field::known("times are local to", &site.time_zone));
@@ -199,7 +205,7 @@ fn appliance(flow: &mut Flow, fonts: &Fonts, part: &AppliancePart) {
     let mut strip = strip.join(words::DOT);
     let inner = flow.inner();
     let mut fields = Vec::new();
-    if fonts.width(&strip, Style::LEAD.face, Style::LEAD.size) > inner * 0.6 {
+    if flow.strip_cuts(&strip, words::finding(part.finding)) {
         // Gas and charge give way, and where the strip must cut even the name, it stands in full below.
         strip.clone_from(&facts.name);
         fields.push(Field::required("appliance", &facts.name).strong());
@@ -434,8 +440,8 @@ fn cautions(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord) {
     flow.close_plate();
 }
 
-fn foot(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord) {
-    let width = flow.width();
+/// Remarks, fingerprint, rulebooks, and where local codes come first.
+fn foot(width: f32, fonts: &Fonts, record: &ServiceRecord) -> Vec<Block> {
     let mut lines: Vec<Block> = Vec::new();
     for remark in &record.remarks {
         lines.push(dashed(fonts, width, remark));
@@ -449,7 +455,7 @@ fn foot(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord) {
         lines.push(paragraph(fonts, &format!("Judged by {}.", books.join("; ")), Style::CAPTION, width));
     }
     lines.push(paragraph(fonts, &format!("{} {}", words::LOCAL_CODES, words::CORRECTIONS), Style::CAPTION, width));
-    flow.put_together(lines);
+    lines
 }
 
 fn about(record: &ServiceRecord, paper: Paper) -> Result<pdf::About, PrintError> {

@@ -12,12 +12,12 @@ const GUTTER: f32 = 20.0;
 /// Height of the field for the strokes; its width follows from the ink's own.
 const FIELD: f32 = 48.0;
 
-pub(super) fn signatures(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord) {
+/// `foot` is the height of what follows and must not stand on a page alone.
+pub(super) fn signatures(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord, foot: f32) {
     let state = match &record.state {
         RecordState::Closed { on, at } => format!("{}, {at}", words::day(*on)),
         RecordState::Open | RecordState::Imported { .. } => "not signed".to_owned(),
     };
-    flow.open_plate("Signatures", &state, FIELD + 60.0);
     let inner = flow.inner();
     let half = (inner - GUTTER) / 2.0;
     let why_none = match &record.state {
@@ -39,10 +39,13 @@ pub(super) fn signatures(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord)
     both.lay(left, 0.0, 0.0);
     both.line((half + GUTTER / 2.0, 0.0), (half + GUTTER / 2.0, both.height), 0.25);
     both.lay(right, half + GUTTER, 0.0);
-    flow.put(both);
     let over = if record.handed_over.is_empty() { words::NOT_HANDED_OVER } else { &record.handed_over };
+    let rows = grid(fonts, inner, 6, &[Field::required("record handed over", over)]);
+    let handed: f32 = rows.iter().map(|row| row.height).sum();
+    flow.open_plate("Signatures", &state, both.height + 8.0 + handed + foot);
+    flow.put(both);
     flow.space(3.0);
-    for (index, row) in grid(fonts, inner, 6, &[Field::required("record handed over", over)]).into_iter().enumerate() {
+    for (index, row) in rows.into_iter().enumerate() {
         flow.put(if index == 0 { Block::empty(5.0).below(0.0, row).parted(inner, 0.25) } else { row });
     }
     flow.close_plate();
@@ -53,12 +56,13 @@ const REPRESENTATIVE: &str = "owner\u{2019}s or operator\u{2019}s representative
 
 fn base(fonts: &Fonts, width: f32, caption: &str, name: &str, line: bool) -> Block {
     let top = Style::CAPTION.leading();
-    let mut block = Block::empty(top + FIELD + 16.0);
+    let name = paragraph(fonts, name, Style::STRONG, width);
+    let mut block = Block::empty(top + FIELD + 2.5 + name.height.max(Style::STRONG.leading()) + 2.0);
     block.text(0.0, Style::CAPTION.ascent(), caption, Style::CAPTION);
     if line {
         block.line((0.0, top + FIELD), (width, top + FIELD), 0.5);
     }
-    block.lay(paragraph(fonts, name, Style::STRONG, width), 0.0, top + FIELD + 2.5);
+    block.lay(name, 0.0, top + FIELD + 2.5);
     block
 }
 
@@ -104,8 +108,9 @@ fn absent(fonts: &Fonts, width: f32, caption: &str, why: &str, reason: &str, nam
     if over > 0.0 {
         block = Block::empty(0.0);
         block.text(0.0, Style::CAPTION.ascent(), caption, Style::CAPTION);
-        block.height = top + text.height + 16.0;
-        block.lay(paragraph(fonts, name, Style::STRONG, width), 0.0, top + text.height + 3.0);
+        let name = paragraph(fonts, name, Style::STRONG, width);
+        block.height = top + text.height + 3.0 + name.height + 2.0;
+        block.lay(name, 0.0, top + text.height + 3.0);
     }
     block.lay(text, 0.0, top);
     block

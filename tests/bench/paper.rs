@@ -12,7 +12,7 @@ fn main() {
     let arguments: Vec<String> = std::env::args().collect();
     let runs = if arguments.iter().any(|argument| argument == "--quick") { 3 } else { 50 };
     let into = arguments.iter().position(|argument| argument == "--into").and_then(|at| arguments.get(at + 1));
-    let records: [(&str, ServiceRecord); 9] = [
+    let records: [(&str, ServiceRecord); 10] = [
         ("over-trigger", fixtures::over_trigger()),
         ("clean", fixtures::clean()),
         ("nobody-present", fixtures::nobody_present()),
@@ -22,6 +22,7 @@ fn main() {
         ("imported", fixtures::imported()),
         ("large", fixtures::large()),
         ("many-tongues", fixtures::many_tongues()),
+        ("long-words", fixtures::long_words()),
     ];
     println!("{:<18} {:>9} {:>9} {:>7}", "paper", "first ms", "ms", "KB");
     for (name, record) in &records {

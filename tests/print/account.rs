@@ -49,6 +49,21 @@ fn pounds_are_shown_where_they_are_asked_for() {
 }
 
 #[test]
+fn long_names_stand_in_full() {
+    let long =
+        |what: &str| format!("{what} of the Outer Breakwater and Lesser Fish Quay Amalgamated Cold Stores, formerly Brandeis & Widow");
+    let mut account = fixtures::account();
+    account.owner = Some(long("Owners"));
+    account.appliances[0].site = long("Store");
+    account.appliances[0].owner = long("Trust");
+    account.appliances[0].appliance = long("Rack");
+    let text: String = text(&account).split_whitespace().collect();
+    for name in [long("Owners"), long("Store"), long("Trust"), long("Rack")] {
+        assert!(text.contains(&name.split_whitespace().collect::<String>()), "{name}: {text}");
+    }
+}
+
+#[test]
 fn an_empty_year_is_a_page_that_says_so() {
     let account = AnnualAccount { gases: vec![], appliances: vec![], duties: vec![], remarks: vec![], owner: None, ..fixtures::account() };
     let text = text(&account);

@@ -17,6 +17,7 @@ fn records() -> Vec<(&'static str, ServiceRecord)> {
         ("imported", fixtures::imported()),
         ("large", fixtures::large()),
         ("many tongues", fixtures::many_tongues()),
+        ("long words", fixtures::long_words()),
     ]
 }
 
@@ -111,6 +112,8 @@ fn files_claim_nothing_they_are_not() {
             assert!(!info.has(key.as_bytes()), "{name}: {key}");
         }
         assert!(info.has(b"Title"));
+        let catalogue = document.catalog().unwrap();
+        assert_eq!(catalogue.get(b"Lang").unwrap().as_str().unwrap(), b"en");
     }
 }
 
@@ -141,9 +144,7 @@ fn no_text_leaves_the_page() {
         let read = Read::read(&bytes);
         for (number, page) in read.pages.iter().enumerate() {
             for run in &page.runs {
-                // Widths are not read back; half an em a character is less than the font's average.
-                let least = run.text.chars().count() as f32 * run.size * 0.3;
-                let inside = run.x >= 41.5 && run.x + least <= page.size.0 - 30.0 && run.y > 12.0 && run.y < page.size.1 - 20.0;
+                let inside = run.x >= 41.5 && run.x + run.width <= page.size.0 - 41.5 && run.y > 12.0 && run.y < page.size.1 - 20.0;
                 assert!(inside, "{name}, page {}: \u{201c}{}\u{201d} at {}, {}", number + 1, run.text, run.x, run.y);
             }
         }
@@ -158,9 +159,9 @@ fn no_text_covers_another() {
         for (number, page) in read.pages.iter().enumerate() {
             for (index, a) in page.runs.iter().enumerate() {
                 for b in &page.runs[index + 1..] {
-                    let least = |text: &str, size: f32| text.chars().count() as f32 * size * 0.36;
-                    let apart_y = (a.y - b.y).abs() >= a.size.min(b.size) * 0.72;
-                    let apart_x = a.x + least(&a.text, a.size) <= b.x || b.x + least(&b.text, b.size) <= a.x;
+                    // Capitals are 0.7 em high, and some room belongs above them.
+                    let apart_y = (a.y - b.y).abs() >= 0.9 * if a.y < b.y { a.size } else { b.size };
+                    let apart_x = a.x + a.width <= b.x || b.x + b.width <= a.x;
                     assert!(
                         apart_y || apart_x,
                         "{name} on {paper:?}, page {}: \u{201c}{}\u{201d} over \u{201c}{}\u{201d}",

@@ -428,6 +428,44 @@ pub fn many_tongues() -> ServiceRecord {
     record
 }
 
+/// Everything that can be long is.
+pub fn long_words() -> ServiceRecord {
+    let long =
+        |what: &str| format!("{what} of the Outer Breakwater and Lesser Fish Quay Amalgamated Cold Stores, formerly Brandeis & Widow");
+    let mut record = over_trigger();
+    record.company.name = long("Company");
+    record.company.address = long("17 Ropewalk");
+    record.site.name = long("Cold store");
+    record.site.address = long("Pier 3");
+    record.site.owner = long("Trust");
+    record.site.operator = long("Operators");
+    record.jobs = (0..12).map(|index| format!("W-11{index:02}/breakwater")).collect();
+    record.people[0].name = long("Maren Tolk");
+    let part = &mut record.appliances[0];
+    part.appliance.name = long("Rack");
+    part.appliance.place = long("Plant room");
+    part.appliance.description = long("Rack");
+    part.appliance.serial = "HX".repeat(90);
+    for entry in &mut part.entries {
+        entry.person = long("Maren Tolk");
+        entry.reason = long("Because");
+        entry.corrects = long("Record 3f9a c1d2, charge of 09:41");
+        if let Work::Transfer(transfer) = &mut entry.work {
+            transfer.net = "12 lb 4.5 oz, read twice and agreed with the foreman of the quay".into();
+            transfer.cylinder = long("S-204");
+            transfer.purpose = "replaces gas recovered in this job before the repair of the flare at the liquid line drier".into();
+        }
+    }
+    for duty in &mut part.duties {
+        duty.duty = "leakage detection system check of the whole assembly".into();
+        duty.state = "suspended while mothballed".into();
+    }
+    part.leak_rates[0].applies_because = long("Because the appliance");
+    record.counterparty = Some(Counterparty::Refused { name: long("Ivo Brandeis"), reason: REASON.repeat(4) });
+    record.handed_over = long("to the harbour master");
+    record
+}
+
 pub fn account() -> AnnualAccount {
     let line = |opening: &str, bought: &str, charged: &str, recovered: &str, sent: &str, lost: &str, closing: &str| AccountLine {
         opening: Some(kg(opening)),

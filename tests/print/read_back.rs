@@ -23,6 +23,8 @@ pub struct Run {
     pub x: f32,
     pub y: f32,
     pub size: f32,
+    /// In points, from the widths the file itself gives.
+    pub width: f32,
 }
 
 impl Paper {
@@ -56,6 +58,12 @@ fn page(document: &Document, id: lopdf::ObjectId) -> Page {
         .into_iter()
         .map(|(name, font)| (String::from_utf8_lossy(&name).into_owned(), to_unicode(document, font)))
         .collect();
+    let widths: BTreeMap<String, BTreeMap<u16, f32>> = document
+        .get_page_fonts(id)
+        .expect("fonts")
+        .into_iter()
+        .map(|(name, font)| (String::from_utf8_lossy(&name).into_owned(), glyph_widths(document, font)))
+        .collect();
     let dictionary = document.get_dictionary(id).unwrap();
     let media = dictionary.get(b"MediaBox").and_then(Object::as_array).unwrap();
     let mut page = Page { runs: vec![], strokes: vec![], size: (number(&media[2]), number(&media[3])) };
@@ -82,11 +90,10 @@ fn page(document: &Document, id: lopdf::ObjectId) -> Page {
                     }
                 }
                 let map = &fonts[&font];
-                let text = bytes
-                    .chunks(2)
-                    .map(|pair| map.get(&u16::from_be_bytes([pair[0], pair[1]])).map_or("\u{FFFD}", String::as_str))
-                    .collect();
-                page.runs.push(Run { text, x: at.0, y: at.1, size });
+                let codes: Vec<u16> = bytes.chunks(2).map(|pair| u16::from_be_bytes([pair[0], pair[1]])).collect();
+                let text = codes.iter().map(|code| map.get(code).map_or("\u{FFFD}", String::as_str)).collect();
+                let width = codes.iter().map(|code| widths[&font][code]).sum::<f32>() * size / 1000.0;
+                page.runs.push(Run { text, x: at.0, y: at.1, size, width });
             }
             "m" => points = 1,
             "l" | "c" => points += 1,
@@ -100,6 +107,35 @@ fn page(document: &Document, id: lopdf::ObjectId) -> Page {
 fn resolved<'a>(document: &'a Document, dictionary: &'a Dictionary, key: &[u8]) -> &'a Object {
     let object = dictionary.get(key).unwrap_or_else(|_| panic!("no {}", String::from_utf8_lossy(key)));
     object.as_reference().map_or(object, |id| document.get_object(id).unwrap())
+}
+
+fn descendant<'a>(document: &'a Document, font: &'a Dictionary) -> &'a Dictionary {
+    match &resolved(document, font, b"DescendantFonts").as_array().unwrap()[0] {
+        Object::Reference(id) => document.get_dictionary(*id).unwrap(),
+        other => other.as_dict().unwrap(),
+    }
+}
+
+/// ISO 32000-1, 9.7.4.3: `c [w …]` and `first last w`.
+fn glyph_widths(document: &Document, font: &Dictionary) -> BTreeMap<u16, f32> {
+    let list = resolved(document, descendant(document, font), b"W").as_array().unwrap();
+    let mut widths = BTreeMap::new();
+    let mut at = 0;
+    let code = |object: &Object| u16::try_from(object.as_i64().unwrap()).unwrap();
+    while at < list.len() {
+        if let Ok(run) = list[at + 1].as_array() {
+            for (step, width) in run.iter().enumerate() {
+                widths.insert(code(&list[at]) + u16::try_from(step).unwrap(), number(width));
+            }
+            at += 2;
+        } else {
+            for glyph in code(&list[at])..=code(&list[at + 1]) {
+                widths.insert(glyph, number(&list[at + 2]));
+            }
+            at += 3;
+        }
+    }
+    widths
 }
 
 fn to_unicode(document: &Document, font: &Dictionary) -> BTreeMap<u16, String> {
@@ -136,12 +172,7 @@ pub fn font_programs(document: &Document) -> BTreeMap<String, Vec<u8>> {
     let mut programs = BTreeMap::new();
     for (_, id) in document.get_pages() {
         for font in document.get_page_fonts(id).unwrap().values() {
-            let descendants = resolved(document, font, b"DescendantFonts").as_array().unwrap();
-            let descendant = match &descendants[0] {
-                Object::Reference(id) => document.get_dictionary(*id).unwrap(),
-                other => other.as_dict().unwrap(),
-            };
-            let descriptor = resolved(document, descendant, b"FontDescriptor").as_dict().unwrap();
+            let descriptor = resolved(document, descendant(document, font), b"FontDescriptor").as_dict().unwrap();
             let name = String::from_utf8_lossy(descriptor.get(b"FontName").unwrap().as_name().unwrap()).into_owned();
             let file = resolved(document, descriptor, b"FontFile2").as_stream().unwrap();
             programs.insert(name, file.get_plain_content().unwrap());

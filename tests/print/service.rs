@@ -212,6 +212,16 @@ fn names_of_many_tongues_read_back_right() {
 }
 
 #[test]
+fn long_names_stand_in_full() {
+    let record = fixtures::long_words();
+    let mut wanted = vec![&record.company.name, &record.company.address, &record.site.name, &record.site.address, &record.site.owner];
+    wanted.extend([&record.people[0].name, &record.appliances[0].appliance.name, &record.appliances[0].appliance.serial]);
+    wanted.extend(&record.jobs);
+    let wanted: Vec<&str> = wanted.into_iter().map(String::as_str).collect();
+    assert_all(&record, &wanted);
+}
+
+#[test]
 fn a_signed_name_that_cannot_be_printed_is_refused_by_name() {
     let mut record = fixtures::clean();
     record.technician.as_mut().unwrap().name = "\u{738B} Wei".into();
