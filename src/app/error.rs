@@ -24,6 +24,9 @@ pub enum AppError {
     /// A record could not be made.
     #[error("The record could not be made: {0}. Nothing was closed.")]
     Record(String),
+    /// A record could not be put on paper.
+    #[error("Nothing was printed: {0}.")]
+    Print(#[from] crate::print::PrintError),
 }
 
 impl AppError {

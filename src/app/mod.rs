@@ -3,13 +3,16 @@
 //! Every rule for new entries is in [`refusals`]; window and commands ask the
 //! same code. Clock and ids are passed in.
 
+mod account;
 mod clock;
 mod closing;
+mod demonstration;
 mod edits;
 mod entries;
 mod error;
 mod import;
 mod inputs;
+mod paper;
 mod refusals;
 mod service_bans;
 mod service_record;
@@ -20,6 +23,7 @@ mod weighing;
 
 pub use clock::{Clock, FreshIds, IdSource, SystemClock};
 pub use closing::Correction;
+pub use demonstration::{DemonstrationError, build_demonstration, demonstration_in_memory};
 pub use edits::{NewAppliance, NewSite};
 pub use entries::Prepared;
 pub use error::AppError;
@@ -27,6 +31,7 @@ pub use import::{ImportError, Imported, Remark};
 pub use inputs::{
     ChargeInput, Common, NewEntry, PressureInput, RecoverInput, RecycleInput, RepairInput, RetrofitInput, SimpleAct, TestInput,
 };
+pub use paper::{Printed, Recognised, fit};
 pub use refusals::{Kind, Refusal, measured};
 pub use service_bans::{ServiceBan, service_bans};
 pub use standing::{ApplianceStanding, CylinderStanding, WeighingGap};

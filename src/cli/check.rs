@@ -1,11 +1,19 @@
 //! `check` and `backup`.
 
-use super::{Answer, open_store};
+use super::{Answer, open, open_store};
+use crate::app::{App, Recognised};
+use crate::ledger::VisitId;
+use crate::store::OpenMode;
+use anyhow::Context;
 use clap::Args;
 use std::path::{Path, PathBuf};
 
 #[derive(Debug, Args)]
-pub struct CheckArgs {}
+pub struct CheckArgs {
+    /// Saved records: PDFs printed here, or closed records as bytes; without any, the store itself
+    #[arg(value_name = "FILE")]
+    files: Vec<PathBuf>,
+}
 
 #[derive(Debug, Args)]
 pub struct BackupArgs {
@@ -14,7 +22,10 @@ pub struct BackupArgs {
     file: PathBuf,
 }
 
-pub fn check(store: Option<&Path>, _args: &CheckArgs) -> anyhow::Result<Answer> {
+pub fn check(store: Option<&Path>, args: &CheckArgs) -> anyhow::Result<Answer> {
+    if !args.files.is_empty() {
+        return saved(&open(store, OpenMode::MustExist)?, &args.files);
+    }
     let store = open_store(store)?;
     let report = store.check()?;
     let mut text = String::new();
@@ -31,6 +42,49 @@ pub fn check(store: Option<&Path>, _args: &CheckArgs) -> anyhow::Result<Answer> 
     let verdict = if report.sound() { "sound" } else { "NOT sound; keep this file, and go back to a backup" };
     text.push_str(&format!("{} closed records, {} with a fault; the store is {verdict}\n", report.records.len(), bad.len()));
     Ok(Answer { text, well: report.sound() })
+}
+
+/// Each file compared with what the store holds and prints.
+fn saved(app: &App, files: &[PathBuf]) -> anyhow::Result<Answer> {
+    let (mut text, mut well) = (String::new(), true);
+    for file in files {
+        let bytes = std::fs::read(file).with_context(|| format!("{} cannot be read", file.display()))?;
+        let (verdict, sound) = judged(app, app.recognise(&bytes)?)?;
+        text.push_str(&format!("{}: {verdict}\n", file.display()));
+        well &= sound;
+    }
+    Ok(Answer { text, well })
+}
+
+fn judged(app: &App, found: Recognised) -> anyhow::Result<(String, bool)> {
+    Ok(match found {
+        Recognised::Print(visit, _) => (format!("sound; byte for byte what this store prints for {}", named(app, visit)?), true),
+        Recognised::Closed(visit) => (format!("sound; the very bytes that were signed for {}", named(app, visit)?), true),
+        Recognised::OtherPrint(visit) => (
+            format!(
+                "NOT verified; it bears the mark of {} but differs from a print of today. The file was changed, or since it was printed \
+                 the record was signed later, handed over or corrected, or another version of the program printed it. Print it again with \
+                 bubblepoint record {visit} and compare",
+                named(app, visit)?
+            ),
+            false,
+        ),
+        Recognised::Broken(visit) => {
+            (format!("NOT verified; in the store itself {} does not have its fingerprint", named(app, visit)?), false)
+        }
+        Recognised::Foreign { fingerprint } => {
+            (format!("a closed record with the fingerprint {fingerprint}, which is not in this store; name its store with --store"), false)
+        }
+        Recognised::Unknown => ("NOT verified; no closed record of this store is in it".to_owned(), false),
+    })
+}
+
+/// `record 3f9ac1d2 of 2026-03-03, Fish market`.
+fn named(app: &App, visit: VisitId) -> anyhow::Result<String> {
+    let visit = app.store().visit(visit)?.context("the visit is gone")?;
+    let site = app.store().site(visit.site)?.map(|site| site.name).unwrap_or_default();
+    let fingerprint: String = visit.fingerprint.unwrap_or_default().chars().take(8).collect();
+    Ok(format!("record {fingerprint} of {}, {site}", visit.date))
 }
 
 pub fn backup(store: Option<&Path>, args: &BackupArgs) -> anyhow::Result<Answer> {

@@ -1,10 +1,14 @@
 //! The commands, one file each: parse, act, answer, exit code.
 
+mod account;
 pub mod assess;
 pub mod calc;
 mod check;
+mod demo;
+mod file;
 mod import;
 mod place;
+mod record;
 mod table;
 mod visits;
 
@@ -30,13 +34,19 @@ pub struct Arguments {
 
 #[derive(Debug, Subcommand)]
 pub enum Command {
+    /// Build a demonstration, print its records and account, open it
+    Demo(demo::DemoArgs),
     /// Read registers and logs from CSV, all or nothing
     Import(import::ImportArgs),
     /// Leak rates, verdicts, duties and losses as of a day
     Assess(assess::AssessArgs),
     /// Visits with their ids, state and fingerprint
     Visits(visits::VisitsArgs),
-    /// The store's integrity and every closed record
+    /// Service records as PDF
+    Record(record::RecordArgs),
+    /// The account of one calendar year
+    Account(account::AccountArgs),
+    /// The store's integrity and every closed record; or saved records
     Check(check::CheckArgs),
     /// A consistent copy of the store while it is in use
     Backup(check::BackupArgs),
@@ -98,9 +108,12 @@ fn print(text: &str) -> std::io::Result<()> {
 fn run(arguments: &Arguments) -> anyhow::Result<Answer> {
     let store = arguments.store.as_deref();
     match &arguments.command {
+        Some(Command::Demo(args)) => demo::run(store, args),
         Some(Command::Import(args)) => import::run(store, args),
         Some(Command::Assess(args)) => assess::run(store, args),
         Some(Command::Visits(args)) => visits::run(store, args),
+        Some(Command::Record(args)) => record::run(store, args),
+        Some(Command::Account(args)) => account::run(store, args),
         Some(Command::Check(args)) => check::check(store, args),
         Some(Command::Backup(args)) => check::backup(store, args),
         Some(Command::Calc(args)) => Ok(Answer::well(calc::run(args)?)),

@@ -4,7 +4,7 @@
 use super::migrations::MIGRATIONS;
 use super::upkeep::copy_to;
 use super::{Store, StoreError};
-use rusqlite::{Connection, OpenFlags, Transaction, TransactionBehavior};
+use rusqlite::{Connection, OpenFlags, OptionalExtension, Transaction, TransactionBehavior};
 use std::fs::File;
 use std::io::Read;
 use std::path::{Path, PathBuf};
@@ -55,6 +55,24 @@ impl Store {
             return Err(StoreError::NoSafePlace { path: path.to_owned() });
         }
         Ok(store)
+    }
+
+    /// A setting of the store at `path`, read without opening it for work:
+    /// nothing is migrated and no file appears beside it. What another program
+    /// wrote and has not yet folded in is not seen.
+    ///
+    /// # Errors
+    /// As [`Store::open`]; `None` also where there is no store yet.
+    pub fn peek_setting(path: &Path, key: &str) -> Result<Option<String>, StoreError> {
+        if !matches!(look(path, MIGRATIONS.len())?, Found::Store) {
+            return Ok(None);
+        }
+        let told = |e| StoreError::from_sqlite(e, Some(path));
+        let file = path.to_string_lossy().replace('%', "%25").replace('?', "%3f").replace('#', "%23");
+        let flags = OpenFlags::SQLITE_OPEN_READ_ONLY | OpenFlags::SQLITE_OPEN_URI | OpenFlags::SQLITE_OPEN_NO_MUTEX;
+        let connection = Connection::open_with_flags(format!("file:{file}?immutable=1"), flags).map_err(told)?;
+        let value = connection.query_row("SELECT value FROM settings WHERE key = ?1", [key], |row| row.get(0));
+        value.optional().map_err(told)
     }
 
     /// A store that lasts as long as it is open, for trying things out.

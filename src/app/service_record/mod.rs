@@ -5,6 +5,8 @@ mod entry;
 mod verdict;
 mod wording;
 
+pub(super) use verdict::ODP_TABLE;
+
 use super::{App, AppError, PROGRAM};
 use crate::ledger::{
     Appliance, ApplianceFacts, CautionSeen, Closing, Counterpart, Entry, Instrument, Person, PersonId, Registers, Signature, Visit,

@@ -22,7 +22,8 @@ pub struct Judged {
     pub does_not_count: HashMap<EntryId, String>,
 }
 
-const ODP_TABLE: &str = "Montreal Protocol, annexes A to E, by composition";
+/// Where ODP comes from, as papers name it.
+pub(in crate::app) const ODP_TABLE: &str = "Montreal Protocol, annexes A to E, by composition";
 
 /// Judges an appliance as of the visit's last day. `own` are the visit's entries on it.
 pub fn judge(site: &Site, appliance: &Appliance, lines: &[Line], own: &[&Entry], last_day: NaiveDate) -> Judged {
