@@ -54,6 +54,7 @@ impl App {
         }
         account.duties = tally.finish();
         self.cylinders_in(&mut gases, &mut account, span)?;
+        gases.retain(|_, sum| !sum.is_nothing());
         account.gases = gases.into_iter().map(|(refrigerant, sum)| sum.finish(refrigerant)).collect();
         account.remarks.extend(unnamed.remarks());
         account.remarks.extend(self.unfinished(&registers, &plants, span)?);
@@ -340,6 +341,12 @@ impl GasSum {
         self.gwp_tables.insert(held.loss.gwp_table.clone());
     }
 
+    /// A gas that no cylinder held and that nobody moved.
+    fn is_nothing(&self) -> bool {
+        let still = [self.charged, self.recovered, self.lost].iter().all(|mass| mass.is_zero());
+        still && [self.opening, self.closing].iter().flatten().all(|mass| mass.is_zero()) && self.opening.is_some() == self.closing.is_some()
+    }
+
     fn finish(self, refrigerant: String) -> GasAccount {
         let tables = |tables: BTreeSet<String>| tables.into_iter().collect::<Vec<_>>().join("; ");
         GasAccount {
@@ -488,7 +495,7 @@ mod tests {
         let app = app();
         let account = app.annual_account(2026, Some("Quays Company")).unwrap();
         assert_eq!(account.appliances.iter().map(|line| line.appliance.as_str()).collect::<Vec<_>>(), ["H-1"]);
-        assert_eq!((account.unit, account.gases.len()), (MassUnit::Kilogram, 1));
+        assert_eq!((account.unit, account.gases.len()), (MassUnit::Kilogram, 0));
         assert_eq!(app.annual_account(2026, Some("Harbour Estates")).unwrap().unit, MassUnit::Pound);
         let unknown = app.annual_account(2026, Some("Nobody")).unwrap_err().to_string();
         assert!(unknown.contains("Harbour Estates; Quays Company"), "{unknown}");

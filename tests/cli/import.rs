@@ -1,0 +1,70 @@
+use super::{Desk, stocked};
+
+#[test]
+fn five_kinds_in_any_order_make_a_store() {
+    let desk = stocked();
+    let visits = desk.on_store(&["visits", "--format", "json"]).done();
+    let visits: serde_json::Value = serde_json::from_str(&visits).unwrap();
+    let days: Vec<_> = visits.as_array().unwrap().iter().map(|visit| (visit["date"].as_str(), visit["state"].as_str())).collect();
+    assert_eq!(days, [(Some("2025-09-04"), Some("imported")), (Some("2026-03-03"), Some("imported"))]);
+}
+
+#[test]
+fn a_file_is_taken_once() {
+    let desk = stocked();
+    let again = desk.on_store(&["import", "log.csv"]).refused();
+    assert!(again.contains("log.csv was taken in already, on "), "{again}");
+    assert!(again.contains("nothing was imported"), "{again}");
+}
+
+#[test]
+fn what_is_odd_is_taken_and_remarked_on() {
+    let desk = stocked();
+    let text = desk.import(&[(
+        "odd.csv",
+        "date,appliance,what,amount,unit,result\n2026-04-01,R-1,initial verification test,,,pass\n2026-04-02,R-1,charge,120,lb,\n",
+    )]);
+    assert!(text.contains("odd.csv, line 2: remark: an initial verification test without a repair before it"), "{text}");
+    assert!(text.contains("odd.csv, line 3: remark: more was charged at once"), "{text}");
+    assert!(text.contains("imported: 2 entries"), "{text}");
+}
+
+#[test]
+fn semicolons_bom_and_decimal_comma_are_read() {
+    let desk = stocked();
+    desk.import(&[("comma.csv", "\u{feff}date;appliance;what;amount;unit\n2026-05-05;R-1;charge;1,5;kg\n")]);
+    let assessed = desk.on_store(&["assess", "--on", "2026-05-05", "--format", "json"]).done();
+    let assessed: serde_json::Value = serde_json::from_str(&assessed).unwrap();
+    // 4.5359237 kg before and 1.5 kg now.
+    assert_eq!(assessed["appliances"][0]["this_year"]["charged_kg"], "6.0359237");
+}
+
+#[test]
+fn one_bad_line_in_two_megabytes_refuses_all_and_is_named() {
+    let desk = stocked();
+    let mut text = String::from("date,appliance,what,amount,unit,note\n");
+    let mut line = 1;
+    while text.len() < 2_000_000 {
+        text.push_str("2026-06-01,R-1,note,,,looked at the pressures and left it running\n");
+        line += 1;
+    }
+    text.push_str("2026-06-01,R-1,charge,0,lb,\n");
+    let bad = line + 1;
+    text.push_str("2026-06-02,R-1,note,,,last line\n");
+    desk.write("large.csv", &text);
+    let refused = desk.on_store(&["import", "large.csv"]).refused();
+    assert!(refused.contains("1 line cannot be taken; nothing was imported"), "{refused}");
+    assert!(refused.contains(&format!("large.csv, line {bad}, column amount:")), "{refused}");
+    let visits = desk.on_store(&["visits", "--from", "2026-06-01"]).done();
+    assert_eq!(visits, "no visits\n");
+}
+
+#[test]
+fn every_bad_line_is_listed() {
+    let desk = Desk::new();
+    desk.write("sites.csv", super::SITES);
+    desk.write("appliances.csv", "appliance,site,category,refrigerant\nA,Fish market cold store,comfort cooling,R-2O\nB,Nowhere,shed,R-22\n");
+    let refused = desk.on_store(&["import", "sites.csv", "appliances.csv"]).refused();
+    assert!(refused.contains("appliances.csv, line 2, column refrigerant:"), "{refused}");
+    assert!(refused.contains("appliances.csv, line 3, column category:"), "{refused}");
+}
