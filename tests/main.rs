@@ -2,6 +2,7 @@
 
 mod app;
 mod architecture;
+mod cli;
 mod faults;
 mod print;
 mod property;

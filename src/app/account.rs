@@ -54,7 +54,8 @@ impl App {
         }
         account.duties = tally.finish();
         self.cylinders_in(&mut gases, &mut account, span)?;
-        gases.retain(|_, sum| !sum.is_nothing());
+        let with_cylinders = account.owner.is_none();
+        gases.retain(|_, sum| !sum.is_nothing(with_cylinders));
         account.gases = gases.into_iter().map(|(refrigerant, sum)| sum.finish(refrigerant)).collect();
         account.remarks.extend(unnamed.remarks());
         account.remarks.extend(self.unfinished(&registers, &plants, span)?);
@@ -341,10 +342,11 @@ impl GasSum {
         self.gwp_tables.insert(held.loss.gwp_table.clone());
     }
 
-    /// A gas that no cylinder held and that nobody moved.
-    fn is_nothing(&self) -> bool {
+    /// A gas that nobody moved and, where cylinders are counted, none held.
+    fn is_nothing(&self, with_cylinders: bool) -> bool {
+        let nothing = Some(Mass::ZERO);
         let still = [self.charged, self.recovered, self.lost].iter().all(|mass| mass.is_zero());
-        still && [self.opening, self.closing].iter().flatten().all(|mass| mass.is_zero()) && self.opening.is_some() == self.closing.is_some()
+        still && (!with_cylinders || (self.opening, self.closing) == (nothing, nothing))
     }
 
     fn finish(self, refrigerant: String) -> GasAccount {

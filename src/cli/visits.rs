@@ -59,7 +59,12 @@ pub fn run(store: Option<&Path>, args: &VisitsArgs) -> anyhow::Result<Answer> {
     }
     let mut table = TextTable::new(&["date", "site", "state", "visit", "fingerprint"]);
     for row in rows {
-        table.row([row.date, row.site, row.state.name().to_owned(), row.visit, row.fingerprint.unwrap_or_default()]);
+        let mut fingerprint = row.fingerprint.unwrap_or_default();
+        if args.format == Format::Table {
+            // Its beginning, as a record's paper shows it and `record` takes it.
+            fingerprint.truncate(8);
+        }
+        table.row([row.date, row.site, row.state.name().to_owned(), row.visit, fingerprint]);
     }
     Ok(Answer::well(if args.format == Format::Csv {
         table.csv()?

@@ -63,7 +63,10 @@ fn one_bad_line_in_two_megabytes_refuses_all_and_is_named() {
 fn every_bad_line_is_listed() {
     let desk = Desk::new();
     desk.write("sites.csv", super::SITES);
-    desk.write("appliances.csv", "appliance,site,category,refrigerant\nA,Fish market cold store,comfort cooling,R-2O\nB,Nowhere,shed,R-22\n");
+    desk.write(
+        "appliances.csv",
+        "appliance,site,category,refrigerant\nA,Fish market cold store,comfort cooling,R-2O\nB,Nowhere,shed,R-22\n",
+    );
     let refused = desk.on_store(&["import", "sites.csv", "appliances.csv"]).refused();
     assert!(refused.contains("appliances.csv, line 2, column refrigerant:"), "{refused}");
     assert!(refused.contains("appliances.csv, line 3, column category:"), "{refused}");

@@ -26,7 +26,8 @@ fn all_visits_are_printed_each_under_its_own_name() {
 #[test]
 fn one_visit_by_its_id_its_fingerprint_or_its_appliance_and_day() {
     let desk = demonstration();
-    let visits: serde_json::Value = serde_json::from_str(&desk.on_store(&["visits", "--appliance", "FM-1", "--format", "json"]).done()).unwrap();
+    let visits: serde_json::Value =
+        serde_json::from_str(&desk.on_store(&["visits", "--appliance", "FM-1", "--format", "json"]).done()).unwrap();
     let visit = visits.as_array().unwrap().iter().find(|visit| visit["state"] == "closed").unwrap();
     let text = |field: &str| visit[field].as_str().unwrap();
     let by_id = desk.on_store(&["record", text("visit")]).done();
