@@ -170,7 +170,7 @@ fn gases(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
             row
         })
         .collect();
-    let set = table(fonts, inner, &columns(vec![Column::left("gas", 1.15)]), &rows, SIZE);
+    let set = table(fonts, inner, &columns(vec![Column::left("gas", 1.5)]), &rows, SIZE);
     flow.put_table(None, set.head, set.rows);
     flow.space(4.0);
     let mut notes = vec![paragraph(
@@ -218,7 +218,7 @@ fn appliances(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
     }
     let heads = [
         Column::left("appliance", 1.8),
-        Column::left("gas", 1.0),
+        Column::left("gas", 1.4),
         Column::right("full charge\nfirst day", 1.0),
         Column::right("charged", 1.0),
         Column::right("recovered", 1.0),
