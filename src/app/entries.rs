@@ -251,7 +251,7 @@ impl Desk<'_> {
         if cylinder.is_none() && input.purpose != crate::ledger::ChargePurpose::FactoryCharge {
             return Err(AppError::input("cylinder", "Choose the cylinder; only a factory charge comes without one."));
         }
-        let weighed = self.weighed(&input.reading, Direction::Out, cylinder.is_some(), input.full_hoses)?;
+        let weighed = self.weighed(&input.reading, Direction::Out, cylinder.is_some() && self.without.is_none(), input.full_hoses)?;
         let mut refused =
             refusals::of_charge(self.standing, cylinder.as_ref(), input.purpose, weighed.transfer.mass, weighed.gross_after, self.at.date);
         let gap = self.gap(cylinder.as_ref(), &weighed, &input.weighing_gap, &mut refused);
@@ -272,7 +272,7 @@ impl Desk<'_> {
 
     fn recover(&self, input: &RecoverInput) -> Result<Work, AppError> {
         let cylinder = self.cylinder(input.cylinder)?;
-        let weighed = self.weighed(&input.reading, Direction::Into, true, input.full_hoses)?;
+        let weighed = self.weighed(&input.reading, Direction::Into, self.without.is_none(), input.full_hoses)?;
         let mut refused =
             refusals::of_recovery(self.standing, &cylinder, weighed.transfer.mass, weighed.gross_after, self.oil_factor, self.at.date);
         let gap = self.gap(Some(&cylinder), &weighed, &input.weighing_gap, &mut refused);
@@ -298,6 +298,7 @@ impl Desk<'_> {
         cylinder_standing(self.store, id, self.at.date, self.without)
     }
 
+    /// Gas from or into a cylinder is weighed twice; a correction may state the right net alone.
     fn weighed(
         &self,
         reading: &Reading,

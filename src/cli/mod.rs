@@ -11,6 +11,7 @@ mod place;
 mod record;
 mod table;
 mod visits;
+mod window;
 
 use crate::app::{App, Clock, SystemClock};
 use crate::store::{OpenMode, Store};
@@ -117,7 +118,7 @@ fn run(arguments: &Arguments) -> anyhow::Result<Answer> {
         Some(Command::Check(args)) => check::check(store, args),
         Some(Command::Backup(args)) => check::backup(store, args),
         Some(Command::Calc(args)) => Ok(Answer::well(calc::run(args)?)),
-        None => anyhow::bail!("this build has no window; see bubblepoint --help for the commands"),
+        None => window::run(store),
     }
 }
 

@@ -2,6 +2,7 @@
 
 mod account;
 mod canonical;
+mod cautions;
 mod closed;
 mod exact;
 mod service;
@@ -10,6 +11,7 @@ pub use account::{
     AccountLine, AnnualAccount, ApplianceAccount, DutyCounts, DutyTally, GasAccount, WeightedLoss, account_csv, account_json,
 };
 pub use canonical::{NotCanonical, canonical_json};
+pub use cautions::{CATALOGUE, CautionText, CautiousAct, Circumstances, caution, fitting, glides};
 pub use closed::{Closed, ClosedEntry, ClosedVisit, FORMAT, NotClosed, VisitFacts, close, fingerprint, read_closed};
 pub use service::{
     AppliancePart, ApplianceText, Caution, Counterparty, DutyFacts, DutyStep, EntryFacts, Finding, Fingerprint, LeakRate, NoRate, Notice,

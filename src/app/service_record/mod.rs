@@ -287,8 +287,8 @@ fn instrument_text(instrument: &Instrument, more: Option<String>) -> String {
 fn cautions(seen: &[CautionSeen], visit: &Visit, registers: &Registers) -> Vec<Caution> {
     let person = visit.people.first().and_then(|id| registers.person(*id)).map(|person| person.name.clone()).unwrap_or_default();
     let caution = |seen: &CautionSeen| Caution {
-        text: seen.caution.clone(),
-        basis: String::new(),
+        text: record::caution(&seen.caution).map_or(&*seen.caution, |known| known.text).to_owned(),
+        basis: record::caution(&seen.caution).map_or("", |known| known.basis).to_owned(),
         at: wording::at(visit.date, Some(seen.at_minute)),
         person: person.clone(),
     };

@@ -3,6 +3,7 @@
 
 mod acts;
 mod contrast;
+mod flow;
 mod keyboard;
 mod pages;
 mod rules;
@@ -14,7 +15,7 @@ type Check = (&'static str, fn());
 
 fn main() -> ExitCode {
     let words: Vec<String> = std::env::args().skip(1).filter(|a| !a.starts_with('-')).collect();
-    let checks: Vec<Check> = [contrast::CHECKS, rules::CHECKS, pages::CHECKS, keyboard::CHECKS, acts::CHECKS].concat();
+    let checks: Vec<Check> = [contrast::CHECKS, rules::CHECKS, pages::CHECKS, keyboard::CHECKS, acts::CHECKS, flow::CHECKS].concat();
     if std::env::args().any(|a| a == "--list") {
         for (name, _) in &checks {
             println!("{name}: test");

@@ -1,0 +1,233 @@
+//! The visit is closed: its service record, opened and handed over.
+
+use crate::app::AppError;
+use crate::ledger::{Counterpart, Moment, VisitId};
+use crate::record::Fingerprint;
+use crate::view::desk::{Desk, Message, Page};
+use crate::view::shown::{Choice, Fact, Ready};
+use crate::view::{format, words};
+use chrono::Datelike;
+use std::io::Write;
+use std::path::{Path, PathBuf};
+
+const WAYS: [&str; 4] = ["printed", "as a file", "by mail", "read on screen"];
+
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct State {
+    pub visit: VisitId,
+    /// Where the record lies; `None` where it could not be written.
+    pub file: Option<PathBuf>,
+    pub to_whom: String,
+    pub way: String,
+    pub handing_over: bool,
+}
+
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub enum Msg {
+    OpenRecord,
+    OpenFolder,
+    Way(String),
+    ToWhom(String),
+    HandOver,
+    Done,
+}
+
+#[derive(Debug, Clone, Default, PartialEq, Eq)]
+pub struct Shown {
+    pub site: String,
+    pub closed: String,
+    pub file: String,
+    pub folder: String,
+    pub facts: Vec<Fact>,
+    pub handed_over: Vec<Fact>,
+    pub handing_over: bool,
+    pub to_whom: String,
+    pub ways: Vec<Choice>,
+    pub way: String,
+    pub ready: Ready,
+}
+
+impl Desk {
+    /// Shows a closed visit and sees that its record lies on disk.
+    ///
+    /// # Errors
+    /// Unknown visit; the store's own. Where only the paper fails, that is told and the page opens.
+    pub fn show_closed(&mut self, visit: VisitId) -> Result<(), AppError> {
+        let file = match self.print(visit) {
+            Ok(file) => Some(file),
+            Err(cause) => {
+                self.say(Message::grave(words::record_not_printed(&words::sentence(&cause))));
+                None
+            }
+        };
+        self.closed = Some(State { visit, file, to_whom: String::new(), way: WAYS[1].to_owned(), handing_over: false });
+        self.changed();
+        self.go(Page::Closed);
+        Ok(())
+    }
+
+    /// Prints the record of a closed visit to its place under the documents.
+    /// The same record gives the same bytes.
+    ///
+    /// # Errors
+    /// A sentence that says what could not be done and where.
+    pub fn print(&self, visit: VisitId) -> Result<PathBuf, String> {
+        let record = self.app.service_record(visit).map_err(|e| e.to_string())?;
+        let bytes = (self.options.print)(&record, self.prints_letter(&record.site.time_zone))?;
+        let names: Vec<&str> = record.appliances.iter().map(|part| part.appliance.name.as_str()).collect();
+        let fingerprint = record.fingerprint.as_ref().map(|full| full.full.chars().take(8).collect::<String>()).unwrap_or_default();
+        let folder = self.options.documents.join("Bubblepoint").join(record.last_day.year().to_string()).join(plain(&record.site.name));
+        let name = format!("{} {} {fingerprint}.pdf", record.last_day, plain(&names.join(" ")));
+        let path = folder.join(name);
+        write_whole(&path, &bytes).map_err(|e| format!("{}: {e}", path.display()))?;
+        Ok(path)
+    }
+
+    /// Letter where the site's clock is American, unless set otherwise.
+    fn prints_letter(&self, zone: &str) -> bool {
+        match self.app.store().setting("paper").ok().flatten().as_deref() {
+            Some(set) => set == "Letter",
+            None => zone.starts_with("America/") || zone.starts_with("US/"),
+        }
+    }
+
+    pub(in crate::view) fn update_closed(&mut self, msg: Msg) -> Result<(), AppError> {
+        let Some(state) = &mut self.closed else { return Ok(()) };
+        match msg {
+            Msg::Way(way) => state.way = way,
+            Msg::ToWhom(text) => {
+                state.to_whom = text;
+                state.handing_over = true;
+            }
+            Msg::OpenRecord => self.open_paper(false),
+            Msg::OpenFolder => self.open_paper(true),
+            Msg::HandOver => {
+                let (visit, told) = (state.visit, words::handed_over_to(state.to_whom.trim(), &state.way));
+                self.app.hand_over(visit, &told)?;
+                if let Some(state) = &mut self.closed {
+                    state.to_whom.clear();
+                    state.handing_over = false;
+                }
+            }
+            Msg::Done => {
+                self.closed = None;
+                self.start_page()?;
+            }
+        }
+        Ok(())
+    }
+
+    /// Hands the record, or its folder, to the platform; where that fails the path is told.
+    fn open_paper(&mut self, folder: bool) {
+        let Some(state) = &self.closed else { return };
+        let printed = match &state.file {
+            Some(file) if file.exists() => Ok(file.clone()),
+            // It was moved or never written: print it again.
+            _ => self.print(state.visit),
+        };
+        match printed {
+            Ok(file) => {
+                let shown: &Path = if folder { file.parent().unwrap_or(&file) } else { &file };
+                if let Err(cause) = (self.options.open)(shown) {
+                    self.say(Message::told(words::cannot_open(&shown.display().to_string(), &cause)));
+                }
+                if let Some(state) = &mut self.closed {
+                    state.file = Some(file);
+                }
+            }
+            Err(cause) => self.say(Message::grave(words::record_not_printed(&words::sentence(&cause)))),
+        }
+    }
+
+    /// The page of the closed visit.
+    ///
+    /// # Errors
+    /// No closed visit is shown; the store's own.
+    pub fn closed_shown(&self) -> Result<Shown, AppError> {
+        let state = self.closed.as_ref().ok_or(AppError::Unknown { what: "closed visit" })?;
+        let store = self.app.store();
+        let visit = store.visit(state.visit)?.ok_or(AppError::Unknown { what: "visit" })?;
+        let today = self.app.today();
+        let closing = visit.closing.as_ref();
+        let closed =
+            closing.map(|closing| format::moment(Moment { date: closing.date, minute: Some(closing.minute) }, today)).unwrap_or_default();
+        let counterpart = closing.map(|closing| match &closing.counterpart {
+            Counterpart::Signed { signature } => format!("{}, signed", signature.name),
+            Counterpart::NobodyPresent => "nobody present".to_owned(),
+            Counterpart::Refused { reason, .. } => format!("refused: {reason}"),
+            Counterpart::SignsLater { name } => format!("{name} signs later"),
+        });
+        let mut facts = Vec::new();
+        if let Some(full) = visit.fingerprint.clone() {
+            facts.push(Fact::new("fingerprint", Fingerprint { full }.short()));
+        }
+        if let Some(closing) = closing {
+            facts.push(Fact::new("technician", format!("{}, signed", closing.technician.name)));
+        }
+        facts.push(Fact::new("representative", counterpart.unwrap_or_default()));
+        let handed_over = store
+            .hand_overs(state.visit)?
+            .into_iter()
+            .map(|hand_over| {
+                let at = Moment { date: hand_over.date, minute: Some(hand_over.minute) };
+                Fact::new(format!("handed over {}", format::moment(at, today)), hand_over.told)
+            })
+            .collect();
+        let name = |path: Option<&std::ffi::OsStr>| path.map(|name| name.to_string_lossy().into_owned()).unwrap_or_default();
+        let file = state.file.as_deref();
+        Ok(Shown {
+            site: self.site_name(visit.site),
+            closed: words::closed_at(&closed),
+            file: name(file.and_then(Path::file_name)),
+            folder: file.and_then(Path::parent).map(|folder| folder.display().to_string()).unwrap_or_default(),
+            facts,
+            handed_over,
+            handing_over: state.handing_over,
+            to_whom: state.to_whom.clone(),
+            ways: WAYS.map(Choice::word).to_vec(),
+            way: state.way.clone(),
+            ready: if state.to_whom.trim().is_empty() { Ready::not(words::to_whom_missing()) } else { Ready::yes() },
+        })
+    }
+}
+
+/// A name as part of a path on every platform.
+fn plain(name: &str) -> String {
+    let kept: String = name.chars().map(|c| if c.is_control() || "/\\:*?\"<>|".contains(c) { '-' } else { c }).take(80).collect();
+    let kept = kept.trim().trim_matches('.').trim();
+    if kept.is_empty() { "unnamed".to_owned() } else { kept.to_owned() }
+}
+
+/// All of it or nothing: a temporary file in the same folder, synced, renamed.
+fn write_whole(path: &Path, bytes: &[u8]) -> std::io::Result<()> {
+    let folder = path.parent().unwrap_or(Path::new("."));
+    std::fs::create_dir_all(folder)?;
+    let mut file = tempfile::NamedTempFile::new_in(folder)?;
+    file.write_all(bytes)?;
+    file.as_file().sync_all()?;
+    file.persist(path).map_err(|e| e.error)?;
+    Ok(())
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn names_become_parts_of_a_path() {
+        assert_eq!(plain("R-1"), "R-1");
+        assert_eq!(plain("Ice rink / hall 2: west?"), "Ice rink - hall 2- west-");
+        assert_eq!(plain(" .. "), "unnamed");
+        assert_eq!(plain("Kühlhaus Łódź"), "Kühlhaus Łódź");
+    }
+
+    #[test]
+    fn a_file_is_written_whole_and_again() {
+        let folder = tempfile::tempdir().unwrap();
+        let path = folder.path().join("2026/Quay/record.pdf");
+        write_whole(&path, b"one").unwrap();
+        write_whole(&path, b"two").unwrap();
+        assert_eq!(std::fs::read(&path).unwrap(), b"two");
+        assert_eq!(std::fs::read_dir(path.parent().unwrap()).unwrap().count(), 1);
+    }
+}
