@@ -2,7 +2,7 @@
 
 use super::account::{self, AccountFormat};
 use super::file::{make_folder, write_whole};
-use super::{Answer, today};
+use super::{Answer, today, window};
 use crate::app::{App, Clock, SystemClock, build_demonstration};
 use crate::ledger::VisitState;
 use crate::store::{OpenMode, VisitFilter};
@@ -47,7 +47,13 @@ pub fn run(store: Option<&Path>, args: &DemoArgs) -> anyhow::Result<Answer> {
         text.push_str(&format!("annual account   {}\n", file.display()));
     }
     text.push_str(&format!("Look into it with: bubblepoint --store \"{}\" assess\n", path.display()));
-    Ok(Answer::well(text))
+    if args.no_window || !window::can_open() {
+        return Ok(Answer::well(text));
+    }
+    // What was built is told before the window takes over.
+    super::print(&text)?;
+    window::open_at(&path, &folder)?;
+    Ok(Answer::well(String::new()))
 }
 
 /// A folder that is not there yet.

@@ -1,4 +1,5 @@
-//! Without a command: the window, on the store that is there or a new one.
+//! The window: without a command on the store that is there or a new one,
+//! after the demonstration on that.
 
 use super::Answer;
 use std::path::Path;
@@ -8,11 +9,11 @@ pub fn run(store: Option<&Path>) -> anyhow::Result<Answer> {
     use crate::store::OpenMode;
     use anyhow::Context;
     // Without a display no store is made either.
-    if !crate::gui::has_display() {
+    if !can_open() {
         return Err(crate::gui::WindowError::NoDisplay.into());
     }
     let path = super::place::store_path(store)?;
-    if let Some(folder) = path.parent().filter(|folder| !folder.as_os_str().is_empty() && store.is_none()) {
+    if let Some(folder) = path.parent().filter(|_| store.is_none()) {
         std::fs::create_dir_all(folder).with_context(|| format!("cannot make the folder {}", folder.display()))?;
     }
     let app = super::open(store, OpenMode::Create)?;
@@ -23,4 +24,27 @@ pub fn run(store: Option<&Path>) -> anyhow::Result<Answer> {
 #[cfg(not(feature = "gui"))]
 pub fn run(_store: Option<&Path>) -> anyhow::Result<Answer> {
     anyhow::bail!("this build has no window; see bubblepoint --help for the commands")
+}
+
+/// Whether a window can be tried.
+#[cfg(feature = "gui")]
+pub fn can_open() -> bool {
+    crate::gui::has_display()
+}
+
+#[cfg(not(feature = "gui"))]
+pub fn can_open() -> bool {
+    false
+}
+
+/// Opens the window on a store whose records go to a folder of their own.
+#[cfg(feature = "gui")]
+pub fn open_at(path: &Path, documents: &Path) -> anyhow::Result<()> {
+    let app = super::App::open(path, crate::store::OpenMode::MustExist)?;
+    Ok(crate::gui::open(app, Some(documents.to_owned()))?)
+}
+
+#[cfg(not(feature = "gui"))]
+pub fn open_at(_path: &Path, _documents: &Path) -> anyhow::Result<()> {
+    Ok(())
 }

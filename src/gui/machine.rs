@@ -1,5 +1,5 @@
-//! What the desk needs of the machine: a folder for documents, a printer of
-//! pages, a way to hand a file to the platform.
+//! What the desk needs of the machine: a folder for documents, and a way to
+//! hand a file to the platform.
 
 use crate::view::DeskOptions;
 use std::path::{Path, PathBuf};
@@ -10,9 +10,9 @@ pub fn has_display() -> bool {
     !cfg!(target_os = "linux") || set("DISPLAY") || set("WAYLAND_DISPLAY") || set("WAYLAND_SOCKET")
 }
 
-/// The machine's own: its documents folder, PDF, its programs.
+/// The machine's own: its documents folder, its programs.
 pub fn desk_options(documents: Option<PathBuf>) -> DeskOptions {
-    DeskOptions { documents: documents.unwrap_or_else(documents_folder), print: Box::new(print), open: Box::new(open) }
+    DeskOptions { documents: documents.unwrap_or_else(documents_folder), open: Box::new(open) }
 }
 
 /// The platform's folder for documents, else the home, else here.
@@ -20,11 +20,6 @@ fn documents_folder() -> PathBuf {
     let user = directories::UserDirs::new();
     let folder = user.as_ref().and_then(|user| user.document_dir().map(Path::to_path_buf));
     folder.or_else(|| user.map(|user| user.home_dir().to_path_buf())).unwrap_or_else(|| PathBuf::from("."))
-}
-
-fn print(record: &crate::record::ServiceRecord, letter: bool) -> Result<Vec<u8>, String> {
-    let paper = if letter { crate::print::Paper::Letter } else { crate::print::Paper::A4 };
-    crate::print::service_record(record, paper).map_err(|e| e.to_string())
 }
 
 fn open(path: &Path) -> Result<(), String> {

@@ -10,7 +10,6 @@ use super::visit::{
 use super::words;
 use crate::app::{App, AppError};
 use crate::ledger::{Registers, SiteId};
-use crate::record::ServiceRecord;
 use std::path::{Path, PathBuf};
 
 /// The pages of the window.
@@ -44,8 +43,6 @@ impl Message {
     }
 }
 
-/// Makes a PDF of a record; `true` asks for Letter, else A4.
-pub type Print = Box<dyn Fn(&ServiceRecord, bool) -> Result<Vec<u8>, String>>;
 /// Hands a file or folder to the platform.
 pub type Open = Box<dyn Fn(&Path) -> Result<(), String>>;
 
@@ -53,7 +50,6 @@ pub type Open = Box<dyn Fn(&Path) -> Result<(), String>>;
 pub struct DeskOptions {
     /// The folder for documents; records go to `Bubblepoint` in it.
     pub documents: PathBuf,
-    pub print: Print,
     pub open: Open,
 }
 

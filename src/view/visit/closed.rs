@@ -1,7 +1,8 @@
 //! The visit is closed: its service record, opened and handed over.
 
-use crate::app::AppError;
+use crate::app::{AppError, fit};
 use crate::ledger::{Counterpart, Moment, VisitId};
+use crate::print::Paper;
 use crate::record::Fingerprint;
 use crate::view::desk::{Desk, Message, Page};
 use crate::view::shown::{Choice, Fact, Ready};
@@ -72,23 +73,20 @@ impl Desk {
     /// # Errors
     /// A sentence that says what could not be done and where.
     pub fn print(&self, visit: VisitId) -> Result<PathBuf, String> {
-        let record = self.app.service_record(visit).map_err(|e| e.to_string())?;
-        let bytes = (self.options.print)(&record, self.prints_letter(&record.site.time_zone))?;
-        let names: Vec<&str> = record.appliances.iter().map(|part| part.appliance.name.as_str()).collect();
-        let fingerprint = record.fingerprint.as_ref().map(|full| full.full.chars().take(8).collect::<String>()).unwrap_or_default();
-        let folder = self.options.documents.join("Bubblepoint").join(record.last_day.year().to_string()).join(plain(&record.site.name));
-        let name = format!("{} {} {fingerprint}.pdf", record.last_day, plain(&names.join(" ")));
-        let path = folder.join(name);
-        write_whole(&path, &bytes).map_err(|e| format!("{}: {e}", path.display()))?;
+        let store = self.app.store();
+        // As it was set on this device, else as the site's law has it.
+        let paper = match store.setting("paper").ok().flatten().as_deref() {
+            Some("Letter") => Some(Paper::Letter),
+            Some("A4") => Some(Paper::A4),
+            _ => None,
+        };
+        let printed = self.app.print_record(visit, paper).map_err(|e| e.to_string())?;
+        let visit = store.visit(visit).map_err(|e| e.to_string())?.ok_or_else(words::no_such_visit)?;
+        let date = visit.closing.as_ref().map_or(visit.date, |closing| closing.date);
+        let folder = self.options.documents.join("Bubblepoint").join(date.year().to_string()).join(fit(&self.site_name(visit.site)));
+        let path = folder.join(printed.file_name);
+        write_whole(&path, &printed.bytes).map_err(|e| format!("{}: {e}", path.display()))?;
         Ok(path)
-    }
-
-    /// Letter where the site's clock is American, unless set otherwise.
-    fn prints_letter(&self, zone: &str) -> bool {
-        match self.app.store().setting("paper").ok().flatten().as_deref() {
-            Some(set) => set == "Letter",
-            None => zone.starts_with("America/") || zone.starts_with("US/"),
-        }
     }
 
     pub(in crate::view) fn update_closed(&mut self, msg: Msg) -> Result<(), AppError> {
@@ -191,13 +189,6 @@ impl Desk {
     }
 }
 
-/// A name as part of a path on every platform.
-fn plain(name: &str) -> String {
-    let kept: String = name.chars().map(|c| if c.is_control() || "/\\:*?\"<>|".contains(c) { '-' } else { c }).take(80).collect();
-    let kept = kept.trim().trim_matches('.').trim();
-    if kept.is_empty() { "unnamed".to_owned() } else { kept.to_owned() }
-}
-
 /// All of it or nothing: a temporary file in the same folder, synced, renamed.
 fn write_whole(path: &Path, bytes: &[u8]) -> std::io::Result<()> {
     let folder = path.parent().unwrap_or(Path::new("."));
@@ -212,14 +203,6 @@ fn write_whole(path: &Path, bytes: &[u8]) -> std::io::Result<()> {
 #[cfg(test)]
 mod tests {
     use super::*;
-
-    #[test]
-    fn names_become_parts_of_a_path() {
-        assert_eq!(plain("R-1"), "R-1");
-        assert_eq!(plain("Ice rink / hall 2: west?"), "Ice rink - hall 2- west-");
-        assert_eq!(plain(" .. "), "unnamed");
-        assert_eq!(plain("Kühlhaus Łódź"), "Kühlhaus Łódź");
-    }
 
     #[test]
     fn a_file_is_written_whole_and_again() {

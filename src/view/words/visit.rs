@@ -227,6 +227,10 @@ pub fn to_whom_missing() -> String {
     "Write to whom.".to_owned()
 }
 
+pub fn no_such_visit() -> String {
+    "There is no such visit in this store.".to_owned()
+}
+
 pub fn record_not_printed(cause: &str) -> String {
     format!("The visit is closed and safe, but its record could not be written: {cause} It can be printed again from the visit.")
 }
