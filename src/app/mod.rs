@@ -32,7 +32,7 @@ pub use inputs::{
     ChargeInput, Common, NewEntry, PressureInput, RecoverInput, RecycleInput, RepairInput, RetrofitInput, SimpleAct, TestInput,
 };
 pub use paper::{Printed, Recognised, fit};
-pub use refusals::{Kind, Refusal, measured};
+pub use refusals::{Kind, Refusal, measured, measured_under};
 pub use service_bans::{ServiceBan, service_bans};
 pub use standing::{ApplianceStanding, CylinderStanding, WeighingGap};
 pub use visits::OpenVisit;

@@ -259,16 +259,21 @@ fn of_limit(
 
 /// The cylinder as the limits are worked out from it.
 pub fn measured(standing: &ApplianceStanding, cylinder: &CylinderStanding) -> measure::Cylinder {
+    let united_states = standing.site_facts.rulebooks.iter().any(|id| id.starts_with("us-"));
+    measured_under(if united_states { CylinderLaw::UnitedStates } else { CylinderLaw::Adr }, cylinder)
+}
+
+/// The same under a law that is known without an appliance.
+pub fn measured_under(law: CylinderLaw, cylinder: &CylinderStanding) -> measure::Cylinder {
     let facts = &cylinder.facts;
     let number = |text: &Option<String>| text.as_ref().and_then(|text| parse_decimal(text).ok());
-    let united_states = standing.site_facts.rulebooks.iter().any(|id| id.starts_with("us-"));
     measure::Cylinder {
         water_capacity: number(&facts.water_capacity_l).and_then(Volume::from_litres),
         tare: Some(facts.tare),
         stamped_maximum: facts.stamped_maximum,
         service_pressure: number(&facts.service_pressure_psig).map(GaugePressure::from_psi),
         test_pressure: number(&facts.test_pressure_bar).map(|bar| GaugePressure::from_pascal(bar * Ratio::from_integer(100_000))),
-        law: if united_states { CylinderLaw::UnitedStates } else { CylinderLaw::Adr },
+        law,
     }
 }
 

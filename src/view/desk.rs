@@ -143,6 +143,19 @@ impl Desk {
         &self.app
     }
 
+    /// Where records, accounts and backups are written.
+    pub fn documents(&self) -> PathBuf {
+        self.options.documents.join("Bubblepoint")
+    }
+
+    /// Hands a file or folder to the platform.
+    ///
+    /// # Errors
+    /// The platform's own words.
+    pub fn open_with_platform(&self, path: &Path) -> Result<(), String> {
+        (self.options.open)(path)
+    }
+
     pub fn registers(&self) -> &Registers {
         &self.registers
     }

@@ -8,6 +8,7 @@
 mod desk;
 pub mod format;
 pub mod parse;
+pub mod places;
 pub mod shown;
 pub mod visit;
 pub mod words;

@@ -2,6 +2,7 @@
 //! function each, English.
 
 mod act;
+pub mod office;
 mod visit;
 mod weighing;
 

@@ -1,0 +1,195 @@
+//! A cylinder added as it is stamped, or its facts changed from today on.
+
+use super::appliance_form::gas_named;
+use super::cylinders::Pane;
+use super::form::last_day;
+use super::plant::FormMsg;
+use super::{Form, Go, Office};
+use crate::app::App;
+use crate::ledger::{CylinderFacts, CylinderId, CylinderKind, GasStatus};
+use crate::quantity::{MassUnit, Ratio, Volume, Weighing, decimal_text, parse_decimal};
+use crate::view::shown::{Choice, Ready};
+use crate::view::{parse, words};
+use words::office as say;
+
+const FIELDS: [(&str, &str); 5] =
+    [("name", "identification"), ("refrigerant", "gas"), ("gas", "gas"), ("tare", "tare"), ("gross", "gross")];
+
+pub fn kinds() -> Vec<Choice> {
+    CylinderKind::ALL.iter().map(|word| Choice::word(word.name())).collect()
+}
+
+/// The states of gas, and empty.
+pub fn states() -> Vec<Choice> {
+    GasStatus::ALL.iter().map(|word| Choice::word(word.name())).chain([Choice::new("", "empty", "")]).collect()
+}
+
+impl Office {
+    pub(super) fn begin_cylinder_form(&mut self, cylinder: Option<CylinderId>) {
+        let known = cylinder.and_then(|id| self.cylinders.all.iter().find(|known| known.cylinder.id == id));
+        self.cylinders.form = match known {
+            Some(known) => filled(&known.cylinder.name, known.cylinder.versions.latest()),
+            None => Form::default().with("kind", CylinderKind::Supply.name()).with("status", GasStatus::Virgin.name()),
+        };
+        self.cylinders.changed = cylinder;
+        self.cylinders.pane = Pane::Form;
+    }
+
+    pub fn cylinder_form_ready(&self) -> Ready {
+        let form = &self.cylinders.form;
+        if form.trimmed("identification").is_empty() {
+            Ready::not(say::name_it("cylinder"))
+        } else if form.trimmed("gas").is_empty() && !form.text("status").is_empty() {
+            Ready::not(say::choose_gas())
+        } else if form.trimmed("tare").is_empty() {
+            Ready::not(say::give_tare())
+        } else if form.has_errors() {
+            Ready::not(say::amend())
+        } else {
+            Ready::yes()
+        }
+    }
+
+    pub(super) fn update_cylinder_form(&mut self, app: &App, msg: FormMsg) -> Vec<Go> {
+        let form = &mut self.cylinders.form;
+        match msg {
+            FormMsg::Edited(field, text) => form.set(&field, text),
+            FormMsg::Chosen("kind", key) => {
+                // A recovery cylinder is mostly added empty.
+                if key == CylinderKind::Recovery.name() && form.trimmed("gas").is_empty() {
+                    form.set("status", "");
+                }
+                form.set("kind", key);
+            }
+            FormMsg::Chosen("status", key) if key.is_empty() => {
+                form.set("status", "");
+                form.set("gas", "");
+                form.set("gross", "");
+            }
+            FormMsg::Chosen(field, key) => form.set(field, key),
+            FormMsg::Switched(field, on) => form.switch(&field, on),
+            FormMsg::More(more) => form.more = more,
+            FormMsg::Save => return self.save_cylinder(app),
+        }
+        Vec::new()
+    }
+
+    fn save_cylinder(&mut self, app: &App) -> Vec<Go> {
+        if !self.cylinder_form_ready().ready {
+            return Vec::new();
+        }
+        let unit = self.units.mass;
+        let changed = self.cylinders.changed;
+        let form = &mut self.cylinders.form;
+        let Some(facts) = read(form, unit).filter(|_| !form.has_errors()) else {
+            let further = ["stamped-maximum", "service-pressure", "test-pressure"];
+            form.more |= further.iter().any(|field| !form.error(field).is_empty());
+            return Vec::new();
+        };
+        let name = form.trimmed("identification");
+        let done = match changed {
+            Some(id) => app.change_cylinder(id, facts, self.today, "").map(|()| id),
+            None => app.add_cylinder(&name, facts),
+        };
+        match done {
+            Ok(id) => {
+                self.cylinders.changed = None;
+                self.cylinders.pane = Pane::Cylinder(id);
+                let go = self.written(app);
+                self.refresh_cylinders(app);
+                go
+            }
+            Err(error) => {
+                self.fault(error, |office| &mut office.cylinders.form, &FIELDS);
+                Vec::new()
+            }
+        }
+    }
+}
+
+fn filled(name: &str, facts: &CylinderFacts) -> Form {
+    let mut form = Form::of_known();
+    let stamped = facts.stamped_maximum.map(|mass| format!("{} kg", mass.kg_text()));
+    let texts: [(&str, String); 15] = [
+        ("identification", name.to_owned()),
+        ("kind", facts.kind.name().to_owned()),
+        ("gas", facts.refrigerant.clone().unwrap_or_default()),
+        ("status", facts.gas_status.map_or("", |status| status.name()).to_owned()),
+        ("tare", facts.tare_written.text()),
+        ("gross", facts.gross_written.as_ref().map(Weighing::text).unwrap_or_default()),
+        ("water-capacity", facts.water_capacity_l.clone().map(|litres| litres + " l").unwrap_or_default()),
+        ("requalify-by", facts.requalify_by.map(|day| day.to_string()).unwrap_or_default()),
+        ("location", facts.location.clone()),
+        ("stamped-maximum", stamped.unwrap_or_default()),
+        ("service-pressure", facts.service_pressure_psig.clone().unwrap_or_default()),
+        ("test-pressure", facts.test_pressure_bar.clone().unwrap_or_default()),
+        ("owner", facts.owner.clone()),
+        ("gas-owner", facts.gas_owner.clone()),
+        ("gas-source", facts.gas_source.clone()),
+    ];
+    for (field, text) in texts {
+        form.set(field, text);
+    }
+    form.set("scrapped", facts.scrapped.clone().unwrap_or_default());
+    form
+}
+
+/// Litres as `26.2 l`, `26,2`, or a mass of water as `57.8 lb`.
+fn litres(text: &str) -> Result<Option<String>, String> {
+    let text = text.trim();
+    if text.is_empty() {
+        return Ok(None);
+    }
+    if ["kg", "lb"].iter().any(|unit| text.ends_with(unit)) {
+        let mass = parse::mass(text, MassUnit::Kilogram)?.and_then(|weighing| weighing.mass().ok());
+        let volume = mass.and_then(Volume::of_water).and_then(|volume| decimal_text(volume.litres()));
+        return volume.map(Some).ok_or_else(|| say::not_a_pressure(text));
+    }
+    number(text.trim_end_matches(['l', 'L']))
+}
+
+/// A number above zero, kept as it was written.
+fn number(text: &str) -> Result<Option<String>, String> {
+    let text = text.trim();
+    if text.is_empty() {
+        return Ok(None);
+    }
+    match parse_decimal(text) {
+        Ok(value) if value > Ratio::from_integer(0) => Ok(Some(text.replace(',', "."))),
+        _ => Err(say::not_a_pressure(text)),
+    }
+}
+
+fn read(form: &mut Form, unit: MassUnit) -> Option<CylinderFacts> {
+    let pressure = |text: &str, unit: &str| number(text.trim().trim_end_matches(unit));
+    let gas = form.trimmed("gas");
+    let refrigerant = if gas.is_empty() { Some(None) } else { form.take("gas", gas_named(&gas)).map(Some) };
+    let tare = form.take("tare", parse::mass(form.text("tare"), unit)).flatten();
+    let gross = form.take("gross", parse::mass(form.text("gross"), unit));
+    let capacity = form.take("water-capacity", litres(form.text("water-capacity")));
+    let requalify_by = form.take("requalify-by", last_day(form.text("requalify-by")));
+    let stamped = form.take("stamped-maximum", parse::mass(form.text("stamped-maximum"), unit));
+    let service = form.take("service-pressure", pressure(form.text("service-pressure"), "psig"));
+    let test = form.take("test-pressure", pressure(form.text("test-pressure"), "bar"));
+    let tare_written = tare?;
+    let (gross_written, stamped) = (gross?, stamped?);
+    Some(CylinderFacts {
+        kind: CylinderKind::from_name(form.text("kind")).unwrap_or(CylinderKind::Supply),
+        tare: tare_written.mass().ok()?,
+        tare_written,
+        refrigerant: refrigerant?,
+        gas_status: GasStatus::from_name(form.text("status")).ok(),
+        gross: gross_written.as_ref().and_then(|weighing| weighing.mass().ok()),
+        gross_written,
+        water_capacity_l: capacity?,
+        stamped_maximum: stamped.and_then(|weighing| weighing.mass().ok()),
+        service_pressure_psig: service?,
+        test_pressure_bar: test?,
+        requalify_by: requalify_by?,
+        owner: form.trimmed("owner"),
+        gas_owner: form.trimmed("gas-owner"),
+        location: form.trimmed("location"),
+        gas_source: form.trimmed("gas-source"),
+        scrapped: Some(form.trimmed("scrapped")).filter(|reason| !reason.is_empty()),
+    })
+}

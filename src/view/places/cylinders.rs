@@ -1,0 +1,217 @@
+//! Cylinders: by gas, each with what is in it and what it may take.
+
+use super::cylinder::CylinderPage;
+use super::plant::{FormMsg, fits};
+use super::rates::number;
+use super::row::{Bar, Row};
+use super::{Form, Go, Office, Place, id};
+use crate::app::{App, CylinderStanding, measured_under};
+use crate::gas;
+use crate::ledger::{CylinderId, CylinderKind, GasStatus};
+use crate::measure::{self, CylinderLaw, CylinderLimit, cylinder_limit};
+use crate::quantity::{Mass, MassUnit, Ratio, parse_decimal};
+use crate::view::{format, words};
+use std::collections::BTreeMap;
+use words::office as say;
+
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub enum Pane {
+    #[default]
+    None,
+    Cylinder(CylinderId),
+    Form,
+}
+
+#[derive(Debug, Default)]
+pub struct State {
+    pub search: String,
+    pub pane: Pane,
+    /// Whom the form changes; `None`: one is added.
+    pub changed: Option<CylinderId>,
+    pub form: Form,
+    pub all: Vec<CylinderStanding>,
+    pub cylinder: Option<CylinderPage>,
+}
+
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub enum Msg {
+    Search(String),
+    Open(String),
+    Add,
+    Edit,
+    OpenMovement(String),
+    Form(FormMsg),
+}
+
+impl State {
+    pub(super) fn back(&mut self) -> bool {
+        let moved = self.pane != Pane::None;
+        self.pane = match (self.pane, self.changed) {
+            (Pane::Form, Some(cylinder)) => Pane::Cylinder(cylinder),
+            _ => Pane::None,
+        };
+        moved
+    }
+}
+
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct Page {
+    pub summary: String,
+    pub search: String,
+    pub lines: Vec<Row>,
+    pub empty_words: String,
+    pub nothing_yet: bool,
+    pub chosen: String,
+}
+
+/// What a cylinder may take of its gas; `None` while no gas is known in it.
+pub fn limit_of(cylinder: &CylinderStanding, law: CylinderLaw) -> Option<CylinderLimit> {
+    let gas = gas::find(cylinder.balance.gas.as_deref()?)?;
+    let recovered = matches!(cylinder.balance.status, Some(GasStatus::Recovered | GasStatus::Mixed));
+    let oil = if recovered { measure::default_oil_factor() } else { Ratio::from_integer(1) };
+    Some(cylinder_limit(gas, &measured_under(law, cylinder), oil))
+}
+
+/// The mass of water the cylinder holds: where its bar ends.
+pub fn water_mass(cylinder: &CylinderStanding) -> Option<f64> {
+    let litres = cylinder.facts.water_capacity_l.as_ref().and_then(|text| parse_decimal(text).ok())?;
+    Some(number(litres)).filter(|litres| *litres > 0.0)
+}
+
+/// Drawing only: a mass as a share of the bar.
+pub fn share(mass: Mass, whole: f64) -> f32 {
+    (number(mass.kg()) / whole).clamp(0.0, 1.0) as f32
+}
+
+/// A mass at the two decimals of a list.
+pub fn rounded(mass: Mass, unit: MassUnit) -> String {
+    if unit == MassUnit::PoundOunce {
+        return format::mass(mass, unit);
+    }
+    let places = if unit == MassUnit::Gram { 0 } else { 2 };
+    format!("{} {}", crate::quantity::rounded_text(mass.in_unit(unit), places), format::unit(unit)).replace('-', "\u{2212}")
+}
+
+impl Office {
+    /// The law that cylinders are filled under here: of the United States where a site is under it.
+    pub(super) fn cylinder_law(&self) -> CylinderLaw {
+        let sites = self.overview.iter().flat_map(|overview| &overview.registers.sites);
+        let united_states = sites.flat_map(|site| &site.versions.latest().rulebooks).any(|id| id.starts_with("us-"));
+        if united_states { CylinderLaw::UnitedStates } else { CylinderLaw::Adr }
+    }
+
+    pub(super) fn refresh_cylinders(&mut self, app: &App) {
+        match app.cylinders(self.today) {
+            Ok(all) => self.cylinders.all = all,
+            Err(error) => self.fail(&error),
+        }
+        if let Pane::Cylinder(cylinder) = self.cylinders.pane {
+            match self.read_cylinder(app, cylinder) {
+                Ok(page) => self.cylinders.cylinder = page,
+                Err(error) => self.fail(&error),
+            }
+        }
+    }
+
+    pub(super) fn update_cylinders(&mut self, app: &App, msg: Msg) -> Vec<Go> {
+        match msg {
+            Msg::Search(text) => self.cylinders.search = text,
+            Msg::Open(key) => {
+                if let Some(cylinder) = id(&key) {
+                    self.cylinders.pane = Pane::Cylinder(CylinderId(cylinder));
+                    self.refresh_cylinders(app);
+                }
+            }
+            Msg::Add => self.begin_cylinder_form(None),
+            Msg::Edit => {
+                if let Pane::Cylinder(cylinder) = self.cylinders.pane {
+                    self.begin_cylinder_form(Some(cylinder));
+                }
+            }
+            Msg::OpenMovement(key) => {
+                if !self.is_open(&key) {
+                    self.place = Place::Plant;
+                }
+                return self.open_visit(app, &key);
+            }
+            Msg::Form(msg) => return self.update_cylinder_form(app, msg),
+        }
+        Vec::new()
+    }
+
+    fn is_overdue(&self, cylinder: &CylinderStanding) -> bool {
+        cylinder.facts.requalify_by.is_some_and(|by| by < self.today)
+    }
+
+    pub fn cylinders_page(&self) -> Page {
+        let mut page = Page { search: self.cylinders.search.clone(), ..Page::default() };
+        let Some(overview) = &self.overview else {
+            page.empty_words = say::reading_store();
+            return page;
+        };
+        page.nothing_yet = overview.registers.cylinders.is_empty();
+        page.empty_words = if page.nothing_yet { say::cylinders_empty() } else { say::no_cylinder_fits(self.cylinders.search.trim()) };
+        if let Pane::Cylinder(cylinder) = self.cylinders.pane {
+            page.chosen = cylinder.to_string();
+        }
+        let in_use = self.cylinders.all.iter().filter(|cylinder| cylinder.facts.scrapped.is_none());
+        page.summary = say::cylinders_summary(in_use.clone().count(), in_use.filter(|cylinder| self.is_overdue(cylinder)).count());
+        // By gas, then mixed, empty, and what is out of use.
+        let mut groups: BTreeMap<(u8, String), Vec<&CylinderStanding>> = BTreeMap::new();
+        for cylinder in self.cylinders.all.iter().filter(|cylinder| self.is_wanted(cylinder)) {
+            groups.entry(group(cylinder)).or_default().push(cylinder);
+        }
+        for ((_, name), cylinders) in groups {
+            let sum = cylinders.iter().map(|cylinder| cylinder.balance.content.mass()).sum::<Option<Mass>>();
+            let state = match sum {
+                Some(sum) if sum.is_positive() => rounded(sum, self.units.mass),
+                _ => cylinders.len().to_string(),
+            };
+            page.lines.push(Row::group(name, state));
+            page.lines.extend(cylinders.into_iter().map(|cylinder| self.cylinder_row(cylinder)));
+        }
+        page
+    }
+
+    fn is_wanted(&self, cylinder: &CylinderStanding) -> bool {
+        let status = cylinder.balance.status.map_or("", |status| status.name());
+        let gas = cylinder.balance.gas.as_deref().unwrap_or_default();
+        fits(&self.cylinders.search, [cylinder.cylinder.name.as_str(), gas, status, &cylinder.facts.location, &cylinder.facts.owner])
+    }
+
+    fn cylinder_row(&self, cylinder: &CylinderStanding) -> Row {
+        let facts = &cylinder.facts;
+        let status = cylinder.balance.status.map_or(facts.kind.name(), |status| status.name());
+        let row = Row::new(cylinder.cylinder.id.to_string(), &cylinder.cylinder.name, format::commas([status, &facts.location]));
+        let content = cylinder.balance.content.mass();
+        let binding = limit_of(cylinder, self.cylinder_law()).and_then(|limit| limit.binding);
+        let aside = if facts.scrapped.is_some() {
+            say::scrapped()
+        } else if self.is_overdue(cylinder) {
+            say::overdue()
+        } else if facts.kind == CylinderKind::NonRefillable {
+            CylinderKind::NonRefillable.name().to_owned()
+        } else {
+            let room = binding.as_ref().zip(content).map(|(limit, content)| (limit.net - content).max(Mass::ZERO));
+            room.map(|room| say::gas_left(&rounded(room, self.units.mass))).unwrap_or_default()
+        };
+        let state = content.map_or_else(say::not_weighed, |content| rounded(content, self.units.mass));
+        let bar = water_mass(cylinder).map(|whole| Bar::Mass {
+            fill: content.map_or(0.0, |content| share(content, whole)),
+            notch: binding.map_or(0.0, |limit| share(limit.net, whole)),
+        });
+        Row { bar, ..row.state(state, aside) }
+    }
+}
+
+fn group(cylinder: &CylinderStanding) -> (u8, String) {
+    if cylinder.facts.scrapped.is_some() {
+        return (3, format::capital(&say::scrapped()));
+    }
+    let empty = cylinder.balance.content.mass().is_some_and(|mass| !mass.is_positive());
+    match (&cylinder.balance.gas, cylinder.balance.is_mixed()) {
+        (_, true) => (1, "Mixed".to_owned()),
+        (Some(gas), false) if !(empty && cylinder.facts.kind == CylinderKind::Recovery) => (0, gas.clone()),
+        _ => (2, "Empty".to_owned()),
+    }
+}

@@ -1,0 +1,137 @@
+//! A closed or imported visit, seen from one of its appliances.
+
+use super::account::write_whole;
+use super::appliance::{short_print, told};
+use super::plant::Pane;
+use super::row::Row;
+use super::{Go, Office};
+use crate::app::{App, AppError};
+use crate::ledger::{Act, ApplianceId, Counterpart, VisitId};
+use crate::view::format;
+use crate::view::shown::Fact;
+use crate::view::words::office as say;
+use std::path::PathBuf;
+
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct RecordPage {
+    pub title: String,
+    pub subject: String,
+    pub file: String,
+    pub folder: String,
+    pub facts: Vec<Fact>,
+    pub entries: Vec<Row>,
+    pub corrections: Vec<Fact>,
+}
+
+impl Office {
+    pub(super) fn read_record(&self, app: &App, visit: VisitId, appliance: ApplianceId) -> Result<Option<RecordPage>, AppError> {
+        let Some(overview) = &self.overview else { return Ok(None) };
+        let Some(visit) = app.store().visit(visit)? else { return Ok(None) };
+        let Some(appliance) = overview.registers.appliance(appliance) else { return Ok(None) };
+        let site = overview.registers.site(visit.site).map(|site| site.name.clone()).unwrap_or_default();
+        let person = |id| overview.registers.person(id).map(|person| person.name.clone()).unwrap_or_default();
+        let mut facts = Vec::new();
+        let people: Vec<String> = visit.people.iter().map(|id| person(*id)).collect();
+        if let Some(closing) = &visit.closing {
+            facts.push(Fact::new("technician", format!("{}, signed", closing.technician.name)));
+            facts.push(Fact::new("representative", counterpart(&closing.counterpart)));
+            let at = crate::ledger::Moment { date: closing.date, minute: Some(closing.minute) };
+            facts.push(Fact::new("closed", format!("{} {}", format::full_day(at.date), format::clock(at.minute))));
+            facts.push(Fact::new("handed over", if closing.handed_over.is_empty() { "not yet" } else { &closing.handed_over }));
+        } else {
+            facts.push(Fact::new("people", people.join(", ")));
+        }
+        if let Some(fingerprint) = &visit.fingerprint {
+            facts.push(Fact::new("fingerprint", short_print(fingerprint)));
+        }
+        let entries = app.store().entries_of_visit(visit.id)?;
+        let mut rows = Vec::new();
+        let mut corrections = Vec::new();
+        for entry in entries.iter().filter(|entry| entry.line.appliance == appliance.id) {
+            let mut about = Vec::new();
+            if let Some(id) = entry.detail.person {
+                about.push(person(id));
+            }
+            about.extend([&entry.detail.method, &entry.detail.place, &entry.detail.note].into_iter().filter(|t| !t.is_empty()).cloned());
+            let state = match &entry.line.act {
+                Act::Charge { transfer, .. } | Act::Recover { transfer, .. } => format::mass(transfer.mass, self.units.mass),
+                Act::Test { result: Some(result), .. } => result.name().to_owned(),
+                Act::Repair { temporary: true } => "for now".to_owned(),
+                Act::Repair { temporary: false } => "for good".to_owned(),
+                _ => String::new(),
+            };
+            rows.push(Row {
+                time: format::clock(entry.line.at.minute),
+                struck: entry.struck_by.is_some(),
+                ..Row::new(entry.line.entry.to_string(), short_act(&entry.line.act), about.join(", ")).state(state, "")
+            });
+            if let Some(by) = entry.struck_by
+                && let Some(correction) = app.store().entry(by)?
+            {
+                let said = [told(&correction, self.units.mass), correction.detail.reason.clone()];
+                let said = said.into_iter().filter(|part| !part.is_empty()).collect::<Vec<_>>().join("; ");
+                let caption = format!("{}, {}", format::full_day(correction.line.at.date), told(entry, self.units.mass));
+                corrections.push(Fact::new(caption, said));
+            }
+        }
+        // Named as its print is; a name that paper cannot show says so instead.
+        let file = match app.print_record(visit.id, None) {
+            Ok(printed) => printed.file_name,
+            Err(error) => error.to_string(),
+        };
+        Ok(Some(RecordPage {
+            title: say::visit_of(&format::full_day(visit.date)),
+            subject: say::at_site(&appliance.name, &site),
+            file,
+            folder: self.record_folder(&visit.date.format("%Y").to_string(), &site).display().to_string(),
+            facts,
+            entries: rows,
+            corrections,
+        }))
+    }
+
+    fn record_folder(&self, year: &str, site: &str) -> PathBuf {
+        self.documents.join(year).join(crate::app::fit(site))
+    }
+
+    /// Opens the record, or the folder it is kept in; the file is written first where it is not there.
+    pub(super) fn record_file(&mut self, app: &App, itself: bool) -> Vec<Go> {
+        let (Some(page), Pane::Record(visit, _)) = (&self.plant.record, self.plant.pane) else { return Vec::new() };
+        let folder = PathBuf::from(&page.folder);
+        let file = folder.join(&page.file);
+        let written = match app.print_record(visit, None) {
+            Ok(_) if file.exists() => Ok(()),
+            Ok(printed) => {
+                write_whole(&file, &printed.bytes).map_err(|error| say::cannot_write(&file.display().to_string(), &error.to_string()))
+            }
+            Err(error) => Err(error.to_string()),
+        };
+        match written {
+            Ok(()) => vec![Go::Open(if itself { file } else { folder })],
+            Err(sentence) => {
+                self.fail(&sentence);
+                Vec::new()
+            }
+        }
+    }
+}
+
+/// The act in the few letters of a row.
+fn short_act(act: &Act) -> String {
+    match act {
+        Act::Test { kind: crate::ledger::TestKind::InitialVerification, .. } => "Initial test".to_owned(),
+        Act::Test { kind: crate::ledger::TestKind::FollowUpVerification, .. } => "Follow-up test".to_owned(),
+        Act::Test { kind: crate::ledger::TestKind::LeakInspection, .. } => "Inspection".to_owned(),
+        Act::DetectionSystemCheck => "Detector check".to_owned(),
+        act => format::capital(act.name()),
+    }
+}
+
+fn counterpart(counterpart: &Counterpart) -> String {
+    match counterpart {
+        Counterpart::Signed { signature } => format!("{}, signed", signature.name),
+        Counterpart::NobodyPresent => "nobody present".to_owned(),
+        Counterpart::Refused { name, reason } => format!("{name}, refused: {reason}"),
+        Counterpart::SignsLater { name } => format!("{name}, signs later"),
+    }
+}
