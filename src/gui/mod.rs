@@ -7,7 +7,10 @@
 #[macro_use]
 mod rows;
 mod closing;
+mod joined;
 mod machine;
+pub mod places;
+mod shapes;
 mod shell;
 mod visit;
 mod weighing;
@@ -21,7 +24,7 @@ use crate::view::visit::Panel;
 use crate::view::{Desk, Msg, Page, words};
 use bubblepoint_ui::AppWindow;
 use slint::{ComponentHandle, Weak};
-use std::cell::{Cell, RefCell};
+use std::cell::{Cell, OnceCell, RefCell};
 use std::path::PathBuf;
 use std::rc::Rc;
 
@@ -64,18 +67,21 @@ pub struct Gui {
     desk: RefCell<Desk>,
     /// What the page of the visit was last shown at.
     shown_at: Cell<Option<u64>>,
+    /// The five places, on the desk's own store.
+    places: OnceCell<Rc<places::Places>>,
 }
 
 impl Gui {
     /// Connects a window with a desk and shows it. The window's callbacks keep the desk alive.
     pub fn attach(window: &AppWindow, desk: Desk) -> Rc<Self> {
-        let gui = Rc::new(Self { window: window.as_weak(), desk: RefCell::new(desk), shown_at: Cell::new(None) });
+        let gui = Rc::new(Self { window: window.as_weak(), desk: RefCell::new(desk), shown_at: Cell::new(None), places: OnceCell::new() });
         shell::connect(window, &gui);
         visit::connect(window, &gui);
         weighing::connect(window, &gui);
         work::connect(window, &gui);
         closing::connect(window, &gui);
         shell::appear(window, &gui.desk.borrow());
+        joined::join(window, &gui);
         gui.show();
         gui
     }
@@ -131,6 +137,7 @@ impl Gui {
         if let Ok(desk) = self.desk.try_borrow() {
             shell::show(&window, &desk);
         }
+        self.arrive();
     }
 
     fn show_page(&self, window: &AppWindow, desk: &Desk) -> Result<(), AppError> {
