@@ -3,6 +3,7 @@
 //! Slint's platform and windows belong to one thread, so the checks in
 //! `tests/main.rs` and the pictures of `src/bin/pictures.rs` run on one.
 
+mod office;
 mod picture;
 mod place_scenes;
 mod scenes;
@@ -10,8 +11,9 @@ mod sources;
 mod sweep;
 mod window;
 
+pub use office::{OFFICE_PAGES, OfficePage, OfficeWindow, demonstration, empty, office, office_as};
 pub use picture::{Picture, draw, save};
 pub use scenes::{Scene, scenes};
 pub use sources::{SlintFile, literals, raw_text, screens};
 pub use sweep::{Acting, Fault, acting, sweep};
-pub use window::{DESK, PHONE, SIZES, Size, TABLET, TABLET_UPRIGHT, drag, open, press, press_key, settle};
+pub use window::{DESK, PHONE, SIZES, Size, TABLET, TABLET_UPRIGHT, drag, field, open, press, press_key, settle};

@@ -68,6 +68,32 @@ pub fn press(window: &AppWindow, label: &str) {
     settle();
 }
 
+/// Writes a text into the field with this label, over what stood there.
+///
+/// # Panics
+/// When there is no such field.
+pub fn field(window: &AppWindow, label: &str, text: &str) {
+    use i_slint_backend_testing::AccessibleRole;
+    let is_field = |element: &ElementHandle| {
+        element.accessible_role() == Some(AccessibleRole::TextInput) && element.accessible_label().is_some_and(|l| l == label)
+    };
+    let all = every_element(window);
+    let Some(found) = all.iter().find(|element| is_field(element)) else {
+        let labels: Vec<_> = all.iter().filter_map(ElementHandle::accessible_label).collect();
+        panic!("no field is labelled \u{201c}{label}\u{201d}; there are {labels:?}");
+    };
+    click(found);
+    settle();
+    let before = found.accessible_value().unwrap_or_default().chars().count();
+    press_key(window, slint::platform::Key::End);
+    for _ in 0..before {
+        press_key(window, slint::platform::Key::Backspace);
+    }
+    for letter in text.chars() {
+        press_key(window, letter.to_string());
+    }
+}
+
 /// Draws a line across the element with this label; points are shares of its width and height.
 ///
 /// # Panics

@@ -1,9 +1,13 @@
 //! Draws every page at the four sizes, light and dark, as PNG, without a display.
 //!
+//! Pages named `office…` are filled from the demonstration; the others show the screens' own preview content.
+//!
 //! `pictures <folder> [words…]`: with words, only pages whose name holds one of them.
 
-use bubblepoint_ui::Appearance;
-use bubblepoint_ui_tests::{PHONE, SIZES, draw, open, save, scenes, settle};
+use bubblepoint::view::places::Look;
+use bubblepoint_ui::{Appearance, Shell};
+use bubblepoint_ui_tests::{OFFICE_PAGES, PHONE, SIZES, demonstration, draw, office_as, open, save, scenes, settle};
+use slint::ComponentHandle;
 use std::path::PathBuf;
 use std::process::ExitCode;
 
@@ -32,6 +36,30 @@ fn main() -> ExitCode {
                 settle();
                 let path = folder.join(format!("{}-{}-{look}.png", scene.name, size.name));
                 if let Err(error) = save(&draw(&window), &path) {
+                    eprintln!("{} cannot be written: {error}", path.display());
+                    return ExitCode::FAILURE;
+                }
+                drawn += 1;
+            }
+        }
+    }
+    let documents = folder.join("documents");
+    let pages = OFFICE_PAGES.iter().filter(|page| only.is_empty() || only.iter().any(|w| page.name.contains(w.as_str())));
+    let app = demonstration();
+    for page in pages {
+        for size in SIZES {
+            let mut looks = vec![("light", "light", 100), ("dark", "dark", 100)];
+            if size == PHONE {
+                looks.push(("sunlight", "sunlight", 100));
+                looks.push(("large", "light", 150));
+            }
+            for (look, appearance, text_size) in looks {
+                let opened = office_as(&app, size, Look { appearance: appearance.to_owned(), text_size }, &documents);
+                opened.window.global::<Shell>().set_demonstration(true);
+                (page.reach)(&opened);
+                settle();
+                let path = folder.join(format!("{}-{}-{look}.png", page.name, size.name));
+                if let Err(error) = save(&draw(&opened.window), &path) {
                     eprintln!("{} cannot be written: {error}", path.display());
                     return ExitCode::FAILURE;
                 }
