@@ -101,9 +101,9 @@ pub fn duty_row(judged: &Judged, duty: &Duty, today: NaiveDate, soon: NaiveDate)
 }
 
 pub fn leak_row(judged: &Judged, leak: &OpenLeak, today: NaiveDate) -> Row {
-    let name = if leak.place.is_empty() { say::leak_unnamed() } else { format::capital(&leak.place) };
+    let place = if leak.place.is_empty() { say::place_unknown() } else { format::capital(&leak.place) };
     let state = if leak.state.is_empty() { say::open_leak() } else { leak.state.clone() };
-    Row::new(leak_key(judged, leak), name, "").state(state, say::since(&format::day(leak.since, today)))
+    Row::new(leak_key(judged, leak), say::leak(), place).state(state, say::since(&format::day(leak.since, today)))
 }
 
 impl Office {
@@ -145,7 +145,7 @@ impl Office {
         let leak = judged.leaks.iter().find(|leak| leak_key(judged, leak) == key)?;
         let row = leak_row(judged, leak, self.today);
         Some(Item {
-            name: row.name,
+            name: if leak.place.is_empty() { row.name } else { row.facts },
             subject: subject(judged),
             verdict: Verdict::None,
             word: row.state,
@@ -235,6 +235,11 @@ impl Office {
         page
     }
 
+    /// A leak's row among those of other appliances.
+    fn leak_at(&self, judged: &Judged, leak: &OpenLeak) -> Row {
+        Row { name: say::leak_of(&judged.appliance.name), ..leak_row(judged, leak, self.today) }
+    }
+
     fn groups(&self, appliances: &[Judged]) -> Groups {
         let soon = self.soon();
         let mut groups = Groups::default();
@@ -253,7 +258,7 @@ impl Office {
                 }
             }
             for leak in &judged.leaks {
-                groups.leaks.push((Some(leak.since), Row { facts: subject(judged), ..leak_row(judged, leak, self.today) }));
+                groups.leaks.push((Some(leak.since), self.leak_at(judged, leak)));
             }
         }
         groups

@@ -48,14 +48,17 @@ impl Office {
         let mut rows = Vec::new();
         let mut corrections = Vec::new();
         for entry in entries.iter().filter(|entry| entry.line.appliance == appliance.id) {
+            // Who and how are read where an entry is opened; a visit of several says who at once.
             let mut about = Vec::new();
-            if let Some(id) = entry.detail.person {
+            if let Act::Test { result: Some(result), .. } = &entry.line.act {
+                about.push(result.name().to_owned());
+            }
+            about.extend([&entry.detail.place, &entry.detail.note].into_iter().filter(|text| !text.is_empty()).cloned());
+            if let Some(id) = entry.detail.person.filter(|_| visit.people.len() > 1 && about.is_empty()) {
                 about.push(person(id));
             }
-            about.extend([&entry.detail.method, &entry.detail.place, &entry.detail.note].into_iter().filter(|t| !t.is_empty()).cloned());
             let state = match &entry.line.act {
                 Act::Charge { transfer, .. } | Act::Recover { transfer, .. } => format::mass(transfer.mass, self.units.mass),
-                Act::Test { result: Some(result), .. } => result.name().to_owned(),
                 Act::Repair { temporary: true } => "for now".to_owned(),
                 Act::Repair { temporary: false } => "for good".to_owned(),
                 _ => String::new(),

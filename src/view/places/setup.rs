@@ -324,12 +324,13 @@ impl Office {
     fn instrument_row(&self, instrument: &Instrument) -> Row {
         let division = instrument.division.as_ref().map(|division| format!("division {}", division.text())).unwrap_or_default();
         let holds = instrument.holds.as_ref().map(|holds| format!("holds {}", holds.text())).unwrap_or_default();
-        let facts = format::commas([kind_name(instrument.kind), &division, &holds, &instrument.serial]);
+        let due = instrument.check_due.filter(|due| *due >= self.today);
+        let due = due.map(|due| say::check_due(&format::day(due, self.today))).unwrap_or_default();
+        let facts = format::commas([kind_name(instrument.kind), &division, &holds, &due]);
         let row = Row::new(instrument.id.to_string(), &instrument.name, facts);
         match instrument.check_due {
-            Some(due) if due < self.today => row.state("overdue", format::day(due, self.today)).judged(Verdict::Over),
-            Some(due) => row.state("checked", format!("to {}", format::day(due, self.today))),
-            None => row,
+            Some(late) if late < self.today => row.state("overdue", format::day(late, self.today)).judged(Verdict::Over),
+            _ => row,
         }
     }
 }
@@ -372,5 +373,10 @@ fn counted(instruments: &[Instrument]) -> String {
     ];
     let count = |kind| instruments.iter().filter(|instrument| instrument.kind == kind).count();
     let told = kinds.iter().map(|(kind, one, many)| (count(*kind), one, many)).filter(|(number, ..)| *number > 0);
-    told.map(|(number, one, many)| say::count(number, one, many)).collect::<Vec<_>>().join(", ")
+    let mut told: Vec<String> = told.map(|(number, one, many)| say::count(number, one, many)).collect();
+    if told.len() > 2 {
+        told.truncate(2);
+        told.push(say::and_more());
+    }
+    told.join(", ")
 }

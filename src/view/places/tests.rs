@@ -200,8 +200,8 @@ fn a_charge_over_the_trigger_shows_in_due_and_plant() {
     let rate = bench.office.overview.as_ref().unwrap().appliances[0].rate().unwrap().percent;
     let row = bench.office.plant_page().lines[1].clone();
     assert_eq!(row.state, format!("{} %", crate::view::format::percent(rate)));
-    let leak = page.lines.iter().find(|row| row.name == "Flare").unwrap();
-    assert_eq!((leak.state.as_str(), leak.facts.as_str()), ("isolated", "R-1, Fish market"));
+    let leak = page.lines.iter().find(|row| row.name == "Leak, R-1").unwrap();
+    assert_eq!((leak.state.as_str(), leak.facts.as_str()), ("isolated", "Flare"));
 
     // Ten days later 10 lb more: far over 20 % a year.
     bench.clock.forward(chrono::Duration::days(10));

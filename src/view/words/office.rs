@@ -180,8 +180,16 @@ pub fn open_leak() -> String {
     "open".to_owned()
 }
 
-pub fn leak_unnamed() -> String {
-    "Leak, place not written down".to_owned()
+pub fn leak() -> String {
+    "Leak".to_owned()
+}
+
+pub fn leak_of(appliance: &str) -> String {
+    format!("Leak, {appliance}")
+}
+
+pub fn place_unknown() -> String {
+    "place not written down".to_owned()
 }
 
 pub fn leak_asks() -> String {
@@ -444,4 +452,12 @@ pub fn gone() -> String {
 
 pub fn tables(gwp: &str, odp: &str) -> String {
     format!("CO\u{2082} equivalent by {gwp}; ODP by {odp}")
+}
+
+pub fn and_more() -> String {
+    "and more".to_owned()
+}
+
+pub fn check_due(day: &str) -> String {
+    format!("check due {day}")
 }
