@@ -137,7 +137,7 @@ fn site_facts() -> SiteFacts {
 fn facts(number: usize) -> ApplianceFacts {
     ApplianceFacts {
         category: Category::CommercialRefrigeration,
-        refrigerant: if number % 2 == 0 { "R-448A" } else { "R-22" }.to_owned(),
+        refrigerant: if number.is_multiple_of(2) { "R-448A" } else { "R-22" }.to_owned(),
         full_charge: Mass::parse("600", MassUnit::Pound).ok(),
         full_charge_written: None,
         charge_method: None,
