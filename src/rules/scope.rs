@@ -51,7 +51,7 @@ pub fn applicability(book: &Rulebook, facts: &ApplianceFacts, day: NaiveDate) ->
     match strictest_band(book, facts, day) {
         Some(band) => Applicability {
             applies: true,
-            why: format!("{}: {} ({})", row.why, measured(band, gas, facts, book), band.source),
+            why: format!("{}, {} ({})", row.why, measured(band, gas, facts, book), band.source),
             until: row.validity.to,
         },
         None if facts.full_charge.is_none() => no("full charge not determined".to_owned()),

@@ -6,7 +6,7 @@ use super::{Go, Office, Place};
 use crate::app::App;
 use crate::ledger::VisitState;
 use crate::quantity::{Mass, MassUnit, Ratio, rounded_text};
-use crate::record::{AnnualAccount, GasAccount, account_csv, account_json};
+use crate::record::{AccountLine, AnnualAccount, GasAccount, account_csv, account_json};
 use crate::rules::rulebook;
 use crate::store::VisitFilter;
 use crate::view::shown::{Choice, Fact};
@@ -259,6 +259,11 @@ fn plate(gas: &GasAccount, unit: MassUnit) -> Plate {
     ];
     // What nobody keeps takes no line.
     figures.retain(|(caption, value, _)| value != "not known" || caption == "opening");
+    // Purchases, charges from elsewhere, gaps: told, so that the column adds up.
+    if let Some(gap) = not_explained(line).filter(|gap| !gap.is_zero()) {
+        let sign = if gap.is_negative() { '\u{2212}' } else { '+' };
+        figures.push(("not explained by these".to_owned(), signed(gap.magnitude(), sign, unit), false));
+    }
     figures.push(("closing".to_owned(), known(line.closing, None), true));
     figures.push(("lost from appliances".to_owned(), figure(line.lost, unit), false));
     Plate {
@@ -270,6 +275,13 @@ fn plate(gas: &GasAccount, unit: MassUnit) -> Plate {
             Fact::new("ODP-weighted loss", weighted(gas.loss.odp_kg, 3, "kg")),
         ],
     }
+}
+
+/// What closing is more than the movements that are kept explain; `None`
+/// where a holding is not known.
+fn not_explained(line: &AccountLine) -> Option<Mass> {
+    let kept = |mass: Option<Mass>| mass.unwrap_or(Mass::ZERO);
+    Some(line.closing? - (line.opening? + kept(line.bought) + line.recovered - line.charged - kept(line.sent_away)))
 }
 
 fn tally(tally: &crate::record::DutyTally) -> Option<Tally> {
