@@ -219,8 +219,11 @@ pub fn all() -> &'static [Gas] {
 
 /// Finds a gas by its designation without regard to case, blanks and hyphens: `r448a`, `R 448 A`, `R-448A`.
 pub fn find(name: &str) -> Option<&'static Gas> {
-    let wanted = plain(name);
-    GASES.iter().find(|gas| plain(&gas.designation) == wanted)
+    // Registers hold designations as the catalogue writes them; only what people type needs the second look.
+    GASES.iter().find(|gas| gas.designation == name).or_else(|| {
+        let wanted = plain(name);
+        GASES.iter().find(|gas| plain(&gas.designation) == wanted)
+    })
 }
 
 /// Designations that begin as `name` does, for a message about an unknown gas: `R-410` gives `R-410A`.
