@@ -1,5 +1,4 @@
-//! Saving durably and reading all, each against bare SQLite on the same
-//! machine in the same run. `--quick` for a smoke run.
+//! Saving durably against bare SQLite on the same machine in the same run. `--quick` for a smoke run.
 //!
 //! Figures are medians of interleaved runs; only the ratios mean something
 //! away from the machine they were taken on.
@@ -24,8 +23,6 @@ fn main() {
     let quick = std::env::args().any(|argument| argument == "--quick");
     let folder = tempfile::tempdir().expect("a temporary folder");
     saving(folder.path(), if quick { 20 } else { 400 });
-    let (appliances, entries) = if quick { (20, 1000) } else { (2000, 100_000) };
-    reading(folder.path(), appliances, entries, if quick { 3 } else { 15 });
 }
 
 fn report(what: &str, time: Duration, base: Duration, aim: &str) {
@@ -43,8 +40,6 @@ fn timed(act: impl FnOnce()) -> Duration {
     act();
     start.elapsed()
 }
-
-// --- saving ---------------------------------------------------------------
 
 fn saving(folder: &Path, runs: u32) {
     let store = Store::open(&folder.join("saving.store"), OpenMode::Create).expect("a store");
@@ -117,46 +112,6 @@ fn bare_insert(bare: &Connection, entry: &Entry) {
         .expect("inserted");
 }
 
-// --- reading --------------------------------------------------------------
-
-fn reading(folder: &Path, appliances: u64, entries: u64, runs: u32) {
-    let path = folder.join("reading.store");
-    let store = Store::open(&path, OpenMode::Create).expect("a store");
-    fill(&store, appliances);
-    store
-        .write(now(), |tx| (0..entries).try_for_each(|number| tx.add_entry(&history_entry(number, appliances)).map(drop)))
-        .expect("entries");
-    let bare = Connection::open(&path).expect("a connection");
-    let today = day(1200);
-
-    let (mut sum, mut lines, mut registers, mut judged) = (Vec::new(), Vec::new(), Vec::new(), Vec::new());
-    for _ in 0..runs {
-        sum.push(timed(|| {
-            let total: i64 = bare.query_row("SELECT sum(mass / 1000000) FROM entries", [], |row| row.get(0)).expect("a sum");
-            assert!(total > 0);
-        }));
-        lines.push(timed(|| assert_eq!(store.lines().expect("lines").len() as u64, entries)));
-        registers.push(timed(|| assert_eq!(store.registers().expect("registers").appliances.len() as u64, appliances)));
-        judged.push(timed(|| assert!(judge(&store, today) > 0)));
-    }
-    let base = median(sum);
-    println!("reading {entries} entries on {appliances} appliances, {runs} runs");
-    report("bare SQLite: SELECT sum over the entries", base, base, "");
-    report("the store's lines of all entries, in order", median(lines), base, "(aim 200 ms)");
-    report("all registers with their versions", median(registers), base, "");
-    report("registers, lines, and every appliance judged", median(judged), base, "(aim 20)");
-}
-
-fn judge(store: &Store, today: NaiveDate) -> usize {
-    let registers = store.registers().expect("registers");
-    let lines = store.lines().expect("lines");
-    let site = &registers.sites[0];
-    let appliance = |id: ApplianceId| registers.appliances.binary_search_by(|appliance| appliance.id.cmp(&id)).ok();
-    let groups = lines.chunk_by(|a, b| a.appliance == b.appliance);
-    let judged = groups.filter_map(|own| assess(site, &registers.appliances[appliance(own[0].appliance)?], own, today));
-    judged.map(|assessment| assessment.duties.len() + assessment.rulebooks.len()).sum()
-}
-
 // --- an invented store ----------------------------------------------------
 
 fn now() -> DateTime<Utc> {
@@ -189,51 +144,22 @@ fn lb(text: &str) -> Mass {
 
 fn fill(store: &Store, appliances: u64) {
     let site_facts = SiteFacts {
-        rulebooks: vec!["us-82f".to_owned(), "us-84c".to_owned()],
         owner: "Harbour Fish Ltd".to_owned(),
-        operator: String::new(),
         address: "Quay 3".to_owned(),
-        rate_method: RateMethod::Annualizing,
         time_zone: "Etc/UTC".to_owned(),
+        ..SiteFacts::under(vec!["us-82f".to_owned(), "us-84c".to_owned()])
     };
     let facts = ApplianceFacts {
-        category: Category::CommercialRefrigeration,
-        refrigerant: "R-22".to_owned(),
         full_charge: Some(Mass::from_lb(100)),
         full_charge_written: Some(Weighing::new("100", MassUnit::Pound)),
-        charge_method: None,
-        installed_on: None,
-        equipment: None,
-        assembly: String::new(),
-        description: String::new(),
-        serial: String::new(),
-        place: String::new(),
-        labelled_hermetically_sealed: false,
-        residential: false,
-        leakage_detection_system: false,
-        residential_or_light_commercial_ac: false,
-        product_below_minus_50c: false,
-        military: false,
-        room_volume_m3: None,
+        ..ApplianceFacts::new(Category::CommercialRefrigeration, "R-22")
     };
     let gas = CylinderFacts {
-        kind: CylinderKind::Supply,
-        tare: Mass::from_lb(20),
-        tare_written: Weighing::new("20", MassUnit::Pound),
         refrigerant: Some("R-22".to_owned()),
         gas_status: Some(GasStatus::Virgin),
         gross: Some(Mass::from_lb(20_000)),
         gross_written: Some(Weighing::new("20000", MassUnit::Pound)),
-        water_capacity_l: None,
-        stamped_maximum: None,
-        service_pressure_psig: None,
-        test_pressure_bar: None,
-        requalify_by: None,
-        owner: String::new(),
-        gas_owner: String::new(),
-        location: String::new(),
-        gas_source: String::new(),
-        scrapped: None,
+        ..CylinderFacts::new(CylinderKind::Supply, Mass::from_lb(20), Weighing::new("20", MassUnit::Pound))
     };
     let person = Person {
         id: PersonId(Uuid::from_u128(4)),
@@ -302,25 +228,6 @@ fn transfer(mass: Mass) -> Transfer {
 
 fn charge_entry(number: u128, appliance: u64, date: u64) -> Entry {
     entry(number, appliance, day(date), Act::Charge { purpose: ChargePurpose::Leak, transfer: transfer(lb("0.1")) })
-}
-
-/// Works of eight entries: recovered, repaired, tested, charged, looked at again.
-fn history_entry(number: u64, appliances: u64) -> Entry {
-    let work = number / 8;
-    let appliance = work % appliances;
-    let date = day(work / appliances * 150 + number % 8 / 7 * 9);
-    let test = |kind, result| Act::Test { kind, result: Some(result), scope: None, partial: false, running_hundredths: None };
-    let act = match number % 8 {
-        0 => test(TestKind::LeakTest, TestResult::LeakFound),
-        1 => Act::Recover { purpose: RecoveryPurpose::Repair, transfer: transfer(lb("20.5")) },
-        2 => Act::Repair { temporary: false },
-        3 => test(TestKind::InitialVerification, TestResult::Pass),
-        4 => Act::Charge { purpose: ChargePurpose::Leak, transfer: transfer(lb("32.1")) },
-        5 => Act::Charge { purpose: ChargePurpose::Leak, transfer: transfer(lb("1.4")) },
-        6 => Act::NormalOperation,
-        _ => test(TestKind::FollowUpVerification, TestResult::Pass),
-    };
-    entry(u128::from(number), appliance, date, act)
 }
 
 fn charge_input(run: u32) -> ChargeInput {

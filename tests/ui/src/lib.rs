@@ -16,4 +16,4 @@ pub use picture::{Picture, draw, save};
 pub use scenes::{Scene, scenes};
 pub use sources::{SlintFile, literals, raw_text, screens};
 pub use sweep::{Acting, Fault, acting, sweep};
-pub use window::{DESK, PHONE, SIZES, Size, TABLET, TABLET_UPRIGHT, drag, field, open, press, press_key, settle};
+pub use window::{DESK, PHONE, SIZES, Size, TABLET, TABLET_UPRIGHT, drag, field, open, prepare, press, press_key, settle};

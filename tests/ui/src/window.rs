@@ -26,7 +26,10 @@ thread_local! {
 }
 
 /// Sets the headless platform, once per thread. The software renderer draws, so pictures are what a user sees.
-fn prepare() {
+///
+/// # Panics
+/// When the thread has another platform already.
+pub fn prepare() {
     if PREPARED.replace(true) {
         return;
     }
