@@ -65,7 +65,7 @@ pub fn assess<'a>(site: &'a Site, appliance: &'a Appliance, lines: &'a [Line], o
                 id: book.id.clone(),
                 applies: answer.applies,
                 why: answer.why,
-                method: book.rates.as_ref().map(|_| site_now.rate_method),
+                method: (!book.rates.is_empty()).then_some(site_now.rate_method),
                 rates,
             });
         }

@@ -26,7 +26,10 @@ pub struct Rulebook {
     #[serde(default)]
     pub confidence: String,
     /// Present where the text has a leak rate.
-    pub rates: Option<Rates>,
+    #[serde(default, rename = "rate")]
+    pub rates: Vec<RateRow>,
+    #[serde(default, rename = "season")]
+    pub seasons: Vec<Season>,
     #[serde(default, rename = "scope")]
     pub scopes: Vec<Scope>,
     #[serde(default, rename = "trigger")]
@@ -39,10 +42,13 @@ pub struct Rulebook {
     pub duties: Vec<DutyRow>,
 }
 
-/// What is special about the first leak rate of an appliance.
+/// How leak rates are calculated.
 #[derive(Debug, Clone, Deserialize)]
-#[serde(deny_unknown_fields)]
-pub struct Rates {
+pub struct RateRow {
+    #[serde(flatten)]
+    pub validity: Validity,
+    /// Neither the days since the last addition nor the rolling period count more.
+    pub longest_days: i64,
     pub source: String,
     /// Days that the first annualized rate takes instead of those passed.
     pub first_days: Option<i64>,
@@ -53,6 +59,15 @@ pub struct Rates {
     pub first_added_from: Option<NaiveDate>,
     #[serde(default)]
     pub first_added_from_source: String,
+}
+
+/// Within how many calendar months a seasonal removal and its return lie.
+#[derive(Debug, Clone, Deserialize)]
+pub struct Season {
+    #[serde(flatten)]
+    pub validity: Validity,
+    pub months: u32,
+    pub source: String,
 }
 
 /// When a row holds.
@@ -80,10 +95,10 @@ pub enum GasTest {
     /// A gas with an HFC, PFC or HFO part.
     #[serde(rename = "substitute")]
     Substitute,
-    /// 40 CFR 84.106(a): a listed HFC in any proportion, or a substitute with
-    /// a GWP over 53; not solely ozone-depleting.
-    #[serde(rename = "regulated or substitute over 53")]
-    RegulatedOrSubstituteOver53,
+    /// A listed HFC in any proportion (42 U.S.C. 7675(c)), or a substitute with
+    /// a GWP over the row's; not solely ozone-depleting.
+    #[serde(rename = "regulated or substitute")]
+    RegulatedOrSubstitute,
     /// An HFC, PFC or HFO part and no ozone-depleting one.
     #[serde(rename = "fluorinated")]
     Fluorinated,
@@ -116,6 +131,8 @@ pub struct Scope {
     #[serde(flatten)]
     pub validity: Validity,
     pub gas: GasTest,
+    #[serde(default, deserialize_with = "optional_ratio")]
+    pub gwp_over: Option<Ratio>,
     #[serde(default)]
     pub equipment: EquipmentTest,
     #[serde(default, deserialize_with = "optional_mass")]
@@ -256,7 +273,14 @@ pub struct DutyRow {
     #[serde(flatten)]
     pub validity: Validity,
     pub days: Option<i64>,
+    /// How long before the duty began it may have been met.
+    pub days_before: Option<i64>,
     pub months: Option<u32>,
+    /// Periods in a row without a rate over the trigger that end a series.
+    pub clean_periods: Option<usize>,
+    /// Month and day of the next calendar year.
+    #[serde(default, deserialize_with = "optional_month_day")]
+    pub due_in_next_year: Option<(u32, u32)>,
     pub hours: Option<i64>,
     #[serde(default, deserialize_with = "optional_ratio")]
     pub percent: Option<Ratio>,
@@ -292,6 +316,13 @@ pub fn built_in() -> &'static [Rulebook] {
     &BOOKS
 }
 
+/// Months within which a seasonal removal and its return must lie, by the law
+/// of the day of the return; before the first row by that row.
+pub fn season_months(day: NaiveDate) -> Option<u32> {
+    let mut rows = built_in().iter().flat_map(|book| &book.seasons);
+    rows.clone().find(|row| row.validity.holds_on(day)).or_else(|| rows.next()).map(|row| row.months)
+}
+
 /// The rulebook with this id.
 pub fn rulebook(id: &str) -> Option<&'static Rulebook> {
     built_in().iter().find(|book| book.id == id)
@@ -304,6 +335,14 @@ fn day<'de, D: Deserializer<'de>>(deserializer: D) -> Result<NaiveDate, D::Error
 
 fn optional_day<'de, D: Deserializer<'de>>(deserializer: D) -> Result<Option<NaiveDate>, D::Error> {
     day(deserializer).map(Some)
+}
+
+fn optional_month_day<'de, D: Deserializer<'de>>(deserializer: D) -> Result<Option<(u32, u32)>, D::Error> {
+    let text = String::deserialize(deserializer)?;
+    let parts = text.split_once('-').and_then(|(month, day)| Some((month.parse().ok()?, day.parse().ok()?)));
+    // A leap year, so that 02-29 could be written.
+    let known = parts.filter(|&(month, day)| NaiveDate::from_ymd_opt(2024, month, day).is_some());
+    known.map(Some).ok_or_else(|| serde::de::Error::custom(format!("\u{201c}{text}\u{201d} is not a month and day such as 03-01")))
 }
 
 fn ratio<'de, D: Deserializer<'de>>(deserializer: D) -> Result<Ratio, D::Error> {
@@ -330,6 +369,13 @@ fn weighting<'de, D: Deserializer<'de>>(deserializer: D) -> Result<Weighting, D:
     }
 }
 
+impl Rulebook {
+    /// How rates are calculated on a day; `None` where the text has no leak rate then.
+    pub fn rate_row(&self, day: NaiveDate) -> Option<&RateRow> {
+        self.rates.iter().find(|row| row.validity.holds_on(day))
+    }
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -347,7 +393,9 @@ mod tests {
                 .chain(book.triggers.iter().map(|row| &row.source))
                 .chain(book.bands.iter().map(|row| &row.source))
                 .chain(book.exemptions.iter().map(|row| &row.source))
-                .chain(book.duties.iter().map(|row| &row.source));
+                .chain(book.duties.iter().map(|row| &row.source))
+                .chain(book.rates.iter().map(|row| &row.source))
+                .chain(book.seasons.iter().map(|row| &row.source));
             for source in sources {
                 assert!(source.chars().any(|c| c.is_ascii_digit()), "{}: {source:?}", book.id);
             }

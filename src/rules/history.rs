@@ -3,14 +3,11 @@
 //! The readings are those of the program's contract; `README.md` beside this
 //! file lists them with the articles they read.
 
+use super::book::season_months;
 use crate::ledger::{Act, Appliance, ApplianceFacts, ChargePurpose, Line, RecoveryPurpose, TestKind, TestResult, Transfer};
 use crate::quantity::{Mass, add_months};
 use chrono::NaiveDate;
 use std::collections::HashMap;
-
-/// Months within which a seasonal removal and its return must lie
-/// (40 CFR 82.152, *seasonal variance*).
-const SEASON_MONTHS: u32 = 12;
 
 /// An appliance's lines up to a day, in order, with all that follows from
 /// them alone.
@@ -261,7 +258,8 @@ fn in_order(mut lines: Vec<&Line>) -> Vec<&Line> {
 
 /// The purpose with which each charge counts towards *added*, where it does.
 /// Seasonal and mothball charges count as nothing while together they stay
-/// within what was recovered for that purpose (seasonal: within 12 months);
+/// within what was recovered for that purpose (seasonal: within the months of
+/// the law);
 /// one that breaks this counts wholly as leak.
 fn effective_purposes(lines: &[&Line]) -> Vec<Option<ChargePurpose>> {
     let mut seasonal: Vec<(NaiveDate, Mass)> = Vec::new();
@@ -281,7 +279,8 @@ fn effective_purposes(lines: &[&Line]) -> Vec<Option<ChargePurpose>> {
                 ChargePurpose::Leak | ChargePurpose::SameLeak | ChargePurpose::Returned | ChargePurpose::Replacement => Some(*purpose),
                 ChargePurpose::Installation | ChargePurpose::FactoryCharge | ChargePurpose::Trim | ChargePurpose::Retrofit => None,
                 ChargePurpose::Seasonal => {
-                    let oldest = |from: NaiveDate| add_months(from, SEASON_MONTHS) >= line.at.date;
+                    let months = season_months(line.at.date).unwrap_or(0);
+                    let oldest = |from: NaiveDate| add_months(from, months) >= line.at.date;
                     (!take_back(&mut seasonal, transfer, oldest)).then_some(ChargePurpose::Leak)
                 }
                 ChargePurpose::Mothball => (!take_back(&mut mothballed, transfer, |_| true)).then_some(ChargePurpose::Leak),

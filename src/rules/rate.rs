@@ -8,9 +8,6 @@ use crate::quantity::{Mass, Ratio, days_between, square_root_text};
 use chrono::{Days, NaiveDate};
 use num_bigint::{BigInt, BigUint};
 
-/// Longest period of a leak rate (40 CFR 82.152: never more than 365 days).
-const LONGEST: i64 = 365;
-
 /// How a leak rate stands to its trigger. Nothing rounded is compared.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Verdict {
@@ -51,6 +48,8 @@ pub struct LeakRate {
     pub full_charge: Mass,
     /// Days of the annualizing method; `None` with a rolling average.
     pub days: Option<i64>,
+    /// The most days that count, which are also the year of the annualizing method.
+    pub longest_days: i64,
     /// First day of a rolling average's window.
     pub window_from: Option<NaiveDate>,
     pub trigger: Ratio,
@@ -73,16 +72,16 @@ pub struct WeighingBand {
     pub hundredths: u64,
 }
 
-/// The annualizing method of 40 CFR 82.152: percent of full charge a year.
-/// Days over 365 count as 365; both masses and the days must be above zero.
-pub fn annualized(added: Mass, full_charge: Mass, days: i64) -> Ratio {
-    Ratio::new(100 * i128::from(LONGEST) * added.units(), full_charge.units() * i128::from(days.min(LONGEST)))
+/// The annualizing method: percent of full charge a year, `longest` days being
+/// the year. More days count as that many; masses and days must be above zero.
+pub fn annualized(added: Mass, full_charge: Mass, days: i64, longest: i64) -> Ratio {
+    Ratio::new(100 * i128::from(longest) * added.units(), full_charge.units() * i128::from(days.min(longest)))
 }
 
 /// All leak rates of an appliance under a rulebook, oldest first.
 pub fn leak_rates(book: &Rulebook, history: &History, sites: &dyn Fn(NaiveDate) -> Option<(bool, RateMethod)>) -> Vec<LeakRate> {
     let mut rates = Vec::new();
-    if book.rates.is_none() {
+    if book.rates.is_empty() {
         return rates;
     }
     let mut index = 0;
@@ -103,8 +102,9 @@ pub fn leak_rates(book: &Rulebook, history: &History, sites: &dyn Fn(NaiveDate) 
 /// The rate of the day on which `first` is the first counted charge; `end` is
 /// the line after that day's last.
 fn leak_rate(book: &Rulebook, history: &History, method: RateMethod, first: usize, end: usize, first_rate: bool) -> Option<LeakRate> {
-    let rules = book.rates.as_ref()?;
     let day = history.date(first);
+    let rules = book.rate_row(day)?;
+    let longest = rules.longest_days;
     let last_counted = (first..end).rev().find(|&i| history.counted[i])?;
     let facts = history.facts_at(last_counted)?;
     if !applicability(book, facts, day).applies {
@@ -122,12 +122,12 @@ fn leak_rate(book: &Rulebook, history: &History, method: RateMethod, first: usiz
                     notes.push(format!("first calculation: {days} days ({})", rules.first_days_source));
                     days
                 }
-                None => days_since(history, first, &mut notes),
+                None => days_since(history, first, longest, &mut notes),
             };
             (added, Some(days), None, lines)
         }
         RateMethod::RollingAverage => {
-            let (mut from, after) = window(history, first);
+            let (mut from, after) = window(history, first, longest);
             if let Some(earliest) = rules.first_added_from.filter(|_| first_rate).filter(|&earliest| earliest > from) {
                 notes.push(format!("first calculation: what was added from {earliest} ({})", rules.first_added_from_source));
                 from = earliest;
@@ -139,13 +139,13 @@ fn leak_rate(book: &Rulebook, history: &History, method: RateMethod, first: usiz
         }
     };
     let percent = match days {
-        Some(days) => annualized(added, full_charge, days),
+        Some(days) => annualized(added, full_charge, days, longest),
         None => Ratio::new(100 * added.units(), full_charge.units()),
     };
     let verdict = Verdict::of(percent, trigger.percent);
     // Percent per unit of mass, as numerator and denominator.
     let factor = match days {
-        Some(days) => (100 * LONGEST, full_charge.units() * i128::from(days)),
+        Some(days) => (100 * longest, full_charge.units() * i128::from(days)),
         None => (100, full_charge.units()),
     };
     let error = weighing_band(history, &weighed, factor, percent - trigger.percent);
@@ -157,6 +157,7 @@ fn leak_rate(book: &Rulebook, history: &History, method: RateMethod, first: usiz
         added,
         full_charge,
         days,
+        longest_days: longest,
         window_from,
         trigger: trigger.percent,
         trigger_source: trigger.source.clone(),
@@ -173,7 +174,7 @@ pub fn trigger<'b>(book: &'b Rulebook, facts: &ApplianceFacts, day: NaiveDate) -
 }
 
 /// Days from the last charge before the work or chain to the rate's day.
-fn days_since(history: &History, first: usize, notes: &mut Vec<String>) -> i64 {
+fn days_since(history: &History, first: usize, longest: i64, notes: &mut Vec<String>) -> i64 {
     let day = history.date(first);
     let start = history.first_charge_of_chain(first).unwrap_or(first);
     let since = history
@@ -181,22 +182,22 @@ fn days_since(history: &History, first: usize, notes: &mut Vec<String>) -> i64 {
         .map(|charge| history.date(charge))
         .or_else(|| history.facts_at(first).and_then(|facts| facts.installed_on).filter(|&installed| installed < history.date(start)));
     match since {
-        Some(since) => days_between(since, day).clamp(1, LONGEST),
+        Some(since) => days_between(since, day).clamp(1, longest),
         None => {
             notes.push("history unknown".to_owned());
-            LONGEST
+            longest
         }
     }
 }
 
 /// First day of the rolling window, and the follow-up test it starts after.
-fn window(history: &History, first: usize) -> (NaiveDate, Option<usize>) {
+fn window(history: &History, first: usize, longest: i64) -> (NaiveDate, Option<usize>) {
     let day = history.date(first);
     let year_ago = day.checked_sub_months(chrono::Months::new(12)).unwrap_or(NaiveDate::MIN);
     let test = (0..first).rev().find(|&i| history.is_follow_up_that_counts(i)).filter(|&i| history.date(i) > year_ago);
     match test {
         Some(test) => (history.date(test), Some(test)),
-        None => (day.checked_sub_days(Days::new(LONGEST.unsigned_abs() - 1)).unwrap_or(NaiveDate::MIN), None),
+        None => (day.checked_sub_days(Days::new(longest.unsigned_abs() - 1)).unwrap_or(NaiveDate::MIN), None),
     }
 }
 

@@ -87,8 +87,8 @@ pub fn months(band: &Band, facts: &ApplianceFacts) -> u32 {
 
 fn refused_by(row: &Scope, gas: &Gas, facts: &ApplianceFacts) -> Option<String> {
     let because = |why: &str| Some(format!("{why} ({})", row.source));
-    if let Some(why) = gas_refusal(row.gas, gas) {
-        return because(why);
+    if let Some(why) = gas_refusal(row, gas) {
+        return because(&why);
     }
     if row.not_categories.contains(&facts.category) {
         return because(facts.category.name());
@@ -111,34 +111,38 @@ fn pounds(mass: Mass) -> String {
     format!("{pounds} lb")
 }
 
-fn gas_refusal(test: GasTest, gas: &Gas) -> Option<&'static str> {
+fn gas_refusal(row: &Scope, gas: &Gas) -> Option<String> {
     let fluorinated = gas.has_hfc_or_pfc() || gas.hfo_fraction() > Ratio::from_integer(0);
-    match test {
+    let why = match row.gas {
         GasTest::OzoneDepleting => (!gas.has_ods()).then_some("no ozone-depleting refrigerant"),
-        GasTest::Substitute => (!fluorinated).then_some("no HFC, PFC or HFO part"),
-        GasTest::RegulatedOrSubstituteOver53 if gas.solely_ods() => Some("solely ozone-depleting"),
-        GasTest::RegulatedOrSubstituteOver53 if gas.has_us_regulated() => None,
-        GasTest::RegulatedOrSubstituteOver53 => match gas.us_substitute_gwp() {
-            UsGwp::Known(gwp) if gwp > Ratio::from_integer(53) => None,
-            UsGwp::Known(_) => Some("no regulated substance, GWP not over 53"),
-            UsGwp::Unknown => Some("no regulated substance; its GWP in 40 CFR 84.64(b) is not known and counts as not over 53"),
-        },
-        GasTest::Fluorinated if gas.has_ods() => Some("judged as an ozone-depleting refrigerant"),
-        GasTest::Fluorinated => (!fluorinated).then_some("no HFC, PFC or HFO part"),
-        GasTest::FluorinatedAnnexI if gas.has_ods() => Some("judged as an ozone-depleting refrigerant"),
+        GasTest::Fluorinated | GasTest::FluorinatedAnnexI if gas.has_ods() => Some("judged as an ozone-depleting refrigerant"),
+        GasTest::Substitute | GasTest::Fluorinated => (!fluorinated).then_some("no HFC, PFC or HFO part"),
+        GasTest::RegulatedOrSubstitute if gas.solely_ods() => Some("solely ozone-depleting"),
+        GasTest::RegulatedOrSubstitute if gas.has_us_regulated() => None,
+        GasTest::RegulatedOrSubstitute => return substitute_refusal(row.gwp_over?, gas),
         GasTest::FluorinatedAnnexI => (!gas.has_hfc_or_pfc()).then_some("no HFC or PFC part"),
         GasTest::Halocarbon => (!gas.has_ods() && !gas.has_hfc_or_pfc()).then_some("no halocarbon listed in SOR/2016-137"),
+    };
+    why.map(str::to_owned)
+}
+
+/// A gas without a regulated substance is taken by its GWP alone; one that is
+/// not known counts as not over the limit, and the answer says so.
+fn substitute_refusal(limit: Ratio, gas: &Gas) -> Option<String> {
+    let limit_text = decimal_text(limit).unwrap_or_default();
+    match gas.us_substitute_gwp() {
+        UsGwp::Known(gwp) if gwp > limit => None,
+        UsGwp::Known(_) => Some(format!("no regulated substance, GWP not over {limit_text}")),
+        UsGwp::Unknown => {
+            Some(format!("no regulated substance; its GWP in 40 CFR 84.64(b) is not known and counts as not over {limit_text}"))
+        }
     }
 }
 
 /// The contract asks that the answer say so where ozone-depleting parts or
 /// unknown values were counted as nothing.
 fn us_gwp_note(test: GasTest, gas: &Gas) -> &'static str {
-    if test == GasTest::RegulatedOrSubstituteOver53 && !gas.has_us_regulated() && gas.has_ods() {
-        "; ozone-depleting parts count 0"
-    } else {
-        ""
-    }
+    if test == GasTest::RegulatedOrSubstitute && !gas.has_us_regulated() && gas.has_ods() { "; ozone-depleting parts count 0" } else { "" }
 }
 
 fn equipment_fits(test: EquipmentTest, facts: &ApplianceFacts) -> bool {

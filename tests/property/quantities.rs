@@ -41,7 +41,7 @@ proptest! {
     fn the_verdict_is_that_of_whole_numbers(added in 1_i64..100_000, charge in 1_i64..1_000_000, days in 1_i64..800, trigger in 1_i64..60) {
         let (a, f) = (Mass::parse(&format!("0.{added:05}"), MassUnit::Pound), Mass::parse(&format!("0.{charge:06}"), MassUnit::Pound));
         let (a, f) = (a.unwrap(), f.unwrap());
-        let rate = annualized(a, f, days);
+        let rate = annualized(a, f, days, 365);
         let left = 36_500 * i128::from(added) * 10;
         let right = i128::from(trigger) * i128::from(charge) * i128::from(days.min(365));
         prop_assert_eq!(Verdict::of(rate, Ratio::from_integer(i128::from(trigger))) as i8, (left.cmp(&right) as i8) + 1);

@@ -22,7 +22,7 @@ fn at_trigger(percent: &str) -> Category {
 fn the_annualizing_method_is_exact() {
     for row in table(include_str!("annualizing.csv")) {
         let (added, full) = (mass(&format!("{} lb", row.text("added_lb"))), mass(&format!("{} lb", row.text("full_charge_lb"))));
-        let percent = annualized(added, full, row.text("days").parse().unwrap());
+        let percent = annualized(added, full, row.text("days").parse().unwrap(), 365);
         assert_eq!(percent, ratio(row.text("exact_percent")), "{}", row.text("id"));
         assert_eq!(rounded_text(percent, 2), row.text("two_decimals"), "{}", row.text("id"));
         assert_eq!(Verdict::of(percent, ratio(row.text("trigger"))).name(), row.text("verdict"), "{}", row.text("id"));

@@ -104,7 +104,7 @@ impl Sight<'_> {
 
     fn working(&self, rate: &rules::LeakRate) -> String {
         let sum = format!("{} ÷ {}", self.mass(rate.added), self.mass(rate.full_charge));
-        let per_year = rate.days.map(|days| format!(" × 365 ÷ {days}")).unwrap_or_default();
+        let per_year = rate.days.map(|days| format!(" × {} ÷ {days}", rate.longest_days)).unwrap_or_default();
         let exact = decimal_text(rate.percent).map_or_else(
             || format!("{}/{} % = {} %", rate.percent.numer(), rate.percent.denom(), rounded_text(rate.percent, 2)),
             |decimal| format!("{decimal} %"),

@@ -87,7 +87,12 @@ pub fn explanations(assessment: &Assessment) -> Vec<String> {
         for rate in &judgement.rates {
             let sum = match rate.days {
                 Some(days) => {
-                    format!("365 \u{d7} 100 \u{d7} {} kg / ({} kg \u{d7} {days} days)", rate.added.kg_text(), rate.full_charge.kg_text())
+                    format!(
+                        "{} \u{d7} 100 \u{d7} {} kg / ({} kg \u{d7} {days} days)",
+                        rate.longest_days,
+                        rate.added.kg_text(),
+                        rate.full_charge.kg_text()
+                    )
                 }
                 None => format!("100 \u{d7} {} kg / {} kg", rate.added.kg_text(), rate.full_charge.kg_text()),
             };

@@ -4,7 +4,7 @@ use super::sheet::{Sheet, json_text, row};
 use super::{CalcError, CalcFormat, positive_mass};
 use crate::ledger::Category;
 use crate::quantity::{Mass, Ratio, decimal_text, rounded_text};
-use crate::rules::{Verdict, annualized, rulebook};
+use crate::rules::{Rulebook, Verdict, annualized, rulebook};
 use clap::Args;
 use serde_json::{Value, json};
 
@@ -41,43 +41,43 @@ struct Stand {
 }
 
 pub(super) fn run(args: &RateArgs) -> Result<String, CalcError> {
-    let percent = annualized(args.added, args.full_charge, args.days);
-    let stands = stands(percent, args.category)?;
+    let book = rulebook("us-82f").ok_or_else(|| CalcError::Cannot("the rules of us-82f are missing from this build".to_owned()))?;
+    let row = book.rates.last().ok_or_else(|| CalcError::Cannot("us-82f has no leak rate in this build".to_owned()))?;
+    let percent = annualized(args.added, args.full_charge, args.days, row.longest_days);
+    let days = args.days.min(row.longest_days);
+    let stands = stands(book, percent, args.category);
     match args.format {
-        CalcFormat::Json => Ok(json_text(&answer(args, percent, &stands))),
-        CalcFormat::Table => Ok(sheet(args, percent, &stands)),
+        CalcFormat::Json => Ok(json_text(&answer(args, days, percent, &stands))),
+        CalcFormat::Table => Ok(sheet(args, days, percent, &stands)),
     }
 }
 
 /// The triggers in force last: of the one category, or of every one that has its own.
-fn stands(percent: Ratio, category: Option<Category>) -> Result<Vec<Stand>, CalcError> {
-    let book = rulebook("us-82f").ok_or_else(|| CalcError::Cannot("the triggers of us-82f are missing from this build".to_owned()))?;
+fn stands(book: &Rulebook, percent: Ratio, category: Option<Category>) -> Vec<Stand> {
     let in_force = book.triggers.iter().filter(|row| row.validity.to.is_none());
     let rows: Vec<_> = match category {
         Some(category) => in_force.filter(|row| row.category.is_none_or(|own| own == category)).take(1).collect(),
         None => in_force.collect(),
     };
-    Ok(rows
-        .into_iter()
+    rows.into_iter()
         .map(|row| Stand {
             category: category.or(row.category).map_or("comfort cooling and all others", Category::name).to_owned(),
             trigger: row.percent,
             source: row.source.clone(),
             verdict: Verdict::of(percent, row.percent),
         })
-        .collect())
+        .collect()
 }
 
-fn sheet(args: &RateArgs, percent: Ratio, stands: &[Stand]) -> String {
+fn sheet(args: &RateArgs, days: i64, percent: Ratio, stands: &[Stand]) -> String {
     let mut sheet = Sheet::titled(&format!("Leak rate {} % a year", rounded_text(percent, 2)));
     let cited = sheet.cite(SOURCE);
-    let days = args.days.min(365);
     sheet.rows(
         "",
         &[
             row(["added", &args.added.kg_text(), "kg"]),
             row(["full charge", &args.full_charge.kg_text(), "kg"]),
-            row(["days", &days.to_string(), if args.days > days { "counted of more than 365" } else { "" }]),
+            row(["days", &days.to_string(), if args.days > days { "counted, of more" } else { "" }]),
             row(["rate", &format!("{percent}"), &format!("% a year, exactly  {cited}")]),
         ],
     );
@@ -92,12 +92,12 @@ fn sheet(args: &RateArgs, percent: Ratio, stands: &[Stand]) -> String {
     sheet.finish()
 }
 
-fn answer(args: &RateArgs, percent: Ratio, stands: &[Stand]) -> Value {
+fn answer(args: &RateArgs, days: i64, percent: Ratio, stands: &[Stand]) -> Value {
     json!({
         "full_charge_kg": args.full_charge.kg_text(),
         "added_kg": args.added.kg_text(),
         "days": args.days,
-        "days_counted": args.days.min(365),
+        "days_counted": days,
         "percent": rounded_text(percent, 2),
         "numerator": percent.numer().to_string(),
         "denominator": percent.denom().to_string(),

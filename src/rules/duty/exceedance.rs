@@ -1,0 +1,255 @@
+//! What follows from a leak rate over its trigger: repair, tests, inspections,
+//! a plan; and the report on a chronic leak.
+
+use super::{Duty, DutySource, after_days, is_inspection};
+use crate::ledger::{Act, ApplianceFacts};
+use crate::quantity::{Mass, Ratio, add_months};
+use crate::rules::book::{CountedFrom, DutyKind, DutyRow};
+use crate::rules::rate::{LeakRate, Verdict};
+use crate::rules::scope::applicability;
+use chrono::{Datelike, Days, NaiveDate};
+
+const MONTHS_A_YEAR: u32 = 12;
+/// No inspection series is followed further than this.
+const MOST_PERIODS: u32 = 400;
+
+/// The repair and tests that answer an exceedance, as far as they were done.
+struct Answer {
+    repair: Option<usize>,
+    initial: Option<usize>,
+    follow_up: Option<usize>,
+}
+
+/// The periods of an inspection series: each from after a day to a day.
+struct Periods {
+    days: Vec<(NaiveDate, NaiveDate)>,
+    ends: NaiveDate,
+}
+
+impl DutySource<'_> {
+    fn answer(&self, rate: &LeakRate) -> Answer {
+        let history = self.history;
+        let start = history.first_charge_of_chain(rate.charge).unwrap_or(rate.charge);
+        let before = history.last_charge_before(start);
+        let jobs: Vec<&str> = history.chain(rate.charge).flat_map(|work| work.lines.iter()).filter_map(|&line| history.job(line)).collect();
+        let earliest = self.earliest_repair(rate);
+        let repair = history.first_after(before, |line| {
+            history.is_lasting_repair(line) && (history.date(line) >= earliest || history.job(line).is_some_and(|job| jobs.contains(&job)))
+        });
+        let initial = repair.and_then(|repair| history.first_after(Some(repair), |line| history.is_passed_initial_test(line)));
+        let follow_up =
+            initial.and_then(|initial| history.first_after(Some(initial.max(rate.charge)), |line| history.is_follow_up_that_counts(line)));
+        Answer { repair, initial, follow_up }
+    }
+
+    /// A repair made shortly before the addition answers it too, as far back as the row says.
+    fn earliest_repair(&self, rate: &LeakRate) -> NaiveDate {
+        let facts = self.history.facts_at(rate.charge);
+        let days = facts.and_then(|facts| self.row(DutyKind::Repair, facts, rate.on)).and_then(|row| row.days_before).unwrap_or(0);
+        rate.on.checked_sub_days(Days::new(days.unsigned_abs())).unwrap_or(NaiveDate::MIN)
+    }
+
+    pub(super) fn after_exceedance(&self, index: usize, rate: &LeakRate, duties: &mut Vec<Duty>) {
+        let history = self.history;
+        let Some(facts) = history.facts_at(rate.charge) else { return };
+        let answer = self.answer(rate);
+        let first = duties.len();
+        for (kind, met_by) in [(DutyKind::Repair, answer.repair), (DutyKind::InitialVerification, answer.initial)] {
+            if let Some(row) = self.row(kind, facts, rate.on) {
+                let mut duty = self.duty(row, rate.on, Some(rate.charge), Some(after_days(rate.on, row.days)));
+                duty.meet(history, met_by);
+                self.stop_clock(&mut duty);
+                duties.push(duty);
+            }
+        }
+        if let (Some(initial), Some(row)) = (answer.initial, self.row(DutyKind::FollowUpVerification, facts, rate.on)) {
+            let latest = self.follow_up_from(rate, initial);
+            let due = self.follow_up_runs(rate, initial).then(|| after_days(latest, row.days));
+            let mut duty = self.duty(row, history.date(initial), Some(initial), due);
+            duty.clock_from = latest;
+            duty.meet(history, answer.follow_up);
+            self.stop_clock(&mut duty);
+            duties.push(duty);
+        }
+        self.plan(index, rate, &answer, facts, duties);
+        self.inspections(rate, &answer, facts, duties);
+        // A rule's end ends all that followed from an exceedance under it.
+        let scope_ends = applicability(self.book, facts, rate.on).until;
+        for duty in &mut duties[first..] {
+            duty.rule_ends = [duty.rule_ends, scope_ends].into_iter().flatten().min();
+        }
+    }
+
+    /// The latest of the test, the rate's day, the return to normal operation
+    /// and, where gas was recovered in between, the charge that followed.
+    fn follow_up_from(&self, rate: &LeakRate, initial: usize) -> NaiveDate {
+        let history = self.history;
+        let normal = history.first_after(Some(initial), |line| matches!(history.lines[line].act, Act::NormalOperation));
+        let recharge = self.recharge(rate, initial).flatten();
+        [Some(initial), normal, recharge].into_iter().flatten().map(|line| history.date(line)).fold(rate.on, NaiveDate::max)
+    }
+
+    /// Not before the appliance was charged again, where it was emptied.
+    fn follow_up_runs(&self, rate: &LeakRate, initial: usize) -> bool {
+        self.recharge(rate, initial).is_none_or(|charge| charge.is_some())
+    }
+
+    /// Where gas was recovered between the exceedance and the test: the charge
+    /// after the test, if there was one yet.
+    fn recharge(&self, rate: &LeakRate, initial: usize) -> Option<Option<usize>> {
+        let history = self.history;
+        (rate.charge + 1..initial)
+            .any(|line| history.is_recovery(line))
+            .then(|| history.first_after(Some(initial), |line| history.is_charge(line)))
+    }
+
+    /// Inspections at set periods, until enough of them in a row had no rate over.
+    fn inspections(&self, rate: &LeakRate, answer: &Answer, facts: &ApplianceFacts, duties: &mut Vec<Duty>) {
+        let history = self.history;
+        let after_test = self
+            .row(DutyKind::LeakInspection, facts, rate.on)
+            .is_some_and(|row| row.counted_from == Some(CountedFrom::FollowUpVerification));
+        let start = match (after_test, answer.follow_up) {
+            (true, Some(test)) => test,
+            (true, None) => return,
+            (false, _) => rate.charge,
+        };
+        let from = history.date(start);
+        let Some(facts) = history.facts_at(start) else { return };
+        let Some(row) = self.row(DutyKind::LeakInspection, facts, rate.on) else { return };
+        let periods = self.inspection_periods(row, from);
+        let series_ends = periods.ends;
+        let scope_ends = applicability(self.book, facts, rate.on).until;
+        for (number, (after, end)) in periods.days.into_iter().enumerate() {
+            let begins = if number == 0 { from } else { after_days(after, Some(1)) };
+            if begins > self.on || scope_ends.is_some_and(|last| begins > last) {
+                break;
+            }
+            let mut duty = self.duty(row, from, Some(start), Some(end));
+            // A calendar year's clock starts with the year.
+            duty.clock_from = if row.calendar_year { begins } else { from };
+            let inspected = history.first_after(Some(start), |line| {
+                let day = history.date(line);
+                is_inspection(history, line) && day <= end && (number == 0 || day > after)
+            });
+            duty.meet(history, inspected);
+            self.stop_clock(&mut duty);
+            if series_ends <= self.on {
+                duty.end(series_ends);
+            }
+            duties.push(duty);
+        }
+    }
+
+    /// The periods of a series that begins on a day, and the day it ends on.
+    fn inspection_periods(&self, row: &DutyRow, from: NaiveDate) -> Periods {
+        let over: Vec<NaiveDate> = self.rates.iter().filter(|rate| rate.verdict == Verdict::Over).map(|rate| rate.on).collect();
+        let over_within = |after: NaiveDate, end: NaiveDate| over.iter().copied().filter(|&day| after < day && day <= end).max();
+        let months = row.months.unwrap_or(MONTHS_A_YEAR);
+        if let Some(needed) = row.clean_periods {
+            let (mut days, mut clean, mut after) = (Vec::new(), 0, from);
+            for period in 1..=MOST_PERIODS {
+                let end = add_months(from, months * period);
+                clean = if over_within(after, end).is_some() { 0 } else { clean + 1 };
+                days.push((after, end));
+                after = end;
+                if clean == needed {
+                    break;
+                }
+            }
+            return Periods { days, ends: after };
+        }
+        let mut last_over = from;
+        while let Some(day) = over_within(last_over, add_months(last_over, MONTHS_A_YEAR)) {
+            last_over = day;
+        }
+        let ends = add_months(last_over, MONTHS_A_YEAR);
+        let mut days = Vec::new();
+        let mut after = from;
+        for period in 1..=MOST_PERIODS {
+            let end = if row.calendar_year {
+                NaiveDate::from_ymd_opt(from.year() + period.cast_signed() - 1, 12, 31).unwrap_or(NaiveDate::MAX)
+            } else {
+                add_months(from, months * period)
+            };
+            days.push((after, end));
+            after = end;
+            // The next period would begin on the series' last day or after it.
+            let next = if row.calendar_year { after_days(end, Some(1)) } else { end };
+            if next >= ends {
+                break;
+            }
+        }
+        Periods { days, ends }
+    }
+
+    fn plan(&self, index: usize, rate: &LeakRate, answer: &Answer, facts: &ApplianceFacts, duties: &mut Vec<Duty>) {
+        let history = self.history;
+        let Some(row) = self.row(DutyKind::Plan, facts, rate.on) else { return };
+        let mut duty = self.duty(row, rate.on, Some(rate.charge), Some(after_days(rate.on, row.days)));
+        let made = history.first_after(Some(rate.charge), |line| matches!(history.lines[line].act, Act::PlanMade));
+        if self.over_again(rate, row) {
+            duty.meet(history, made);
+            self.stop_clock(&mut duty);
+            duties.push(duty);
+            return;
+        }
+        // Not over again: asked for only where nothing was repaired in time.
+        self.stop_clock(&mut duty);
+        let Some(shown_from) = duty.due.filter(|_| !duty.suspended) else { return };
+        let repaired = answer.repair.is_some_and(|line| history.date(line) <= shown_from);
+        if repaired || self.on < shown_from {
+            return;
+        }
+        duty.meet(history, made);
+        if let Some(under) = self.rates[index + 1..].iter().find(|later| later.verdict == Verdict::Under) {
+            duty.end(under.on);
+        }
+        duties.push(duty);
+    }
+
+    /// The rate is over again after a repair and tests that count, no rate
+    /// since was under the trigger, and the repair (or its follow-up test) is
+    /// not longer ago than the rule presumes it good.
+    fn over_again(&self, rate: &LeakRate, row: &DutyRow) -> bool {
+        let history = self.history;
+        let Some(within) = row.months else { return false };
+        let test = (0..rate.charge).rev().find(|&line| history.is_follow_up_that_counts(line));
+        let Some(test) = test else { return false };
+        let Some(repair) = (0..test).rev().find(|&line| history.is_lasting_repair(line)) else { return false };
+        let counted = if row.counted_from == Some(CountedFrom::FollowUpVerification) { test } else { repair };
+        let over_before = self.rates.iter().any(|earlier| earlier.verdict == Verdict::Over && earlier.charge < test);
+        let under_since =
+            self.rates.iter().any(|between| between.verdict == Verdict::Under && (test..rate.charge).contains(&between.charge));
+        over_before && !under_since && rate.on <= add_months(history.date(counted), within)
+    }
+
+    pub(super) fn chronic_leaks(&self, duties: &mut Vec<Duty>) {
+        let history = self.history;
+        let mut year = None;
+        let mut sum = Mass::ZERO;
+        let mut reported = false;
+        for line in 0..history.lines.len() {
+            let day = history.date(line);
+            if year != Some(day.year()) {
+                (year, sum, reported) = (Some(day.year()), Mass::ZERO, false);
+            }
+            sum += history.added[line];
+            if reported || !history.added[line].is_positive() {
+                continue;
+            }
+            let Some(facts) = history.facts_at(line).filter(|facts| self.applies(facts, day)) else { continue };
+            let Some(row) = self.row(DutyKind::ChronicLeakReport, facts, day) else { continue };
+            let (Some(percent), Some(full)) = (row.percent, facts.full_charge) else { continue };
+            if Ratio::new(100 * sum.units(), full.units()) >= percent {
+                reported = true;
+                let due = row.due_in_next_year.and_then(|(month, of_month)| NaiveDate::from_ymd_opt(day.year() + 1, month, of_month));
+                let mut duty = self.duty(row, day, Some(line), due);
+                duty.meet(history, history.first_after(Some(line), |later| matches!(history.lines[later].act, Act::ReportSent)));
+                self.stop_clock(&mut duty);
+                duty.rule_ends = [duty.rule_ends, applicability(self.book, facts, day).until].into_iter().flatten().min();
+                duties.push(duty);
+            }
+        }
+    }
+}
