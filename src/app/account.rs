@@ -5,13 +5,13 @@ mod duties;
 use super::service_record::ODP_TABLE;
 use super::{App, AppError, CylinderStanding, PROGRAM};
 use crate::gas::{self, Weighting};
-use crate::ledger::{Act, Appliance, ApplianceId, Line, Registers, Site, SiteFacts, Transfer, VisitState};
+use crate::ledger::{Act, Appliance, Line, Registers, Site, SiteFacts, Transfer, VisitState, by_appliance};
 use crate::quantity::{Mass, MassUnit, Ratio};
 use crate::record::{AccountLine, AnnualAccount, ApplianceAccount, GasAccount, Notice, Party, WeightedLoss};
 use crate::rules::{History, LossEntry, loss_entries, weights};
 use crate::store::VisitFilter;
 use chrono::NaiveDate;
-use std::collections::{BTreeMap, BTreeSet, HashMap};
+use std::collections::{BTreeMap, BTreeSet};
 
 impl App {
     /// The account of a calendar year, of all owners or of one: up to its last
@@ -23,10 +23,7 @@ impl App {
         let today = self.today();
         let span = Span::of(year, today)?;
         let registers = self.store().registers()?;
-        let mut lines: HashMap<ApplianceId, Vec<Line>> = HashMap::new();
-        for line in self.store().lines()? {
-            lines.entry(line.appliance).or_default().push(line);
-        }
+        let lines = by_appliance(self.store().lines()?);
         let plants = plants(&registers, owner, span)?;
         let mut gases: BTreeMap<String, GasSum> = BTreeMap::new();
         let mut account = AnnualAccount {

@@ -33,24 +33,9 @@ impl NewAppliance {
     /// What nobody has said yet is left open, to be completed later.
     fn facts(&self) -> Result<ApplianceFacts, AppError> {
         Ok(ApplianceFacts {
-            category: self.category,
-            refrigerant: self.refrigerant.clone(),
             full_charge: self.full_charge.as_ref().map(|written| positive("full charge", written)).transpose()?,
             full_charge_written: self.full_charge.clone(),
-            charge_method: None,
-            installed_on: None,
-            equipment: None,
-            assembly: String::new(),
-            description: String::new(),
-            serial: String::new(),
-            place: String::new(),
-            labelled_hermetically_sealed: false,
-            residential: false,
-            leakage_detection_system: false,
-            residential_or_light_commercial_ac: false,
-            product_below_minus_50c: false,
-            military: false,
-            room_volume_m3: None,
+            ..ApplianceFacts::new(self.category, self.refrigerant.clone())
         })
     }
 }

@@ -328,32 +328,17 @@ fn same_gas(a: &str, b: &str) -> bool {
 pub(super) mod tests {
     use super::*;
     use crate::ledger::{
-        Appliance, ApplianceFacts, ApplianceId, Category, Content, Cylinder, CylinderBalance, CylinderFacts, CylinderId, RateMethod, Site,
-        SiteFacts, SiteId, Versions,
+        Appliance, ApplianceFacts, ApplianceId, Category, Content, Cylinder, CylinderBalance, CylinderFacts, CylinderId, Site, SiteFacts,
+        SiteId, Versions,
     };
     use crate::quantity::{MassUnit, Weighing};
     use uuid::Uuid;
 
     pub fn appliance_facts(refrigerant: &str) -> ApplianceFacts {
         ApplianceFacts {
-            category: Category::CommercialRefrigeration,
-            refrigerant: refrigerant.to_owned(),
             full_charge: Some(kg("45")),
-            full_charge_written: None,
-            charge_method: None,
             installed_on: Some(day("2020-05-01")),
-            equipment: None,
-            assembly: String::new(),
-            description: String::new(),
-            serial: String::new(),
-            place: String::new(),
-            labelled_hermetically_sealed: false,
-            residential: false,
-            leakage_detection_system: false,
-            residential_or_light_commercial_ac: false,
-            product_below_minus_50c: false,
-            military: false,
-            room_volume_m3: None,
+            ..ApplianceFacts::new(Category::CommercialRefrigeration, refrigerant)
         }
     }
 
@@ -366,14 +351,7 @@ pub(super) mod tests {
     }
 
     fn standing(rulebook: &str, gas: &str) -> ApplianceStanding {
-        let site_facts = SiteFacts {
-            rulebooks: vec![rulebook.to_owned()],
-            owner: "Harbour Fish Ltd".to_owned(),
-            operator: String::new(),
-            address: String::new(),
-            rate_method: RateMethod::Annualizing,
-            time_zone: String::new(),
-        };
+        let site_facts = SiteFacts { owner: "Harbour Fish Ltd".to_owned(), ..SiteFacts::under(vec![rulebook.to_owned()]) };
         let site = Site { id: SiteId(Uuid::nil()), name: "Quay".to_owned(), versions: Versions::always(site_facts.clone()) };
         let facts = appliance_facts(gas);
         let appliance =
@@ -392,23 +370,11 @@ pub(super) mod tests {
 
     fn cylinder(gas: Option<&str>, status: Option<GasStatus>, content: &str) -> CylinderStanding {
         let facts = CylinderFacts {
-            kind: CylinderKind::Recovery,
-            tare: kg("10"),
-            tare_written: Weighing::new("10", MassUnit::Kilogram),
             refrigerant: gas.map(str::to_owned),
             gas_status: status,
-            gross: None,
-            gross_written: None,
             water_capacity_l: Some("26.2".to_owned()),
-            stamped_maximum: None,
             service_pressure_psig: Some("400".to_owned()),
-            test_pressure_bar: None,
-            requalify_by: None,
-            owner: String::new(),
-            gas_owner: String::new(),
-            location: String::new(),
-            gas_source: String::new(),
-            scrapped: None,
+            ..CylinderFacts::new(CylinderKind::Recovery, kg("10"), Weighing::new("10", MassUnit::Kilogram))
         };
         let cylinder = Cylinder { id: CylinderId(Uuid::nil()), name: "S-204".to_owned(), versions: Versions::always(facts.clone()) };
         let balance = CylinderBalance { content: Content::Known(kg(content)), gas: gas.map(str::to_owned), status, last_gross: None };

@@ -5,7 +5,7 @@ mod sheet;
 
 use super::visits::{appliance_named, site_named};
 use super::{Answer, day, open_store, today};
-use crate::ledger::{ApplianceId, Line, Registers};
+use crate::ledger::{ApplianceId, Line, Registers, by_appliance};
 use crate::rules::{Assessment, assess};
 use chrono::NaiveDate;
 use clap::{Args, ValueEnum};
@@ -58,15 +58,6 @@ pub fn run(store: Option<&Path>, args: &AssessArgs) -> anyhow::Result<Answer> {
         AssessFormat::Csv => sheet::csv(&assessments)?,
     };
     Ok(Answer::well(text))
-}
-
-/// Lines by appliance, each in the order in which they were read.
-pub fn by_appliance(lines: Vec<Line>) -> HashMap<ApplianceId, Vec<Line>> {
-    let mut by_appliance: HashMap<ApplianceId, Vec<Line>> = HashMap::new();
-    for line in lines {
-        by_appliance.entry(line.appliance).or_default().push(line);
-    }
-    by_appliance
 }
 
 /// Every wanted appliance judged, by site and identification.

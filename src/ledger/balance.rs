@@ -231,23 +231,11 @@ mod tests {
 
     fn facts(gas: Option<&str>, status: Option<GasStatus>, gross: Option<&str>) -> CylinderFacts {
         CylinderFacts {
-            kind: CylinderKind::Recovery,
-            tare: kg("10"),
-            tare_written: Weighing::new("10", MassUnit::Kilogram),
             refrigerant: gas.map(str::to_owned),
             gas_status: status,
             gross: gross.map(kg),
             gross_written: gross.map(|gross| Weighing::new(gross, MassUnit::Kilogram)),
-            water_capacity_l: None,
-            stamped_maximum: None,
-            service_pressure_psig: None,
-            test_pressure_bar: None,
-            requalify_by: None,
-            owner: String::new(),
-            gas_owner: String::new(),
-            location: String::new(),
-            gas_source: String::new(),
-            scrapped: None,
+            ..CylinderFacts::new(CylinderKind::Recovery, kg("10"), Weighing::new("10", MassUnit::Kilogram))
         }
     }
 

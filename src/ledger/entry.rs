@@ -9,6 +9,7 @@ use super::{
 use crate::quantity::{Mass, Weighing};
 use chrono::{DateTime, NaiveDate, Utc};
 use serde::{Deserialize, Serialize};
+use std::collections::HashMap;
 use std::sync::Arc;
 
 /// When, on the site's own clock.
@@ -32,6 +33,15 @@ pub struct Line {
     /// Order number or name that ties entries on an appliance together.
     pub job: Option<Arc<str>>,
     pub act: Act,
+}
+
+/// Lines by appliance, each in the order in which they came.
+pub fn by_appliance(lines: Vec<Line>) -> HashMap<ApplianceId, Vec<Line>> {
+    let mut by_appliance: HashMap<ApplianceId, Vec<Line>> = HashMap::new();
+    for line in lines {
+        by_appliance.entry(line.appliance).or_default().push(line);
+    }
+    by_appliance
 }
 
 /// What an entry says was done.

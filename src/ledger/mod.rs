@@ -10,7 +10,7 @@ mod visit;
 mod words;
 
 pub use balance::{ApplianceTotals, Content, CylinderBalance, KnownGross, Movement, MovementKind, appliance_totals, cylinder_balance};
-pub use entry::{Act, CautionSeen, Detail, Entry, LeakPlace, Line, Moment, Position, Reading, Transfer, WeighingMode};
+pub use entry::{Act, CautionSeen, Detail, Entry, LeakPlace, Line, Moment, Position, Reading, Transfer, WeighingMode, by_appliance};
 pub use leaks::{OpenLeak, open_leaks};
 pub use register::{
     Appliance, ApplianceFacts, Company, Cylinder, CylinderFacts, Dated, Instrument, InstrumentKind, Person, Site, SiteFacts, Versions,

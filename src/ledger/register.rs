@@ -96,6 +96,20 @@ pub struct SiteFacts {
     pub time_zone: String,
 }
 
+impl SiteFacts {
+    /// A site under these rulebooks; all else is *to complete*.
+    pub fn under(rulebooks: Vec<String>) -> Self {
+        Self {
+            rulebooks,
+            owner: String::new(),
+            operator: String::new(),
+            address: String::new(),
+            rate_method: RateMethod::Annualizing,
+            time_zone: String::new(),
+        }
+    }
+}
+
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
 pub struct Appliance {
     pub id: ApplianceId,
@@ -130,6 +144,32 @@ pub struct ApplianceFacts {
     pub military: bool,
     /// As written, in cubic metres.
     pub room_volume_m3: Option<String>,
+}
+
+impl ApplianceFacts {
+    /// What must be known; all else is *to complete*, and nothing is declared.
+    pub fn new(category: Category, refrigerant: impl Into<String>) -> Self {
+        Self {
+            category,
+            refrigerant: refrigerant.into(),
+            full_charge: None,
+            full_charge_written: None,
+            charge_method: None,
+            installed_on: None,
+            equipment: None,
+            assembly: String::new(),
+            description: String::new(),
+            serial: String::new(),
+            place: String::new(),
+            labelled_hermetically_sealed: false,
+            residential: false,
+            leakage_detection_system: false,
+            residential_or_light_commercial_ac: false,
+            product_below_minus_50c: false,
+            military: false,
+            room_volume_m3: None,
+        }
+    }
 }
 
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
@@ -168,6 +208,31 @@ pub struct CylinderFacts {
     pub gas_source: String,
     /// Out of use, with the reason.
     pub scrapped: Option<String>,
+}
+
+impl CylinderFacts {
+    /// What must be known of a cylinder; all else is *to complete*.
+    pub fn new(kind: CylinderKind, tare: Mass, tare_written: Weighing) -> Self {
+        Self {
+            kind,
+            tare,
+            tare_written,
+            refrigerant: None,
+            gas_status: None,
+            gross: None,
+            gross_written: None,
+            water_capacity_l: None,
+            stamped_maximum: None,
+            service_pressure_psig: None,
+            test_pressure_bar: None,
+            requalify_by: None,
+            owner: String::new(),
+            gas_owner: String::new(),
+            location: String::new(),
+            gas_source: String::new(),
+            scrapped: None,
+        }
+    }
 }
 
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]

@@ -149,8 +149,8 @@ pub fn read_closed(bytes: &[u8]) -> Result<ClosedVisit, NotClosed> {
 mod tests {
     use super::*;
     use crate::ledger::{
-        ApplianceFacts, Category, ChargePurpose, Counterpart, CylinderFacts, CylinderId, CylinderKind, GasStatus, Ink, PersonId,
-        RateMethod, Reading, Scope, Signature, SiteFacts, TestKind, TestResult, Transfer, Versions, WeighingMode,
+        ApplianceFacts, Category, ChargePurpose, Counterpart, CylinderFacts, CylinderId, CylinderKind, GasStatus, Ink, PersonId, Reading,
+        Scope, Signature, SiteFacts, TestKind, TestResult, Transfer, Versions, WeighingMode,
     };
     use crate::quantity::{Mass, MassUnit, Weighing};
     use crate::record::{Party, RecordState, SiteText};
@@ -202,36 +202,19 @@ mod tests {
 
     fn site() -> Site {
         let facts = SiteFacts {
-            rulebooks: vec!["us-82f".to_owned()],
             owner: "Harbour Fish Ltd".to_owned(),
-            operator: String::new(),
             address: "Quay 3".to_owned(),
-            rate_method: RateMethod::Annualizing,
             time_zone: "America/New_York".to_owned(),
+            ..SiteFacts::under(vec!["us-82f".to_owned()])
         };
         Site { id: SiteId(Uuid::from_u128(1)), name: "Fish market cold store".to_owned(), versions: Versions::always(facts) }
     }
 
     fn appliance() -> Appliance {
         let facts = ApplianceFacts {
-            category: Category::CommercialRefrigeration,
-            refrigerant: "R-22".to_owned(),
             full_charge: Some(Mass::from_lb(100)),
             full_charge_written: Some(lb("100")),
-            charge_method: None,
-            installed_on: None,
-            equipment: None,
-            assembly: String::new(),
-            description: String::new(),
-            serial: String::new(),
-            place: String::new(),
-            labelled_hermetically_sealed: false,
-            residential: false,
-            leakage_detection_system: false,
-            residential_or_light_commercial_ac: false,
-            product_below_minus_50c: false,
-            military: false,
-            room_volume_m3: None,
+            ..ApplianceFacts::new(Category::CommercialRefrigeration, "R-22")
         };
         let id = ApplianceId(Uuid::from_u128(2));
         Appliance { id, site: SiteId(Uuid::from_u128(1)), name: "R-1".to_owned(), versions: Versions::always(facts) }
@@ -239,23 +222,12 @@ mod tests {
 
     fn cylinder() -> Cylinder {
         let facts = CylinderFacts {
-            kind: CylinderKind::Supply,
-            tare: Mass::from_lb(20),
-            tare_written: lb("20"),
             refrigerant: Some("R-22".to_owned()),
             gas_status: Some(GasStatus::Virgin),
             gross: Some(Mass::from_lb(70)),
             gross_written: Some(lb("70")),
             water_capacity_l: Some("21.6".to_owned()),
-            stamped_maximum: None,
-            service_pressure_psig: None,
-            test_pressure_bar: None,
-            requalify_by: None,
-            owner: String::new(),
-            gas_owner: String::new(),
-            location: String::new(),
-            gas_source: String::new(),
-            scrapped: None,
+            ..CylinderFacts::new(CylinderKind::Supply, Mass::from_lb(20), lb("20"))
         };
         Cylinder { id: CylinderId(Uuid::from_u128(3)), name: "S-204".to_owned(), versions: Versions::always(facts) }
     }

@@ -3,8 +3,8 @@
 use super::Store;
 use crate::ledger::{
     Act, Appliance, ApplianceFacts, Category, ChargePurpose, Cylinder, CylinderFacts, CylinderKind, Detail, Entry, EntryId, GasStatus,
-    Line, Moment, Person, RateMethod, Reading, RecoveryPurpose, Scope, Site, SiteFacts, TestKind, TestResult, Transfer, Versions, Visit,
-    VisitState, WeighingMode,
+    Line, Moment, Person, Reading, RecoveryPurpose, Scope, Site, SiteFacts, TestKind, TestResult, Transfer, Versions, Visit, VisitState,
+    WeighingMode,
 };
 use crate::quantity::{Mass, MassUnit, Weighing};
 use chrono::{DateTime, Utc};
@@ -35,59 +35,30 @@ fn kg(text: &str) -> Mass {
 
 pub fn site() -> Site {
     let facts = SiteFacts {
-        rulebooks: vec!["us-82f".to_owned()],
         owner: "Harbour Fish Ltd".to_owned(),
-        operator: String::new(),
         address: "Quay 3".to_owned(),
-        rate_method: RateMethod::Annualizing,
         time_zone: "Etc/UTC".to_owned(),
+        ..SiteFacts::under(vec!["us-82f".to_owned()])
     };
     Site { id: ids::SITE, name: "Fish market".to_owned(), versions: Versions::always(facts) }
 }
 
 pub fn appliance() -> Appliance {
     let facts = ApplianceFacts {
-        category: Category::CommercialRefrigeration,
-        refrigerant: "R-22".to_owned(),
         full_charge: Some(Mass::from_lb(100)),
         full_charge_written: Some(Weighing::new("100", MassUnit::Pound)),
-        charge_method: None,
-        installed_on: None,
-        equipment: None,
-        assembly: String::new(),
-        description: String::new(),
-        serial: String::new(),
-        place: String::new(),
-        labelled_hermetically_sealed: false,
-        residential: false,
-        leakage_detection_system: false,
-        residential_or_light_commercial_ac: false,
-        product_below_minus_50c: false,
-        military: false,
-        room_volume_m3: None,
+        ..ApplianceFacts::new(Category::CommercialRefrigeration, "R-22")
     };
     Appliance { id: ids::APPLIANCE, site: ids::SITE, name: "R-1".to_owned(), versions: Versions::always(facts) }
 }
 
 pub fn cylinder() -> Cylinder {
     let facts = CylinderFacts {
-        kind: CylinderKind::Supply,
-        tare: kg("10"),
-        tare_written: Weighing::new("10", MassUnit::Kilogram),
         refrigerant: Some("R-22".to_owned()),
         gas_status: Some(GasStatus::Reclaimed),
         gross: Some(kg("20")),
         gross_written: Some(Weighing::new("20", MassUnit::Kilogram)),
-        water_capacity_l: None,
-        stamped_maximum: None,
-        service_pressure_psig: None,
-        test_pressure_bar: None,
-        requalify_by: None,
-        owner: String::new(),
-        gas_owner: String::new(),
-        location: String::new(),
-        gas_source: String::new(),
-        scrapped: None,
+        ..CylinderFacts::new(CylinderKind::Supply, kg("10"), Weighing::new("10", MassUnit::Kilogram))
     };
     Cylinder { id: ids::CYLINDER, name: "S-204".to_owned(), versions: Versions::always(facts) }
 }

@@ -4,7 +4,7 @@ use bubblepoint::app::testing::{CountedIds, SetClock};
 use bubblepoint::app::{App, ChargeInput, Common, NewAppliance, NewSite, RecoverInput};
 use bubblepoint::ledger::{
     ApplianceId, Category, ChargePurpose, Company, Counterpart, CylinderFacts, CylinderId, CylinderKind, GasStatus, Ink, Person, PersonId,
-    RateMethod, Reading, RecoveryPurpose, Signature, SiteFacts, SiteId, Visit, WeighingMode,
+    Reading, RecoveryPurpose, Signature, SiteFacts, SiteId, Visit, WeighingMode,
 };
 use bubblepoint::quantity::{MassUnit, Weighing};
 use bubblepoint::store::{OpenMode, Store};
@@ -58,12 +58,10 @@ pub fn plant_under(store: Store, rulebooks: &[&str]) -> Plant {
     let ada = app.add_person(person("Ada Quill")).unwrap();
     let ben = app.add_person(person("Ben Osei")).unwrap();
     let facts = SiteFacts {
-        rulebooks: rulebooks.iter().map(|id| (*id).to_owned()).collect(),
         owner: "Harbour Fish Ltd".to_owned(),
-        operator: String::new(),
         address: "Quay 3".to_owned(),
-        rate_method: RateMethod::Annualizing,
         time_zone: "America/New_York".to_owned(),
+        ..SiteFacts::under(rulebooks.iter().map(|id| (*id).to_owned()).collect())
     };
     let site = app.add_site(NewSite { name: "Fish market cold store".to_owned(), facts }).unwrap();
     let new = NewAppliance {
@@ -92,23 +90,13 @@ pub fn lb(text: &str) -> Weighing {
 
 fn cylinder(kind: CylinderKind, tare: &str, gross: Option<&str>, gas: Option<&str>, status: Option<GasStatus>) -> CylinderFacts {
     CylinderFacts {
-        kind,
-        tare: lb(tare).mass().unwrap(),
-        tare_written: lb(tare),
         refrigerant: gas.map(str::to_owned),
         gas_status: status,
         gross: gross.map(|gross| lb(gross).mass().unwrap()),
         gross_written: gross.map(lb),
         water_capacity_l: Some("21.6".to_owned()),
-        stamped_maximum: None,
         service_pressure_psig: Some("400".to_owned()),
-        test_pressure_bar: None,
-        requalify_by: None,
-        owner: String::new(),
-        gas_owner: String::new(),
-        location: String::new(),
-        gas_source: String::new(),
-        scrapped: None,
+        ..CylinderFacts::new(kind, lb(tare).mass().unwrap(), lb(tare))
     }
 }
 

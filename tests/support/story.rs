@@ -38,33 +38,10 @@ pub fn mass(text: &str) -> Mass {
 impl Story {
     /// An appliance under `rulebooks`, annualizing.
     pub fn new(rulebooks: &str, category: Category, refrigerant: &str, full_charge: &str) -> Self {
-        let site = SiteFacts {
-            rulebooks: rulebooks.split_whitespace().map(str::to_owned).collect(),
-            owner: String::new(),
-            operator: String::new(),
-            address: String::new(),
-            rate_method: RateMethod::Annualizing,
-            time_zone: String::new(),
-        };
+        let site = SiteFacts::under(rulebooks.split_whitespace().map(str::to_owned).collect());
         let facts = ApplianceFacts {
-            category,
-            refrigerant: refrigerant.to_owned(),
             full_charge: (!full_charge.is_empty()).then(|| mass(full_charge)),
-            full_charge_written: None,
-            charge_method: None,
-            installed_on: None,
-            equipment: None,
-            assembly: String::new(),
-            description: String::new(),
-            serial: String::new(),
-            place: String::new(),
-            labelled_hermetically_sealed: false,
-            residential: false,
-            leakage_detection_system: false,
-            residential_or_light_commercial_ac: false,
-            product_below_minus_50c: false,
-            military: false,
-            room_volume_m3: None,
+            ..ApplianceFacts::new(category, refrigerant)
         };
         Self {
             site: Site { id: SiteId(Uuid::nil()), name: "Site".to_owned(), versions: Versions::always(site) },

@@ -224,24 +224,17 @@ fn new_chiller(stage: &Stage, cast: &Cast) -> Told {
     let site = cast.registers().site_named("Civic archive").ok_or(crate::app::AppError::Unknown { what: "site" })?.id;
     let charge = Weighing::new("310", MassUnit::Pound);
     let facts = ApplianceFacts {
-        category: Category::ComfortCooling,
-        refrigerant: "R-134a".to_owned(),
         full_charge: charge.mass().ok(),
         full_charge_written: Some(charge.clone()),
         charge_method: Some(ChargeMethod::Manufacturer),
         installed_on: Some(stage.day(100)),
         equipment: Some(Equipment::Chiller),
-        assembly: String::new(),
         description: "Chiller of the reading rooms".to_owned(),
         serial: "SC-310-19".to_owned(),
         place: "basement, plant room 2".to_owned(),
-        labelled_hermetically_sealed: false,
-        residential: false,
         leakage_detection_system: true,
-        residential_or_light_commercial_ac: false,
-        product_below_minus_50c: false,
-        military: false,
         room_volume_m3: Some("180".to_owned()),
+        ..ApplianceFacts::new(Category::ComfortCooling, "R-134a")
     };
     let chiller = stage.app.add_appliance_with(site, "CA-2", facts)?;
     let now = stage.cast()?;

@@ -210,8 +210,6 @@ fn read(form: &mut Form, before: Option<&ApplianceFacts>, unit: crate::quantity:
         None => None,
     };
     Some(ApplianceFacts {
-        category: Category::from_name(form.text("category")).unwrap_or(Category::Other),
-        refrigerant: refrigerant?,
         full_charge,
         full_charge_written: written.filter(|_| same.is_none()),
         charge_method: ChargeMethod::from_name(form.text("charge-method")).ok(),
@@ -228,5 +226,6 @@ fn read(form: &mut Form, before: Option<&ApplianceFacts>, unit: crate::quantity:
         product_below_minus_50c: form.is_on("below-minus-50"),
         military: form.is_on("military"),
         room_volume_m3: room?,
+        ..ApplianceFacts::new(Category::from_name(form.text("category")).unwrap_or(Category::Other), refrigerant?)
     })
 }

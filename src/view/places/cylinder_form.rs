@@ -174,9 +174,6 @@ fn read(form: &mut Form, unit: MassUnit) -> Option<CylinderFacts> {
     let tare_written = tare?;
     let (gross_written, stamped) = (gross?, stamped?);
     Some(CylinderFacts {
-        kind: CylinderKind::from_name(form.text("kind")).unwrap_or(CylinderKind::Supply),
-        tare: tare_written.mass().ok()?,
-        tare_written,
         refrigerant: refrigerant?,
         gas_status: GasStatus::from_name(form.text("status")).ok(),
         gross: gross_written.as_ref().and_then(|weighing| weighing.mass().ok()),
@@ -191,5 +188,10 @@ fn read(form: &mut Form, unit: MassUnit) -> Option<CylinderFacts> {
         location: form.trimmed("location"),
         gas_source: form.trimmed("gas-source"),
         scrapped: Some(form.trimmed("scrapped")).filter(|reason| !reason.is_empty()),
+        ..CylinderFacts::new(
+            CylinderKind::from_name(form.text("kind")).unwrap_or(CylinderKind::Supply),
+            tare_written.mass().ok()?,
+            tare_written,
+        )
     })
 }

@@ -2,7 +2,9 @@
 //! of appliances show. Read whole, by a worker where the store is a file, so
 //! that the first frame does not wait for it.
 
-use crate::ledger::{Act, Appliance, ApplianceFacts, ApplianceId, Line, OpenLeak, Registers, Site, TestResult, Visit, VisitId, open_leaks};
+use crate::ledger::{
+    Act, Appliance, ApplianceFacts, ApplianceId, Line, OpenLeak, Registers, Site, TestResult, Visit, VisitId, by_appliance, open_leaks,
+};
 use crate::quantity::Ratio;
 use crate::rules::{self, Duty, DutyState, Judgement, LeakRate, assess};
 use crate::store::{Store, StoreError};
@@ -63,10 +65,7 @@ impl Overview {
     /// The store's own.
     pub fn read(store: &Store, now: DateTime<Utc>, today: NaiveDate) -> Result<Self, StoreError> {
         let registers = store.registers()?;
-        let mut lines: HashMap<ApplianceId, Vec<Line>> = HashMap::new();
-        for line in store.lines()? {
-            lines.entry(line.appliance).or_default().push(line);
-        }
+        let lines = by_appliance(store.lines()?);
         let sites: HashMap<_, &Site> = registers.sites.iter().map(|site| (site.id, site)).collect();
         let mut appliances = Vec::with_capacity(registers.appliances.len());
         for appliance in &registers.appliances {

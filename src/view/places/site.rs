@@ -31,7 +31,7 @@ impl Office {
         let Some(overview) = &self.overview else { return Ok(None) };
         let Some(site) = overview.registers.site(site) else { return Ok(None) };
         let now = site.versions.on(self.today).unwrap_or_else(|| site.versions.latest());
-        let asks_method = now.rulebooks.iter().filter_map(|id| rules::rulebook(id)).any(|book| book.rates.is_some());
+        let asks_method = now.rulebooks.iter().filter_map(|id| rules::rulebook(id)).any(|book| !book.rates.is_empty());
         let mut facts = vec![
             Fact::new("owner", &now.owner),
             Fact::new("operator", &now.operator),

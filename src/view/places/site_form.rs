@@ -78,7 +78,7 @@ impl Office {
 
     /// A method matters only where a chosen rulebook has a leak rate.
     pub fn site_form_asks_method(&self) -> bool {
-        built_in().iter().any(|book| book.rates.is_some() && self.plant.site_form.is_on(&format!("rulebook {}", book.id)))
+        built_in().iter().any(|book| !book.rates.is_empty() && self.plant.site_form.is_on(&format!("rulebook {}", book.id)))
     }
 
     pub fn site_form_ready(&self) -> Ready {
@@ -124,12 +124,12 @@ impl Office {
             return Vec::new();
         }
         let facts = SiteFacts {
-            rulebooks,
             owner: form.trimmed("owner"),
             operator: form.trimmed("operator"),
             address: form.trimmed("address"),
             rate_method: RateMethod::from_name(form.text("method")).unwrap_or(RateMethod::Annualizing),
             time_zone: form.trimmed("time-zone"),
+            ..SiteFacts::under(rulebooks)
         };
         let (name, reason) = (form.trimmed("name"), form.trimmed("reason"));
         let done = match self.plant.changed_site {

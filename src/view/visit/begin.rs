@@ -134,12 +134,9 @@ impl Desk {
         let titles: Vec<&str> = rulebooks.iter().filter_map(|id| rulebook(id)).map(|book| book.title.as_str()).collect();
         let told = words::rulebooks_taken(&titles.join(", "));
         let facts = SiteFacts {
-            rulebooks,
             owner: self.begin.owner.trim().to_owned(),
-            operator: String::new(),
             address: self.begin.site_address.trim().to_owned(),
-            rate_method: RateMethod::Annualizing,
-            time_zone: String::new(),
+            ..SiteFacts::under(rulebooks)
         };
         let site = self.app.add_site(NewSite { name: self.begin.site_name.clone(), facts })?;
         self.say(Message::told(told));

@@ -108,26 +108,12 @@ impl Desk {
         let unit = self.fresh_weighing()?.unit;
         let written = parse::mass(&state.full_charge, unit).map_err(|sentence| AppError::Input { field: "full charge", sentence })?;
         let full_charge = written.as_ref().and_then(|written| written.mass().ok());
+        // What it is used for is asked later; until then the strictest trigger holds.
         let facts = ApplianceFacts {
-            // What it is used for is asked later; until then the strictest trigger holds.
-            category: Category::Other,
-            refrigerant: state.gas.trim().to_owned(),
             full_charge,
             full_charge_written: written,
-            charge_method: None,
-            installed_on: None,
-            equipment: None,
-            assembly: String::new(),
-            description: String::new(),
-            serial: String::new(),
             place: state.place.trim().to_owned(),
-            labelled_hermetically_sealed: false,
-            residential: false,
-            leakage_detection_system: false,
-            residential_or_light_commercial_ac: false,
-            product_below_minus_50c: false,
-            military: false,
-            room_volume_m3: None,
+            ..ApplianceFacts::new(Category::Other, state.gas.trim().to_owned())
         };
         let site = self.work()?.visit.site;
         let appliance = self.app.add_appliance_with(site, &state.identification, facts)?;

@@ -166,23 +166,14 @@ impl Desk {
         // A cylinder for recovery may be empty; gas is named in it by the recovery.
         let empty = panel == Panel::Recover;
         let facts = CylinderFacts {
-            kind: state.kind,
-            tare: tare_written.mass().map_err(|e| refused("tare", words::sentence(&e.to_string())))?,
-            tare_written,
             refrigerant: (!empty).then(|| standing.facts.refrigerant.clone()),
             gas_status: (!empty).then_some(state.status),
-            gross: None,
-            gross_written: None,
             water_capacity_l: litres,
-            stamped_maximum: None,
-            service_pressure_psig: None,
-            test_pressure_bar: None,
-            requalify_by: None,
-            owner: String::new(),
-            gas_owner: String::new(),
-            location: String::new(),
-            gas_source: String::new(),
-            scrapped: None,
+            ..CylinderFacts::new(
+                state.kind,
+                tare_written.mass().map_err(|e| refused("tare", words::sentence(&e.to_string())))?,
+                tare_written,
+            )
         };
         let cylinder = self.app.add_cylinder(&state.identification, facts)?;
         self.reload_registers()?;

@@ -5,8 +5,7 @@ use super::{Panel, begin, cautions, charge, choose_appliance, choose_cylinder, c
 use crate::app::testing::{CountedIds, SetClock};
 use crate::app::{App, NewSite};
 use crate::ledger::{
-    ApplianceFacts, ApplianceId, Category, CylinderFacts, CylinderId, CylinderKind, GasStatus, Person, PersonId, RateMethod, SiteFacts,
-    SiteId,
+    ApplianceFacts, ApplianceId, Category, CylinderFacts, CylinderId, CylinderKind, GasStatus, Person, PersonId, SiteFacts, SiteId,
 };
 use crate::quantity::{MassUnit, Weighing};
 use crate::store::{OpenMode, Store};
@@ -35,47 +34,29 @@ fn weighing(text: &str) -> Option<Weighing> {
 
 pub fn appliance(gas: &str, full_charge: &str) -> ApplianceFacts {
     ApplianceFacts {
-        category: Category::CommercialRefrigeration,
-        refrigerant: gas.to_owned(),
         full_charge: weighing(full_charge).and_then(|written| written.mass().ok()),
         full_charge_written: weighing(full_charge),
-        charge_method: None,
         installed_on: "2020-05-01".parse().ok(),
-        equipment: None,
-        assembly: String::new(),
-        description: String::new(),
-        serial: String::new(),
         place: "cold room 2".to_owned(),
-        labelled_hermetically_sealed: false,
-        residential: false,
-        leakage_detection_system: false,
-        residential_or_light_commercial_ac: false,
-        product_below_minus_50c: false,
-        military: false,
-        room_volume_m3: None,
+        ..ApplianceFacts::new(Category::CommercialRefrigeration, gas)
     }
 }
 
 fn cylinder(gas: Option<&str>, gross: Option<&str>) -> CylinderFacts {
     let mass = |text: &str| Weighing::new(text, MassUnit::Kilogram).mass().unwrap();
     CylinderFacts {
-        kind: if gas.is_some() { CylinderKind::Supply } else { CylinderKind::Recovery },
-        tare: mass("10"),
-        tare_written: Weighing::new("10", MassUnit::Kilogram),
         refrigerant: gas.map(str::to_owned),
         gas_status: gas.map(|_| GasStatus::Virgin),
         gross: gross.map(mass),
         gross_written: gross.and_then(weighing),
         water_capacity_l: Some("26.2".to_owned()),
-        stamped_maximum: None,
         service_pressure_psig: Some("400".to_owned()),
-        test_pressure_bar: None,
-        requalify_by: None,
-        owner: String::new(),
-        gas_owner: String::new(),
         location: "van 3".to_owned(),
-        gas_source: String::new(),
-        scrapped: None,
+        ..CylinderFacts::new(
+            if gas.is_some() { CylinderKind::Supply } else { CylinderKind::Recovery },
+            mass("10"),
+            Weighing::new("10", MassUnit::Kilogram),
+        )
     }
 }
 
@@ -117,12 +98,10 @@ impl Bench {
         };
         app.add_person(person).unwrap();
         let facts = SiteFacts {
-            rulebooks: vec!["us-82f".to_owned()],
             owner: "Harbour Fish Ltd".to_owned(),
-            operator: String::new(),
             address: "Quay 7".to_owned(),
-            rate_method: RateMethod::Annualizing,
             time_zone: "America/New_York".to_owned(),
+            ..SiteFacts::under(vec!["us-82f".to_owned()])
         };
         let site = app.add_site(NewSite { name: "Fish market".to_owned(), facts }).unwrap();
         let r1 = app.add_appliance_with(site, "R-1", appliance("R-22", "45.36")).unwrap();

@@ -5,8 +5,7 @@ use bubblepoint::app::testing::{CountedIds, SetClock};
 use bubblepoint::app::{App, NewSite};
 use bubblepoint::gui::{Gui, desk_options};
 use bubblepoint::ledger::{
-    ApplianceFacts, Category, CylinderFacts, CylinderKind, GasStatus, Instrument, InstrumentId, InstrumentKind, Person, PersonId,
-    RateMethod, SiteFacts,
+    ApplianceFacts, Category, CylinderFacts, CylinderKind, GasStatus, Instrument, InstrumentId, InstrumentKind, Person, PersonId, SiteFacts,
 };
 use bubblepoint::quantity::{MassUnit, Weighing};
 use bubblepoint::store::{OpenMode, Store};
@@ -162,55 +161,30 @@ fn furnish(folder: &Path) {
     };
     app.add_person(person).expect("a person");
     let facts = SiteFacts {
-        rulebooks: vec!["us-82f".to_owned()],
         owner: "Harbour Fish Ltd".to_owned(),
-        operator: String::new(),
         address: "Quay 7".to_owned(),
-        rate_method: RateMethod::Annualizing,
         time_zone: "America/New_York".to_owned(),
+        ..SiteFacts::under(vec!["us-82f".to_owned()])
     };
     let site = app.add_site(NewSite { name: "Fish market cold store".to_owned(), facts }).expect("a site");
     for (name, charge) in [("R-1", "45.36"), ("R-2", "30")] {
         let facts = ApplianceFacts {
-            category: Category::CommercialRefrigeration,
-            refrigerant: "R-22".to_owned(),
             full_charge: kilograms(charge).mass().ok(),
             full_charge_written: Some(kilograms(charge)),
-            charge_method: None,
             installed_on: "2020-05-01".parse().ok(),
-            equipment: None,
-            assembly: String::new(),
-            description: String::new(),
-            serial: String::new(),
             place: "cold room 2".to_owned(),
-            labelled_hermetically_sealed: false,
-            residential: false,
-            leakage_detection_system: false,
-            residential_or_light_commercial_ac: false,
-            product_below_minus_50c: false,
-            military: false,
-            room_volume_m3: None,
+            ..ApplianceFacts::new(Category::CommercialRefrigeration, "R-22")
         };
         app.add_appliance_with(site, name, facts).expect("an appliance");
     }
     let facts = CylinderFacts {
-        kind: CylinderKind::Supply,
-        tare: kilograms("10").mass().expect("a mass"),
-        tare_written: kilograms("10"),
         refrigerant: Some("R-22".to_owned()),
         gas_status: Some(GasStatus::Virgin),
         gross: kilograms("24.18").mass().ok(),
         gross_written: Some(kilograms("24.18")),
         water_capacity_l: Some("26.2".to_owned()),
-        stamped_maximum: None,
-        service_pressure_psig: None,
-        test_pressure_bar: None,
-        requalify_by: None,
-        owner: String::new(),
-        gas_owner: String::new(),
         location: "van 3".to_owned(),
-        gas_source: String::new(),
-        scrapped: None,
+        ..CylinderFacts::new(CylinderKind::Supply, kilograms("10").mass().expect("a mass"), kilograms("10"))
     };
     app.add_cylinder("S-204", facts).expect("a cylinder");
     for (kind, name, division) in
