@@ -385,10 +385,10 @@ fn retrofit(input: &RetrofitInput) -> Result<Work, AppError> {
     let full_charge = input.full_charge.as_ref().map(|written| written.mass().map_err(|e| AppError::input("full charge", e.to_string())));
     let full_charge = full_charge.transpose()?;
     if full_charge.is_some_and(|mass| !mass.is_positive()) {
-        return Err(AppError::input("full charge", "A full charge is more than nothing; leave it empty where it is not known yet."));
+        return Err(AppError::input("full charge", "A full charge is more than nothing; leave it empty where it stays as it was."));
     }
     let detail = Detail { new_full_charge: input.full_charge.clone(), ..Detail::default() };
-    Ok(Work::plain(Act::Retrofit { refrigerant: gas.to_owned(), full_charge }, detail))
+    Ok(Work::plain(Act::Retrofit { refrigerant: Some(gas.to_owned()), full_charge }, detail))
 }
 
 /// The catalogue's name of a gas.

@@ -80,8 +80,9 @@ pub enum Act {
     NormalOperation,
     DetectionSystemCheck,
     Mothball,
+    /// What is not named stays as it was.
     Retrofit {
-        refrigerant: String,
+        refrigerant: Option<String>,
         full_charge: Option<Mass>,
     },
     Retire,

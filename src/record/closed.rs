@@ -195,7 +195,7 @@ mod tests {
         vec![
             entry(10, Act::Charge { purpose: ChargePurpose::Leak, transfer }, weighed),
             entry(11, test, Detail::default()),
-            entry(12, Act::Retrofit { refrigerant: "R-448A".to_owned(), full_charge: Some(Mass::from_kg(40)) }, Detail::default()),
+            entry(12, Act::Retrofit { refrigerant: Some("R-448A".to_owned()), full_charge: Some(Mass::from_kg(40)) }, Detail::default()),
             ClosedEntry { strikes: Some(EntryId(Uuid::from_u128(11))), minute: None, job: None, ..entry(13, Act::Note, note) },
         ]
     }

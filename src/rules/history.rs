@@ -325,7 +325,14 @@ fn facts_over_time(appliance: &Appliance, lines: &[&Line]) -> Vec<(NaiveDate, Op
         let facts = match (version, line.map(|index| &lines[index].act), timeline.last()) {
             (Some(version), _, _) => version.clone(),
             (None, Some(Act::Retrofit { refrigerant, full_charge }), Some((_, _, before))) => {
-                ApplianceFacts { refrigerant: refrigerant.clone(), full_charge: *full_charge, full_charge_written: None, ..before.clone() }
+                let mut facts = before.clone();
+                if let Some(refrigerant) = refrigerant {
+                    facts.refrigerant.clone_from(refrigerant);
+                }
+                if full_charge.is_some() {
+                    (facts.full_charge, facts.full_charge_written) = (*full_charge, None);
+                }
+                facts
             }
             _ => continue,
         };

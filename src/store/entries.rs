@@ -177,7 +177,7 @@ impl<'a> ActColumns<'a> {
             },
             Act::Repair { temporary } => Self { temporary: Some(*temporary), ..Self::default() },
             Act::Retrofit { refrigerant, full_charge } => {
-                Self { new_refrigerant: Some(refrigerant), new_full_charge: *full_charge, ..Self::default() }
+                Self { new_refrigerant: refrigerant.as_deref(), new_full_charge: *full_charge, ..Self::default() }
             }
             Act::NormalOperation
             | Act::DetectionSystemCheck

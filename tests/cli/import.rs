@@ -71,3 +71,23 @@ fn every_bad_line_is_listed() {
     assert!(refused.contains("appliances.csv, line 2, column refrigerant:"), "{refused}");
     assert!(refused.contains("appliances.csv, line 3, column category:"), "{refused}");
 }
+
+/// A retrofit line that names no gas, or no charge, leaves it as it was.
+#[test]
+fn what_a_retrofit_does_not_name_stays_as_it_was() {
+    let desk = stocked();
+    desk.import(&[(
+        "retrofit.csv",
+        "date,appliance,what,new_refrigerant,new_full_charge,new_unit\n\
+         2026-05-02,R-1,retrofit,,40,kg\n2026-05-01,R-1,retrofit,R-448A,,\n2026-05-03,R-1,retrofit,,,\n",
+    )]);
+    let after = |day: &str| {
+        let assessed = desk.on_store(&["assess", "--on", day, "--format", "json"]).done();
+        let assessed: serde_json::Value = serde_json::from_str(&assessed).unwrap();
+        let appliance = &assessed["appliances"][0];
+        (appliance["refrigerant"].as_str().unwrap().to_owned(), appliance["full_charge_kg"].as_str().unwrap().to_owned())
+    };
+    assert_eq!(after("2026-04-30"), ("R-22".to_owned(), "45.359237".to_owned()));
+    assert_eq!(after("2026-05-01"), ("R-448A".to_owned(), "45.359237".to_owned()));
+    assert_eq!(after("2026-05-03"), ("R-448A".to_owned(), "40".to_owned()));
+}

@@ -70,7 +70,7 @@ pub(super) fn take(
             at: row.at,
             position,
             job: (!row.job.is_empty()).then(|| Arc::from(row.job.as_str())),
-            act: act(row, cylinder, &names, appliance),
+            act: act(row, cylinder),
         };
         let detail = detail(row, person);
         entries.push((row, site, Entry { line, visit, written: tx.now(), strikes: None, struck_by: None, detail }));
@@ -124,7 +124,6 @@ struct Names<'a> {
     sites: HashMap<&'a str, SiteId>,
     appliances: HashMap<&'a str, Vec<(SiteId, ApplianceId)>>,
     cylinders: HashMap<&'a str, CylinderId>,
-    registers: &'a Registers,
 }
 
 impl<'a> Names<'a> {
@@ -137,7 +136,6 @@ impl<'a> Names<'a> {
             sites: registers.sites.iter().map(|site| (site.name.as_str(), site.id)).collect(),
             appliances,
             cylinders: registers.cylinders.iter().map(|cylinder| (cylinder.name.as_str(), cylinder.id)).collect(),
-            registers,
         }
     }
 
@@ -161,7 +159,7 @@ impl<'a> Names<'a> {
     }
 }
 
-fn act(row: &LogRow, cylinder: Option<CylinderId>, names: &Names, appliance: ApplianceId) -> Act {
+fn act(row: &LogRow, cylinder: Option<CylinderId>) -> Act {
     // Only what was weighed out of or into a cylinder has a known scale: the
     // digits written are its division. Without a cylinder the error is unknown.
     let transfer =
@@ -181,25 +179,13 @@ fn act(row: &LogRow, cylinder: Option<CylinderId>, names: &Names, appliance: App
         LogWhat::NormalOperation => Act::NormalOperation,
         LogWhat::DetectionSystemCheck => Act::DetectionSystemCheck,
         LogWhat::Mothball => Act::Mothball,
-        LogWhat::Retrofit { refrigerant, full_charge } => Act::Retrofit {
-            refrigerant: refrigerant.clone().unwrap_or_else(|| names.refrigerant_on(appliance, row.at.date)),
-            full_charge: full_charge.as_ref().map(|(mass, _)| *mass),
-        },
+        LogWhat::Retrofit { refrigerant, full_charge } => {
+            Act::Retrofit { refrigerant: refrigerant.clone(), full_charge: full_charge.as_ref().map(|(mass, _)| *mass) }
+        }
         LogWhat::Retire => Act::Retire,
         LogWhat::PlanMade => Act::PlanMade,
         LogWhat::ReportSent => Act::ReportSent,
         LogWhat::Note => Act::Note,
-    }
-}
-
-impl Names<'_> {
-    /// What a retrofit that names no new gas keeps.
-    fn refrigerant_on(&self, appliance: ApplianceId, day: NaiveDate) -> String {
-        self.registers
-            .appliance(appliance)
-            .and_then(|appliance| appliance.versions.on(day))
-            .map(|facts| facts.refrigerant.clone())
-            .unwrap_or_default()
     }
 }
 

@@ -88,12 +88,13 @@ fn work(entry: &Entry, names: &Names<'_>) -> Work {
             Work::Repair(RepairFacts { place: detail.place.clone(), done: detail.note.clone(), temporary: *temporary })
         }
         Act::Retrofit { refrigerant, full_charge } => {
+            let gas = refrigerant.as_ref().map_or("Gas as before".to_owned(), |gas| format!("Now {gas}"));
             let charge = match (&detail.new_full_charge, full_charge) {
                 (Some(written), _) => written.text(),
                 (None, Some(charge)) => format!("{} kg", charge.kg_text()),
-                (None, None) => "to complete".to_owned(),
+                (None, None) => "as before".to_owned(),
             };
-            other(entry, format!("Now {refrigerant}, full charge {charge}."), String::new())
+            other(entry, format!("{gas}, full charge {charge}."), String::new())
         }
         Act::Recycle { cylinder } => {
             let cylinder = cylinder.and_then(|id| names.registers.cylinder(id)).map(|cylinder| format!("Cylinder {}", cylinder.name));

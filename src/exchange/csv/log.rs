@@ -51,7 +51,7 @@ pub enum LogWhat {
     NormalOperation,
     DetectionSystemCheck,
     Mothball,
-    /// `refrigerant` is `None` where only the charge changed.
+    /// What is not named stays as it was.
     Retrofit {
         refrigerant: Option<String>,
         full_charge: Option<(Mass, Weighing)>,

@@ -281,7 +281,7 @@ impl Desk {
                 fact("result", result.map(crate::ledger::TestResult::name).unwrap_or_default());
                 fact("looked at", scope.map(crate::ledger::Scope::name).unwrap_or_default());
             }
-            Act::Retrofit { refrigerant, .. } => fact("gas from then on", refrigerant),
+            Act::Retrofit { refrigerant, .. } => fact("gas from then on", refrigerant.as_deref().unwrap_or_default()),
             _ => {}
         }
         fact("method", &detail.method);

@@ -155,7 +155,7 @@ impl Desk {
                 let state = if *temporary { words::temporary() } else { String::new() };
                 (format::commas([&*detail.place, &*detail.note]), state)
             }
-            Act::Retrofit { refrigerant, .. } => (format!("now {refrigerant}"), String::new()),
+            Act::Retrofit { refrigerant, .. } => (refrigerant.as_ref().map(|gas| format!("now {gas}")).unwrap_or_default(), String::new()),
             Act::Recycle { .. } => (format::commas([&*cylinder, &*detail.method]), String::new()),
             _ => (format::commas([&*detail.level_reached, &*detail.note]), String::new()),
         };
