@@ -363,7 +363,8 @@ fn test(input: &TestInput) -> Result<Work, AppError> {
     };
     // The log's own way of saying so.
     let note = if input.partial { format!("partial {}", input.common.note.trim()).trim_end().to_owned() } else { String::new() };
-    Ok(Work { note, ..Work::plain(act, detail) })
+    let refusals = refusals::of_inspection(input.kind, &input.method).into_iter().collect();
+    Ok(Work { note, refusals, ..Work::plain(act, detail) })
 }
 
 /// Hours as hundredths, exactly.

@@ -12,6 +12,7 @@ mod entries;
 mod error;
 mod import;
 mod inputs;
+mod methods;
 mod paper;
 mod refusals;
 mod service_bans;

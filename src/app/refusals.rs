@@ -3,10 +3,11 @@
 //!
 //! History that is imported is taken as it happened and does not pass here.
 
+use super::methods::is_direct;
 use super::service_bans::service_bans;
 use super::standing::{ApplianceStanding, CylinderStanding};
 use crate::gas;
-use crate::ledger::{Act, ChargePurpose, CylinderKind, GasStatus, Moment};
+use crate::ledger::{Act, ChargePurpose, CylinderKind, GasStatus, Line, Moment, TestKind};
 use crate::measure::{self, CylinderLaw, Rating, cylinder_limit};
 use crate::quantity::{GaugePressure, Mass, Ratio, Volume, parse_decimal};
 use chrono::NaiveDate;
@@ -34,6 +35,7 @@ pub enum Kind {
     NotRated,
     NothingToRecycle,
     WeighingGap,
+    IndirectMethod,
 }
 
 /// Why something is not entered.
@@ -72,6 +74,7 @@ impl Refusal {
 
 const SAME_OWNER: &str = "40 CFR 82.156(h), 82.154(d)";
 const EU_RECOVERED: &str = "Regulation (EU) 2024/573 Art. 8(6)";
+const INDIRECT: &str = "common practice";
 const OVERDUE: &str = "49 CFR 180.205(c), 173.301(a)(6)";
 const NON_REFILLABLE: &str = "49 CFR 178.65";
 
@@ -97,7 +100,36 @@ pub fn of_entry(standing: &ApplianceStanding, act: &Act, at: Moment, today: Naiv
         let sentence = format!("{name} is mothballed since {since}.");
         refusals.push(Refusal::firm(Kind::AlreadyMothballed, sentence, ""));
     }
+    refusals.extend(before_what_is_known(standing, act, at));
     refusals
+}
+
+/// An entry of an earlier day must go together with what was entered for later days.
+fn before_what_is_known(standing: &ApplianceStanding, act: &Act, at: Moment) -> Option<Refusal> {
+    let name = &standing.appliance.name;
+    let mut later: Vec<&Line> = standing.lines.iter().filter(|line| line.at.date > at.date).collect();
+    later.sort_by_key(|line| (line.at.date, line.position));
+    match act {
+        Act::Retire => {
+            let known = later.into_iter().find(|line| !matches!(line.act, Act::ReportSent | Act::Note))?;
+            let sentence = format!(
+                "{name} cannot have been retired on {}: there is a {} on {}. Correct one of the two.",
+                at.date,
+                known.act.name(),
+                known.at.date
+            );
+            Some(Refusal::firm(Kind::Retired, sentence, ""))
+        }
+        Act::Mothball => {
+            let known = later.into_iter().find(|line| matches!(line.act, Act::Charge { .. } | Act::Mothball))?;
+            let again = known.act == Act::Mothball;
+            again.then(|| {
+                let sentence = format!("{name} is mothballed on {} already, and was not charged before that.", known.at.date);
+                Refusal::firm(Kind::AlreadyMothballed, sentence, "")
+            })
+        }
+        _ => None,
+    }
 }
 
 /// What holds for gas that goes into an appliance. `cylinder` is `None` for a factory charge.
@@ -134,18 +166,43 @@ pub fn of_charge(
     if balance.status == Some(GasStatus::Recovered) {
         refusals.extend(recovered_gas(standing, cylinder, purpose));
     }
-    // Gas of unknown origin is taken as virgin: the safe side.
-    let status = balance.status.unwrap_or(GasStatus::Virgin);
-    for ban in service_bans(&standing.site_facts.rulebooks, facts, &facts.refrigerant, status, day) {
-        let sentence = format!("{} takes no {} {}: {}.", standing.appliance.name, status.name(), facts.refrigerant, ban.forbids);
-        refusals.push(Refusal { kind: Kind::ServiceBan, sentence, source: ban.source, judgement: ban.leaves_room() });
-    }
+    refusals.extend(banned(standing, balance.status, day));
     refusals.extend(below_tare(cylinder, gross_after));
     if let Some(held) = balance.content.mass().filter(|held| gross_after.is_none() && net > *held) {
         let sentence = format!("Cylinder {name} held {} kg, {} kg is more.", held.kg_text(), net.kg_text());
         refusals.push(Refusal::judgement(Kind::MoreThanHeld, sentence, ""));
     }
     refusals
+}
+
+/// What the law forbids to be charged here, whatever it is charged from.
+/// Gas of unknown origin, `None`, is taken as virgin: the safe side.
+pub(super) fn banned(standing: &ApplianceStanding, status: Option<GasStatus>, day: NaiveDate) -> Vec<Refusal> {
+    let facts = &standing.facts;
+    let gas = match status {
+        Some(status) => format!("{status} {}", facts.refrigerant),
+        None => format!("{} of unknown origin, which is taken as virgin", facts.refrigerant),
+    };
+    service_bans(&standing.site_facts.rulebooks, facts, &facts.refrigerant, status.unwrap_or(GasStatus::Virgin), day)
+        .into_iter()
+        .map(|ban| {
+            let sentence = format!("{} takes no {gas}: {}.", standing.appliance.name, ban.forbids);
+            Refusal { kind: Kind::ServiceBan, sentence, source: ban.source, judgement: ban.leaves_room() }
+        })
+        .collect()
+}
+
+/// What holds for a leak inspection: it looks for the place of a leak. A
+/// method that nobody knows is taken at its word.
+pub fn of_inspection(kind: TestKind, method: &str) -> Option<Refusal> {
+    let indirect = kind == TestKind::LeakInspection && is_direct(method) == Some(false);
+    indirect.then(|| {
+        let sentence = format!(
+            "\u{201c}{}\u{201d} is an indirect method: it shows that gas is missing, not where. It is no leak inspection.",
+            method.trim()
+        );
+        Refusal::firm(Kind::IndirectMethod, sentence, INDIRECT)
+    })
 }
 
 fn recovered_gas(standing: &ApplianceStanding, cylinder: &CylinderStanding, purpose: ChargePurpose) -> Option<Refusal> {
@@ -266,13 +323,14 @@ pub fn measured(standing: &ApplianceStanding, cylinder: &CylinderStanding) -> me
 /// The same under a law that is known without an appliance.
 pub fn measured_under(law: CylinderLaw, cylinder: &CylinderStanding) -> measure::Cylinder {
     let facts = &cylinder.facts;
-    let number = |text: &Option<String>| text.as_ref().and_then(|text| parse_decimal(text).ok());
+    // Water capacities weighed in pounds have more digits than a person writes.
+    let litres = facts.water_capacity_l.as_ref().and_then(|text| parse_decimal(text).ok());
     measure::Cylinder {
-        water_capacity: number(&facts.water_capacity_l).and_then(Volume::from_litres),
+        water_capacity: litres.and_then(Volume::from_litres),
         tare: Some(facts.tare),
         stamped_maximum: facts.stamped_maximum,
-        service_pressure: number(&facts.service_pressure_psig).map(GaugePressure::from_psi),
-        test_pressure: number(&facts.test_pressure_bar).map(|bar| GaugePressure::from_pascal(bar * Ratio::from_integer(100_000))),
+        service_pressure: facts.service_pressure_psig.as_ref().and_then(|text| GaugePressure::from_psi_text(text).ok()),
+        test_pressure: facts.test_pressure_bar.as_ref().and_then(|text| GaugePressure::from_bar_text(text).ok()),
         law,
     }
 }
@@ -403,6 +461,28 @@ pub(super) mod tests {
         assert_eq!(on(&repair, "2026-04-01"), [(Kind::Retired, false)]);
         assert_eq!(on(&repair, "2026-03-31"), []);
         assert_eq!(on(&Act::ReportSent, "2026-05-01"), []);
+    }
+
+    #[test]
+    fn an_earlier_day_goes_together_with_the_later_ones() {
+        let line = |text: &str, act: Act| Line {
+            entry: crate::ledger::EntryId(Uuid::nil()),
+            appliance: ApplianceId(Uuid::nil()),
+            at: Moment { date: day(text), minute: None },
+            position: 1,
+            job: None,
+            act,
+        };
+        let on = |lines: Vec<Line>, act: Act| {
+            let standing = ApplianceStanding { lines, ..standing("us-82f", "R-22") };
+            kinds(of_entry(&standing, &act, Moment { date: day("2026-04-01"), minute: None }, day("2026-06-01")))
+        };
+        assert_eq!(on(vec![line("2026-05-01", Act::NormalOperation)], Act::Retire), [(Kind::Retired, false)]);
+        assert_eq!(on(vec![line("2026-05-01", Act::ReportSent), line("2026-03-01", Act::NormalOperation)], Act::Retire), []);
+        assert_eq!(on(vec![line("2026-05-01", Act::Mothball)], Act::Mothball), [(Kind::AlreadyMothballed, false)]);
+        let transfer = crate::ledger::Transfer { mass: kg("1"), cylinder: None, division: None, hoses: Mass::ZERO };
+        let charged = line("2026-04-20", Act::Charge { purpose: ChargePurpose::Mothball, transfer });
+        assert_eq!(on(vec![line("2026-05-01", Act::Mothball), charged], Act::Mothball), []);
     }
 
     #[test]

@@ -4,12 +4,12 @@
 use super::{App, AppError};
 use crate::ledger::{
     Act, Appliance, ApplianceFacts, ApplianceId, Cylinder, CylinderBalance, CylinderFacts, CylinderId, EntryId, KnownGross, Line, Movement,
-    MovementKind, Registers, Site, SiteFacts, cylinder_balance,
+    MovementKind, Registers, Site, SiteFacts, cylinder_balance, follow_cylinder,
 };
 use crate::measure::{ScaleReading, Uncertainty};
 use crate::quantity::Mass;
 use crate::rules::History;
-use crate::store::Store;
+use crate::store::{Store, StoreError};
 use chrono::NaiveDate;
 use std::collections::{HashMap, HashSet};
 
@@ -22,7 +22,7 @@ pub struct ApplianceStanding {
     /// With what retrofits changed.
     pub facts: ApplianceFacts,
     pub lines: Vec<Line>,
-    /// As last written down: it was true all along.
+    /// See [`Appliance::there_since`].
     pub installed_on: Option<NaiveDate>,
     pub retired_on: Option<NaiveDate>,
     /// Mothballed and not charged since.
@@ -114,7 +114,7 @@ pub(super) fn appliance_standing(
     let mothballed = history.lines.iter().rposition(|line| line.act == Act::Mothball);
     let mothballed_on = mothballed.filter(|mothball| last_charge.is_none_or(|charge| charge < *mothball)).map(|index| history.date(index));
     let retired_on = lines.iter().find(|line| line.act == Act::Retire).map(|line| line.at.date);
-    let installed_on = appliance.versions.all().iter().rev().find_map(|version| version.facts.installed_on);
+    let installed_on = appliance.there_since();
     Ok(ApplianceStanding { site_facts, facts, installed_on, retired_on, mothballed_on, site, appliance, lines })
 }
 
@@ -138,6 +138,44 @@ pub(super) fn cylinder_standing(
     }
     let origins = origins(&registers, &lines, &movements);
     Ok(stand(cylinder, &movements, on, &origins))
+}
+
+/// What a cylinder held just before an entry, and whose gas it was.
+#[derive(Debug, Clone)]
+pub(super) struct HeldBefore {
+    pub balance: CylinderBalance,
+    /// As [`CylinderStanding::recovered_from`].
+    pub recovered_from: Option<String>,
+}
+
+/// What each of these cylinders held just before each entry that moved its gas.
+pub(super) fn held_before_entries(
+    store: &Store,
+    registers: &Registers,
+    cylinders: &HashSet<CylinderId>,
+) -> Result<HashMap<EntryId, HeldBefore>, StoreError> {
+    let mut movements = store.movements()?;
+    movements.retain(|movement| cylinders.contains(&movement.cylinder));
+    let mut lines = Vec::new();
+    for id in filled_from(&movements) {
+        lines.extend(store.lines_of(id)?);
+    }
+    let origins = origins(registers, &lines, &movements);
+    let gas_of = |movement: &Movement| origins.get(&movement.entry).map(|(gas, _)| gas.clone());
+    let mut held = HashMap::new();
+    for (id, movements) in by_cylinder(&movements) {
+        let Some(cylinder) = registers.cylinder(id) else { continue };
+        let mut owners: HashSet<&str> = HashSet::new();
+        let origins = &origins;
+        follow_cylinder(cylinder, &movements, NaiveDate::MAX, &gas_of, &mut |movement, balance| {
+            let recovered_from = sole_owner(cylinder, &owners);
+            held.insert(movement.entry, HeldBefore { balance: balance.clone(), recovered_from });
+            if matches!(movement.kind, MovementKind::Into(_)) {
+                owners.insert(origins.get(&movement.entry).map_or("", |(_, owner)| owner.as_str()));
+            }
+        });
+    }
+    Ok(held)
 }
 
 /// Gas and owner, by entry, of everything that was recovered.
@@ -186,11 +224,17 @@ fn stand(cylinder: Cylinder, movements: &[Movement], on: NaiveDate, origins: &Or
         .filter(|movement| matches!(movement.kind, MovementKind::Into(_)))
         .map(|movement| origins.get(&movement.entry).map_or("", |(_, owner)| owner.as_str()))
         .collect();
+    let recovered_from = sole_owner(&cylinder, &owners);
+    CylinderStanding { facts, balance, recovered_from, cylinder }
+}
+
+/// The one from whose appliances all gas in a cylinder was recovered.
+fn sole_owner(cylinder: &Cylinder, owners: &HashSet<&str>) -> Option<String> {
     // Gas that was in it from the beginning is of whoever the register says.
     let from_the_beginning = cylinder.versions.first().facts.refrigerant.is_some();
-    let recovered_from = match (from_the_beginning, owners.into_iter().collect::<Vec<_>>().as_slice()) {
-        (false, [owner]) if !owner.is_empty() => Some((*owner).to_owned()),
+    let mut owners = owners.iter();
+    match (from_the_beginning, owners.next(), owners.next()) {
+        (false, Some(owner), None) if !owner.is_empty() => Some((*owner).to_owned()),
         _ => None,
-    };
-    CylinderStanding { facts, balance, recovered_from, cylinder }
+    }
 }

@@ -1,8 +1,8 @@
 //! `import`: registers and logs from CSV.
 
-use super::{Answer, open, place};
-use crate::store::OpenMode;
-use anyhow::Context;
+use super::{Answer, place};
+use crate::app::{App, FreshIds, SystemClock};
+use crate::store::{OpenMode, Store};
 use clap::Args;
 use std::path::{Path, PathBuf};
 
@@ -14,26 +14,13 @@ pub struct ImportArgs {
 }
 
 pub fn run(store: Option<&Path>, args: &ImportArgs) -> anyhow::Result<Answer> {
-    let files = args
-        .files
-        .iter()
-        .map(|path| {
-            let bytes = std::fs::read(path).with_context(|| format!("{} cannot be read; nothing was imported", path.display()))?;
-            Ok((path.display().to_string(), bytes))
-        })
-        .collect::<anyhow::Result<Vec<_>>>()?;
-    let path = place::store_path(store)?;
-    let was_there = path.exists();
-    let imported = open(store, OpenMode::Create).and_then(|app| Ok(app.import(&files)?));
-    if imported.is_err() && !was_there {
-        // Nothing was taken in: no empty store stays behind either.
-        for ending in ["", "-wal", "-shm"] {
-            let mut file = path.clone().into_os_string();
-            file.push(ending);
-            let _ = std::fs::remove_file(file);
-        }
+    let files = read(&args.files)?;
+    if !place::store_path(store)?.exists() {
+        // Tried out in memory first: where nothing is taken in, no store is
+        // made, and what another program may have made meanwhile is not touched.
+        App::with(Store::in_memory()?, Box::new(SystemClock), Box::new(FreshIds))?.import(&files)?;
     }
-    let taken = imported?;
+    let taken = App::open(&place::store_path_to_make(store)?, OpenMode::Create)?.import(&files)?;
     let mut text = String::new();
     for remark in &taken.remarks {
         text.push_str(&format!("{}, line {}: remark: {}\n", remark.file, remark.line, remark.message));
@@ -52,6 +39,21 @@ pub fn run(store: Option<&Path>, args: &ImportArgs) -> anyhow::Result<Answer> {
         text.push_str(&format!("{} to look at, taken all the same\n", counted(taken.remarks.len(), "remark")));
     }
     Ok(Answer::well(text))
+}
+
+/// Each file with its bytes; all that cannot be read are named.
+fn read(paths: &[PathBuf]) -> anyhow::Result<Vec<(String, Vec<u8>)>> {
+    let (mut files, mut unreadable) = (Vec::new(), Vec::new());
+    for path in paths {
+        match std::fs::read(path) {
+            Ok(bytes) => files.push((path.display().to_string(), bytes)),
+            Err(error) => unreadable.push(format!("{} cannot be read: {error}", path.display())),
+        }
+    }
+    if unreadable.is_empty() {
+        return Ok(files);
+    }
+    anyhow::bail!("{}\nnothing was imported; correct the names, or see that you may read the files", unreadable.join("\n"))
 }
 
 fn counted(count: usize, what: &str) -> String {

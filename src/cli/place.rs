@@ -1,5 +1,6 @@
 //! Where things are on this device.
 
+use super::file::make_folder;
 use anyhow::Context;
 use std::path::{Path, PathBuf};
 
@@ -11,4 +12,15 @@ pub fn store_path(named: Option<&Path>) -> anyhow::Result<PathBuf> {
     let folders = directories::ProjectDirs::from("", "", "Bubblepoint")
         .context("this device names no folder for program data; name the store with --store FILE")?;
     Ok(folders.data_dir().join("bubblepoint.db"))
+}
+
+/// As [`store_path`], for commands that make a missing store: on a new device
+/// the folder for program data is made too. A folder that was named is not,
+/// for its name may be a slip.
+pub fn store_path_to_make(named: Option<&Path>) -> anyhow::Result<PathBuf> {
+    let path = store_path(named)?;
+    if let Some(folder) = path.parent().filter(|_| named.is_none()) {
+        make_folder(folder)?;
+    }
+    Ok(path)
 }

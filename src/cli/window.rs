@@ -7,16 +7,11 @@ use std::path::Path;
 #[cfg(feature = "gui")]
 pub fn run(store: Option<&Path>) -> anyhow::Result<Answer> {
     use crate::store::OpenMode;
-    use anyhow::Context;
     // Without a display no store is made either.
     if !can_open() {
         return Err(crate::gui::WindowError::NoDisplay.into());
     }
-    let path = super::place::store_path(store)?;
-    if let Some(folder) = path.parent().filter(|_| store.is_none()) {
-        std::fs::create_dir_all(folder).with_context(|| format!("cannot make the folder {}", folder.display()))?;
-    }
-    let app = super::open(store, OpenMode::Create)?;
+    let app = super::App::open(&super::place::store_path_to_make(store)?, OpenMode::Create)?;
     crate::gui::open(app, None)?;
     Ok(Answer::well(String::new()))
 }

@@ -107,6 +107,18 @@ pub fn cylinder_balance(
     on: NaiveDate,
     gas_of: &dyn Fn(&Movement) -> Option<String>,
 ) -> CylinderBalance {
+    follow_cylinder(cylinder, movements, on, gas_of, &mut |_, _| {})
+}
+
+/// As [`cylinder_balance`]; `before` is told each movement and what the
+/// cylinder held until then.
+pub fn follow_cylinder(
+    cylinder: &Cylinder,
+    movements: &[Movement],
+    on: NaiveDate,
+    gas_of: &dyn Fn(&Movement) -> Option<String>,
+    before: &mut dyn FnMut(&Movement, &CylinderBalance),
+) -> CylinderBalance {
     let versions = cylinder.versions.all().iter().filter(|version| version.from.is_none_or(|from| from <= on));
     let moved = movements.iter().filter(|movement| movement.cylinder == cylinder.id && movement.at.date <= on);
     let mut events: Vec<((Option<NaiveDate>, Position), Event)> = versions
@@ -124,6 +136,7 @@ pub fn cylinder_balance(
                 facts = Some(&version.facts);
             }
             Event::Movement(movement) => {
+                before(movement, &balance);
                 // History may know of transfers from before the first version.
                 let tare = facts.map_or_else(|| cylinder.versions.first().facts.tare, |facts| facts.tare);
                 balance.take_movement(movement, tare, gas_of);

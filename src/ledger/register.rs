@@ -119,6 +119,16 @@ pub struct Appliance {
     pub versions: Versions<ApplianceFacts>,
 }
 
+impl Appliance {
+    /// The first day on which it can have been there: the earliest day of
+    /// installation that any version states. A correction states the right
+    /// day; a successor of the same identification leaves its predecessor's
+    /// history be.
+    pub fn there_since(&self) -> Option<NaiveDate> {
+        self.versions.all().iter().filter_map(|version| version.facts.installed_on).min()
+    }
+}
+
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
 pub struct ApplianceFacts {
     pub category: Category,

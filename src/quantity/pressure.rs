@@ -126,6 +126,26 @@ impl GaugePressure {
         Self(pascal)
     }
 
+    /// Reads a gauge pressure as a number alone, as in a column that names the unit, `psi` or `bar`.
+    ///
+    /// # Errors
+    /// No number, more than 15 digits, not above zero, or over 10 000 bar.
+    pub fn from_psi_text(text: &str) -> Result<Self, QuantityError> {
+        Self::from_text(text, "psi", "400", PSI)
+    }
+
+    /// # Errors
+    /// As [`GaugePressure::from_psi_text`].
+    pub fn from_bar_text(text: &str) -> Result<Self, QuantityError> {
+        Self::from_text(text, "bar", "40", Ratio::from_integer(100_000))
+    }
+
+    fn from_text(text: &str, unit: &'static str, example: &'static str, pascal: Ratio) -> Result<Self, QuantityError> {
+        let bound = "pressures are above zero and go to 10000 bar, with up to 15 digits";
+        let not = || QuantityError::NotInUnit { text: text.to_owned(), kind: PRESSURE.name, unit, example, bound };
+        Kind::bare(text).map(|number| number * pascal).filter(|pascal| *pascal <= MOST_PA).map(Self).ok_or_else(not)
+    }
+
     /// Pounds-force per square inch, as stamped on a cylinder.
     pub fn from_psi(psi: Ratio) -> Self {
         Self(psi * PSI)
@@ -210,6 +230,17 @@ mod tests {
         assert!(message("-2barg").contains("vacuum"));
         assert!(message("25").contains("25barg"));
         assert!(message("99999999999bara").contains("10000 bar"));
+    }
+
+    #[test]
+    fn pressures_in_a_known_unit_are_bounded() {
+        assert_eq!(GaugePressure::from_psi_text("400").unwrap().psi(), Ratio::from_integer(400));
+        assert_eq!(GaugePressure::from_bar_text("40,5").unwrap().bar(), Ratio::new(81, 2));
+        for text in ["0", "-1", "400psig", "", "10000.1", "12345678901234.56", "999999999999999999999999999999"] {
+            assert!(GaugePressure::from_bar_text(text).is_err(), "{text:?}");
+        }
+        let message = GaugePressure::from_psi_text("x").unwrap_err().to_string();
+        assert!(message.starts_with("\u{201c}x\u{201d} is not a pressure in psi such as 400; pressures"), "{message}");
     }
 
     #[test]

@@ -13,6 +13,9 @@ pub enum QuantityError {
     GaugeOrAbsolute { text: String },
     #[error("\u{201c}{text}\u{201d} is out of range: {bound}")]
     OutOfRange { text: String, bound: &'static str },
+    /// A number whose unit stands elsewhere: in the name of a column or of a field.
+    #[error("\u{201c}{text}\u{201d} is not {kind} in {unit} such as {example}; {bound}")]
+    NotInUnit { text: String, kind: &'static str, unit: &'static str, example: &'static str, bound: &'static str },
     #[error(transparent)]
     Mass(#[from] MassError),
 }
@@ -38,6 +41,12 @@ impl Kind {
             Ok(value) if digits <= MOST_DIGITS && !unit.is_empty() => Ok((value, unit.trim_start())),
             _ => Err(self.not_readable(text)),
         }
+    }
+
+    /// Reads a number above zero whose unit stands elsewhere.
+    pub(super) fn bare(text: &str) -> Option<Ratio> {
+        let digits = text.bytes().filter(u8::is_ascii_digit).count();
+        parse_decimal(text).ok().filter(|number| digits <= MOST_DIGITS && *number > Ratio::from_integer(0))
     }
 
     pub(super) fn not_readable(&self, text: &str) -> QuantityError {

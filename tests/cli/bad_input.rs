@@ -63,7 +63,7 @@ fn a_file_that_is_no_store_is_left_alone() {
 #[test]
 fn a_folder_that_cannot_be_written() {
     let desk = stocked();
-    let error = desk.run(&["--store", "/proc/store.db", "import", "log.csv"]).refused();
+    let error = desk.run(&["--store", "/proc/store.db", "import", "sites.csv"]).refused();
     assert!(error.contains("/proc/store.db") && error.contains("you may write in it"), "{error}");
     let error = desk.on_store(&["account", "2026", "--into", "/proc/account.pdf"]).refused();
     assert!(error.contains("/proc/account.pdf could not be written"), "{error}");

@@ -91,3 +91,39 @@ fn what_a_retrofit_does_not_name_stays_as_it_was() {
     assert_eq!(after("2026-05-01"), ("R-448A".to_owned(), "45.359237".to_owned()));
     assert_eq!(after("2026-05-03"), ("R-448A".to_owned(), "40".to_owned()));
 }
+
+/// On a new device there is no folder for program data yet.
+#[test]
+fn without_a_named_store_the_devices_own_is_made() {
+    let desk = Desk::new();
+    desk.write("sites.csv", super::SITES);
+    desk.write("bad.csv", "site,rulebooks\nElsewhere,us-99\n");
+    desk.run(&["import", "bad.csv"]).refused();
+    assert!(!desk.path("data").exists(), "what is refused makes nothing");
+    let text = desk.run(&["import", "sites.csv"]).done();
+    assert!(text.contains("imported: 1 site"), "{text}");
+    assert_eq!(desk.run(&["assess"]).status, 0);
+}
+
+#[test]
+fn a_refused_import_makes_no_store_and_takes_none_away() {
+    let desk = Desk::new();
+    desk.write("bad.csv", "site,rulebooks\nElsewhere,us-99\n");
+    desk.on_store(&["import", "bad.csv"]).refused();
+    assert!(!desk.path("store.db").exists());
+    // A link to a disk that is not there just now.
+    #[cfg(unix)]
+    {
+        std::os::unix::fs::symlink(desk.path("away/store.db"), desk.path("store.db")).unwrap();
+        desk.on_store(&["import", "bad.csv"]).refused();
+        assert!(desk.path("store.db").is_symlink(), "the link is somebody's");
+    }
+}
+
+#[test]
+fn every_file_that_cannot_be_read_is_named() {
+    let desk = Desk::new();
+    let refused = desk.on_store(&["import", "one.csv", "two.csv"]).refused();
+    assert!(refused.contains("one.csv cannot be read") && refused.contains("two.csv cannot be read"), "{refused}");
+    assert!(refused.contains("nothing was imported"), "{refused}");
+}

@@ -1,6 +1,7 @@
 //! What holds for every history, tried on random ones.
 
 mod histories;
+mod imports;
 mod quantities;
 
 /// So many cases each; failures are told on screen and not kept in files.

@@ -1,6 +1,7 @@
 //! One entry as a record says it.
 
 use super::{instrument_text, wording};
+use crate::app::methods::is_direct;
 use crate::ledger::{Act, ApplianceFacts, Detail, Entry, EntryId, LeakPlace, Registers, Scope, TestKind, Transfer, WeighingMode};
 use crate::measure::Uncertainty;
 use crate::quantity::{Mass, Weighing};
@@ -65,7 +66,7 @@ fn work(entry: &Entry, names: &Names<'_>) -> Work {
         Act::Test { kind, result, scope, .. } => Work::Test(Box::new(TestFacts {
             kind: kind.name().to_owned(),
             method: detail.method.clone(),
-            direct: direct(&detail.method),
+            direct: is_direct(&detail.method),
             scope: match scope {
                 Some(Scope::Whole) => "whole appliance".to_owned(),
                 Some(Scope::Part) => "part".to_owned(),
@@ -165,20 +166,6 @@ fn instrument(detail: &Detail, names: &Names<'_>) -> String {
 
 fn leak(leak: &LeakPlace) -> String {
     if leak.state.is_empty() { leak.place.clone() } else { format!("{}: {}", leak.place, leak.state) }
-}
-
-/// Methods that show the place of a leak (Regulation (EC) No 1516/2007 Art. 6);
-/// those that only show its effects are indirect (Art. 7).
-fn direct(method: &str) -> Option<bool> {
-    let method = method.to_lowercase();
-    let any = |words: &[&str]| words.iter().any(|word| method.contains(word));
-    if any(&["detector", "soap", "bubble", "ultraviolet", "uv", "sniff", "tracer"]) {
-        Some(true)
-    } else if any(&["pressure", "vacuum", "indirect", "sight glass", "temperature", "current"]) {
-        Some(false)
-    } else {
-        None
-    }
 }
 
 /// 40 CFR 82.157(l)(3)(iv), 84.106(l)(5): a leak inspection certifies its reach.

@@ -2,7 +2,7 @@
 
 use super::table::Fields;
 use crate::ledger::{ApplianceFacts, Category, ChargeMethod, CylinderFacts, CylinderKind, Equipment, GasStatus, RateMethod, SiteFacts};
-use crate::quantity::{Mass, MassUnit, Ratio, Weighing, decimal_text};
+use crate::quantity::{GaugePressure, Mass, MassUnit, Volume, Weighing, decimal_text};
 use crate::rules::{built_in, rulebook};
 use chrono::NaiveDate;
 
@@ -10,6 +10,8 @@ use chrono::NaiveDate;
 pub struct SiteRow {
     pub file: String,
     pub line: u64,
+    /// Nothing in it stands in for what could not be read.
+    pub sound: bool,
     pub name: String,
     pub valid_from: Option<NaiveDate>,
     pub facts: SiteFacts,
@@ -19,6 +21,8 @@ pub struct SiteRow {
 pub struct ApplianceRow {
     pub file: String,
     pub line: u64,
+    /// Nothing in it stands in for what could not be read.
+    pub sound: bool,
     pub name: String,
     pub site: String,
     pub valid_from: Option<NaiveDate>,
@@ -29,6 +33,8 @@ pub struct ApplianceRow {
 pub struct CylinderRow {
     pub file: String,
     pub line: u64,
+    /// Nothing in it stands in for what could not be read.
+    pub sound: bool,
     pub name: String,
     pub facts: CylinderFacts,
 }
@@ -37,6 +43,8 @@ pub struct CylinderRow {
 pub struct PersonRow {
     pub file: String,
     pub line: u64,
+    /// Nothing in it stands in for what could not be read.
+    pub sound: bool,
     pub name: String,
     pub certificate: String,
     pub certificate_kind: String,
@@ -47,7 +55,12 @@ pub struct PersonRow {
 }
 
 pub(super) fn site_row(fields: &mut Fields) -> SiteRow {
-    let rulebooks: Vec<String> = fields.text("rulebooks").split_whitespace().map(str::to_owned).collect();
+    let mut rulebooks: Vec<String> = Vec::new();
+    for id in fields.text("rulebooks").split_whitespace() {
+        if !rulebooks.iter().any(|known| known == id) {
+            rulebooks.push(id.to_owned());
+        }
+    }
     for id in &rulebooks {
         if rulebook(id).is_none() {
             let known: Vec<&str> = built_in().iter().map(|book| book.id.as_str()).collect();
@@ -71,11 +84,13 @@ pub(super) fn site_row(fields: &mut Fields) -> SiteRow {
             rate_method: fields.word("rate_method", RateMethod::from_name).unwrap_or(RateMethod::Annualizing),
             time_zone,
         },
+        sound: fields.is_sound(),
     }
 }
 
 pub(super) fn appliance_row(fields: &mut Fields) -> ApplianceRow {
     let charge = fields.positive_mass("full_charge", "unit");
+    fields.unit("unit");
     ApplianceRow {
         file: fields.file().to_owned(),
         line: fields.line(),
@@ -100,8 +115,11 @@ pub(super) fn appliance_row(fields: &mut Fields) -> ApplianceRow {
             residential_or_light_commercial_ac: fields.yes("residential_or_light_commercial_ac"),
             product_below_minus_50c: fields.yes("product_below_minus_50c"),
             military: fields.yes("military"),
-            room_volume_m3: fields.decimal("room_volume_m3").and_then(decimal_text),
+            room_volume_m3: fields
+                .number("room_volume_m3", Volume::from_cubic_metres_text)
+                .and_then(|volume| decimal_text(volume.cubic_metres())),
         },
+        sound: fields.is_sound(),
     }
 }
 
@@ -111,7 +129,7 @@ pub(super) fn cylinder_row(fields: &mut Fields) -> CylinderRow {
     if let (Some((tare, tare_written)), Some((gross, gross_written))) = (&tare, &gross)
         && gross < tare
     {
-        fields.fault("gross", format!("{} is less than the tare of {}", gross_written.text(), tare_written.text()));
+        fields.fault("gross", format!("{} is less than the tare of {}; correct one of the two", gross_written.text(), tare_written.text()));
     }
     let refrigerant = fields.gas("refrigerant");
     let gas_status = fields.word("gas_status", GasStatus::from_name);
@@ -130,8 +148,12 @@ pub(super) fn cylinder_row(fields: &mut Fields) -> CylinderRow {
             gross_written: gross.map(|(_, written)| written),
             water_capacity_l: water_capacity(fields),
             stamped_maximum: fields.positive_mass("stamped_maximum", "unit").map(|(mass, _)| mass),
-            service_pressure_psig: fields.decimal("service_pressure_psig").and_then(decimal_text),
-            test_pressure_bar: fields.decimal("test_pressure_bar").and_then(decimal_text),
+            service_pressure_psig: fields
+                .number("service_pressure_psig", GaugePressure::from_psi_text)
+                .and_then(|pressure| decimal_text(pressure.psi())),
+            test_pressure_bar: fields
+                .number("test_pressure_bar", GaugePressure::from_bar_text)
+                .and_then(|pressure| decimal_text(pressure.bar())),
             requalify_by: fields.day("requalify_by"),
             owner: fields.text("owner").to_owned(),
             gas_owner: fields.text("gas_owner").to_owned(),
@@ -139,32 +161,39 @@ pub(super) fn cylinder_row(fields: &mut Fields) -> CylinderRow {
             gas_source: String::new(),
             scrapped: None,
         },
+        sound: fields.is_sound(),
     }
 }
 
 /// Water capacity in litres; in kg or lb it is a mass of water, 1 kg = 1 l.
 fn water_capacity(fields: &mut Fields) -> Option<String> {
-    let litres = match fields.text("water_capacity_unit") {
-        "" | "l" => fields.decimal("water_capacity"),
-        _ => fields.positive_mass("water_capacity", "water_capacity_unit").map(|(mass, _)| mass.kg()),
-    }?;
-    if litres <= Ratio::from_integer(0) {
-        fields.fault("water_capacity", "is not above zero".to_owned());
-        return None;
-    }
-    decimal_text(litres)
+    let capacity = match fields.text("water_capacity_unit") {
+        "" | "l" => fields.number("water_capacity", Volume::from_litres_text),
+        _ => {
+            fields.unit("water_capacity_unit");
+            fields.positive_mass("water_capacity", "water_capacity_unit").and_then(|(mass, _)| Volume::of_water(mass))
+        }
+    };
+    capacity.and_then(|volume| decimal_text(volume.litres()))
 }
 
 pub(super) fn person_row(fields: &mut Fields) -> PersonRow {
+    let (valid_from, valid_to) = (fields.day("valid_from"), fields.day("valid_to"));
+    if let (Some(from), Some(to)) = (valid_from, valid_to)
+        && to < from
+    {
+        fields.fault("valid_to", format!("{to} is before valid_from, {from}; correct one of the two"));
+    }
     PersonRow {
         file: fields.file().to_owned(),
         line: fields.line(),
         name: fields.text("person").to_owned(),
         certificate: fields.text("certificate").to_owned(),
         certificate_kind: fields.text("certificate_kind").to_owned(),
-        valid_from: fields.day("valid_from"),
-        valid_to: fields.day("valid_to"),
+        valid_from,
+        valid_to,
         company: fields.text("company").to_owned(),
         company_certificate: fields.text("company_certificate").to_owned(),
+        sound: fields.is_sound(),
     }
 }

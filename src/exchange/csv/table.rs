@@ -6,6 +6,9 @@ use chrono::NaiveDate;
 use std::collections::HashMap;
 use std::fmt;
 
+/// No appliance has run for longer: a thousand years.
+const MOST_HUNDREDTHS: i64 = 876_600_000;
+
 /// A line that cannot be taken, and why.
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub struct BadLine {
@@ -128,6 +131,11 @@ impl Kind {
         self.required().contains(&column) || self.optional().contains(&column)
     }
 
+    /// The columns of such a file, the required ones first.
+    pub fn columns(self) -> impl Iterator<Item = &'static str> {
+        self.required().iter().chain(self.optional()).copied()
+    }
+
     fn of_header(columns: &[String]) -> Option<Self> {
         Self::ALL.into_iter().find(|kind| kind.required().iter().all(|needed| columns.iter().any(|column| column == needed)))
     }
@@ -143,32 +151,33 @@ impl Kind {
 #[derive(Debug)]
 pub struct Table {
     pub kind: Kind,
+    /// What is wrong with the header, and lines that cannot be parted into fields.
+    pub bad: Vec<BadLine>,
     file: String,
     columns: HashMap<String, usize>,
     /// Decimal commas are read only where semicolons part the columns.
     comma_decimals: bool,
     lines: Vec<(u64, ::csv::StringRecord)>,
+    /// All lines of the file are among `lines`.
+    pub complete: bool,
 }
 
-/// Reads the header and parts the lines.
+/// Reads the header and parts the lines. Columns that are not known are left
+/// aside, so that the faults of the others are found too.
 ///
 /// # Errors
-/// Not UTF-8, an empty file, an unknown or missing column, a line with too many fields.
+/// Not UTF-8, an empty file, or a header that lacks a column: nothing can be read then.
 pub fn read_table(file: &str, bytes: &[u8]) -> Result<Table, Vec<BadLine>> {
-    let whole = |message: String| vec![BadLine { file: file.to_owned(), line: 0, column: String::new(), message }];
+    let bad = |line: u64, message: String| BadLine { file: file.to_owned(), line, column: String::new(), message };
     let text = std::str::from_utf8(bytes).map_err(|error| {
-        let line = bytes[..error.valid_up_to()].iter().filter(|&&byte| byte == b'\n').count() as u64 + 1;
-        vec![BadLine {
-            file: file.to_owned(),
-            line,
-            column: String::new(),
-            message: "is not UTF-8 text; save the file as UTF-8".to_owned(),
-        }]
+        let line = Lines::default().at(bytes, error.valid_up_to());
+        vec![bad(line, "is not UTF-8 text; save the file as UTF-8".to_owned())]
     })?;
     let text = text.strip_prefix('\u{feff}').unwrap_or(text);
-    let header = text.lines().next().unwrap_or_default();
+    let header = text.lines().find(|line| !line.is_empty()).unwrap_or_default();
+    let empty = || vec![bad(0, "the file is empty; its first line must name the columns".to_owned())];
     if header.trim().is_empty() {
-        return Err(whole("the file is empty; its first line must name the columns".to_owned()));
+        return Err(empty());
     }
     let semicolons = header.contains(';');
     let mut reader = ::csv::ReaderBuilder::new()
@@ -178,47 +187,80 @@ pub fn read_table(file: &str, bytes: &[u8]) -> Result<Table, Vec<BadLine>> {
         .trim(::csv::Trim::All)
         .from_reader(text.as_bytes());
     let mut records = reader.records();
-    let unreadable = |error: ::csv::Error| {
-        let line = error.position().map_or(0, ::csv::Position::line);
-        vec![BadLine { file: file.to_owned(), line, column: String::new(), message: format!("cannot be read as CSV: {error}") }]
+    let mut lines_of = Lines::default();
+    let mut line_of = |position: Option<&::csv::Position>| {
+        let byte = position.map_or(0, |position| usize::try_from(position.byte()).unwrap_or(usize::MAX));
+        lines_of.of_record(text.as_bytes(), byte)
     };
-    let names: Vec<String> = match records.next() {
-        Some(record) => record.map_err(unreadable)?.iter().map(str::to_owned).collect(),
-        None => return Err(whole("the file is empty; its first line must name the columns".to_owned())),
+    let unreadable = |line: u64, error: &::csv::Error| bad(line, format!("cannot be read as CSV: {error}; look at its quotation marks"));
+    let (header_line, names): (u64, Vec<String>) = match records.next() {
+        Some(Ok(record)) => (line_of(record.position()), record.iter().map(str::to_owned).collect()),
+        Some(Err(error)) => return Err(vec![unreadable(line_of(error.position()), &error)]),
+        None => return Err(empty()),
     };
-    let kind = check_header(file, &names)?;
-    let columns = names.iter().enumerate().map(|(index, name)| (name.clone(), index)).collect();
-    let (mut lines, mut bad) = (Vec::new(), Vec::new());
+    let (kind, mut faults) = check_header(file, header_line, &names);
+    let Some(kind) = kind else { return Err(faults) };
+    let mut lines = Vec::new();
+    let mut complete = true;
     for record in records {
         match record {
             Ok(record) if record.iter().all(str::is_empty) => {}
-            Ok(record) => {
-                let line = record.position().map_or(0, ::csv::Position::line);
-                if record.len() > names.len() {
-                    let message =
-                        format!("has {} fields where the header names {} columns; is a quotation mark missing?", record.len(), names.len());
-                    bad.push(BadLine { file: file.to_owned(), line, column: String::new(), message });
-                } else {
-                    lines.push((line, record));
-                }
+            Ok(record) if record.len() > names.len() => {
+                let (fields, columns) = (record.len(), names.len());
+                let message = format!("has {fields} fields where the header names {columns} columns; is a quotation mark missing?");
+                faults.push(bad(line_of(record.position()), message));
+                complete = false;
             }
-            Err(error) => bad.extend(unreadable(error)),
+            Ok(record) => lines.push((line_of(record.position()), record)),
+            Err(error) => {
+                faults.push(unreadable(line_of(error.position()), &error));
+                complete = false;
+            }
         }
     }
-    if bad.is_empty() { Ok(Table { kind, file: file.to_owned(), columns, comma_decimals: semicolons, lines }) } else { Err(bad) }
+    let columns = names.into_iter().enumerate().filter(|(_, name)| kind.knows(name)).map(|(index, name)| (name, index)).collect();
+    Ok(Table { kind, bad: faults, file: file.to_owned(), columns, comma_decimals: semicolons, lines, complete })
 }
 
-fn check_header(file: &str, names: &[String]) -> Result<Kind, Vec<BadLine>> {
-    let bad = |column: &str, message: String| BadLine { file: file.to_owned(), line: 1, column: column.to_owned(), message };
+/// Counts lines as far as was asked. The reader's own count takes blank lines
+/// before a record for its beginning.
+#[derive(Default)]
+struct Lines {
+    counted_to: usize,
+    ended: u64,
+}
+
+impl Lines {
+    /// The line, the first being 1, in which this byte stands. Bytes are asked for in order.
+    fn at(&mut self, text: &[u8], byte: usize) -> u64 {
+        let to = byte.min(text.len());
+        for at in self.counted_to..to {
+            let ends = text[at] == b'\n' || (text[at] == b'\r' && text.get(at + 1) != Some(&b'\n'));
+            self.ended += u64::from(ends);
+        }
+        self.counted_to = self.counted_to.max(to);
+        self.ended + 1
+    }
+
+    /// The line of a record that begins at this byte, or after blank lines there.
+    fn of_record(&mut self, text: &[u8], byte: usize) -> u64 {
+        let blank = text.get(byte..).unwrap_or_default().iter().take_while(|byte| matches!(byte, b'\n' | b'\r')).count();
+        self.at(text, byte.saturating_add(blank))
+    }
+}
+
+/// The kind of file, where the header names all that such a file needs, and what is wrong with it.
+fn check_header(file: &str, line: u64, names: &[String]) -> (Option<Kind>, Vec<BadLine>) {
+    let bad = |column: &str, message: String| BadLine { file: file.to_owned(), line, column: column.to_owned(), message };
     let kind = Kind::of_header(names);
     let closest = kind.unwrap_or_else(|| Kind::closest(names));
-    let known = || [closest.required(), closest.optional()].concat().join(", ");
+    let known = || closest.columns().collect::<Vec<_>>().join(", ");
     let mut faults = Vec::new();
     for (index, name) in names.iter().enumerate() {
         if !closest.knows(name) {
             faults.push(bad(name, format!("is not a column of a {} file; known are {}", closest.name(), known())));
         } else if names[..index].contains(name) {
-            faults.push(bad(name, "is named twice".to_owned()));
+            faults.push(bad(name, "is named twice; take one of the two out".to_owned()));
         }
     }
     if kind.is_none() {
@@ -226,36 +268,30 @@ fn check_header(file: &str, names: &[String]) -> Result<Kind, Vec<BadLine>> {
             faults.push(bad(needed, format!("is missing; a {} file needs {}", closest.name(), closest.required().join(", "))));
         }
     }
-    match kind {
-        Some(kind) if faults.is_empty() => Ok(kind),
-        _ => Err(faults),
-    }
+    (kind, faults)
 }
 
 impl Table {
-    /// Reads every line with `read`.
-    ///
-    /// # Errors
-    /// Every fault of every line.
-    pub(super) fn rows<T>(&self, read: impl Fn(&mut Fields) -> T) -> Result<Vec<T>, Vec<BadLine>> {
-        let mut bad = Vec::new();
+    /// Reads every line with `read`, and adds its faults to those of the table.
+    pub(super) fn rows<T>(&mut self, read: impl Fn(&mut Fields) -> T) -> Vec<T> {
         let mut rows = Vec::with_capacity(self.lines.len());
+        let mut bad = std::mem::take(&mut self.bad);
         for (line, record) in &self.lines {
             let mut fields = Fields { table: self, line: *line, record, bad: Vec::new() };
             for column in self.kind.required() {
                 if fields.text(column).is_empty() {
-                    fields.fault(column, "is empty; it must be filled in".to_owned());
+                    fields.fault(column, EMPTY.to_owned());
                 }
             }
-            let row = read(&mut fields);
+            rows.push(read(&mut fields));
             bad.append(&mut fields.bad);
-            rows.push(row);
         }
-        // A fault that two checks both saw is told once.
-        bad.dedup_by(|a, b| a.line == b.line && a.column == b.column);
-        if bad.is_empty() { Ok(rows) } else { Err(bad) }
+        self.bad = bad;
+        rows
     }
 }
+
+const EMPTY: &str = "is empty; it must be filled in";
 
 /// One line's fields. A fault is noted and a stand-in returned, so that a line
 /// tells all its faults at once.
@@ -280,7 +316,16 @@ impl Fields<'_> {
         self.table.columns.get(column).and_then(|&index| self.record.get(index)).unwrap_or_default()
     }
 
+    /// No fault was found in it so far.
+    pub fn is_sound(&self) -> bool {
+        self.bad.is_empty()
+    }
+
     pub fn fault(&mut self, column: &str, message: String) {
+        // Two checks may see the same, and of an empty field no more is to be said.
+        if self.bad.iter().any(|told| told.column == column && (told.message == message || told.message == EMPTY)) {
+            return;
+        }
         self.bad.push(BadLine { file: self.table.file.clone(), line: self.line, column: column.to_owned(), message });
     }
 
@@ -306,7 +351,7 @@ impl Fields<'_> {
         self.read(column, |text| match text {
             "yes" => Ok(true),
             "no" => Ok(false),
-            other => Err(format!("\u{201c}{other}\u{201d} is neither yes nor no")),
+            other => Err(format!("\u{201c}{other}\u{201d} is neither yes nor no; write one of them, or nothing for no")),
         })
         .unwrap_or(false)
     }
@@ -332,22 +377,37 @@ impl Fields<'_> {
         })
     }
 
-    fn plain_decimal(&self, text: &str) -> Result<Ratio, String> {
-        if text.contains(',') && !self.table.comma_decimals {
-            return Err(format!("\u{201c}{text}\u{201d} has a decimal comma; write a point, or part the columns by semicolons"));
+    /// A number in the unit that the column's name, or the file, says: `read` knows its bounds.
+    pub fn number<T, E: fmt::Display>(&mut self, column: &str, read: impl FnOnce(&str) -> Result<T, E>) -> Option<T> {
+        if self.has_foreign_comma(column) {
+            return None;
         }
-        parse_decimal(text).map_err(|error| error.to_string())
+        self.read(column, read)
     }
 
-    /// A decimal that may not be negative.
-    pub fn decimal(&mut self, column: &str) -> Option<Ratio> {
-        let value = match self.text(column) {
-            "" => return None,
-            text => self.plain_decimal(text).and_then(|value| {
-                if value < Ratio::from_integer(0) { Err(format!("\u{201c}{text}\u{201d} is below zero")) } else { Ok(value) }
-            }),
-        };
-        value.map_err(|message| self.fault(column, message)).ok()
+    /// Hundredths of an hour, rounded down: a duty that asks for 24 hours is not met by 23.999.
+    pub fn hundredths_of_hours(&mut self, column: &str) -> Option<i64> {
+        self.number(column, |text| {
+            let hours = parse_decimal(text).map_err(|error| error.to_string())?;
+            let hundredths = (hours * Ratio::from_integer(100)).floor().to_integer();
+            let taken = i64::try_from(hundredths).ok().filter(|hundredths| (0..=MOST_HUNDREDTHS).contains(hundredths));
+            taken.ok_or_else(|| format!("\u{201c}{text}\u{201d} is not a number of hours that an appliance can have run; correct it"))
+        })
+    }
+
+    /// A decimal comma in a file whose columns are parted by commas is told as a fault.
+    fn has_foreign_comma(&mut self, column: &str) -> bool {
+        let text = self.text(column).to_owned();
+        let foreign = text.contains(',') && !self.table.comma_decimals;
+        if foreign {
+            self.fault(column, format!("\u{201c}{text}\u{201d} has a decimal comma; write a point, or part the columns by semicolons"));
+        }
+        foreign
+    }
+
+    /// A unit of mass, also where there is no mass to it.
+    pub fn unit(&mut self, column: &str) -> Option<MassUnit> {
+        self.read(column, MassUnit::from_name)
     }
 
     /// A mass with its unit from `unit_column`.
@@ -359,13 +419,11 @@ impl Fields<'_> {
             self.fault(unit_column, format!("is empty; {column} needs a unit: kg, g, lb, oz or lb-oz"));
             return None;
         }
-        let unit = self.read(unit_column, MassUnit::from_name)?;
-        let text = self.text(column).to_owned();
-        if text.contains(',') && !self.table.comma_decimals {
-            self.fault(column, format!("\u{201c}{text}\u{201d} has a decimal comma; write a point, or part the columns by semicolons"));
+        let unit = self.unit(unit_column)?;
+        if self.has_foreign_comma(column) {
             return None;
         }
-        let weighing = Weighing::new(text, unit);
+        let weighing = Weighing::new(self.text(column), unit);
         match weighing.mass() {
             Ok(mass) => Some((mass, weighing)),
             Err(error) => {
@@ -379,7 +437,7 @@ impl Fields<'_> {
     pub fn positive_mass(&mut self, column: &str, unit_column: &str) -> Option<(Mass, Weighing)> {
         let (mass, weighing) = self.mass(column, unit_column)?;
         if !mass.is_positive() {
-            self.fault(column, format!("\u{201c}{}\u{201d} is not above zero", weighing.typed));
+            self.fault(column, format!("\u{201c}{}\u{201d} is not above zero; correct the mass", weighing.typed));
             return None;
         }
         Some((mass, weighing))
@@ -388,9 +446,40 @@ impl Fields<'_> {
     /// A gas of the catalogue, by its designation there.
     pub fn gas(&mut self, column: &str) -> Option<String> {
         self.read(column, |text| {
-            crate::gas::find(text)
-                .map(|gas| gas.designation().to_owned())
-                .ok_or_else(|| format!("\u{201c}{text}\u{201d} is not in the gas catalogue; write a designation such as R-448A"))
+            crate::gas::find(text).map(|gas| gas.designation().to_owned()).ok_or_else(|| {
+                let like = crate::gas::like(text);
+                let hint = if like.is_empty() { String::new() } else { format!("; like it are {}", like.join(", ")) };
+                format!("\u{201c}{text}\u{201d} is not in the gas catalogue; write a designation such as R-448A{hint}")
+            })
         })
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn lines(text: &str) -> Vec<u64> {
+        read_table("f.csv", text.as_bytes()).unwrap().lines.iter().map(|(line, _)| *line).collect()
+    }
+
+    #[test]
+    fn lines_are_counted_as_an_editor_does() {
+        assert_eq!(lines("person\na\n\n\nb\nc\n"), [2, 5, 6]);
+        assert_eq!(lines("\n\nperson\r\na\r\n\r\nb"), [4, 6]);
+        assert_eq!(lines("person,company\n\"a\nb\",c\nd,e\n,\nf,g"), [2, 4, 6]);
+        assert_eq!(lines("person\ra\rb\r"), [2, 3]);
+    }
+
+    #[test]
+    fn a_header_tells_what_it_lacks_and_what_it_has_too_much() {
+        let told = |text: &str| match read_table("f.csv", text.as_bytes()) {
+            Ok(table) => (Some(table.kind), table.bad.len()),
+            Err(bad) => (None, bad.len()),
+        };
+        assert_eq!(told("person,colour,person\n"), (Some(Kind::People), 2));
+        assert_eq!(told("site,owner,valid_from\n"), (None, 1));
+        assert_eq!(told(""), (None, 1));
+        assert_eq!(told("\n  \n"), (None, 1));
     }
 }

@@ -6,7 +6,7 @@ use super::{Form, Go, Office};
 use crate::app::App;
 use crate::gas;
 use crate::ledger::{ApplianceFacts, ApplianceId, Category, ChargeMethod, Equipment};
-use crate::quantity::parse_decimal;
+use crate::quantity::Volume;
 use crate::view::shown::{Choice, Ready};
 use crate::view::{parse, words};
 use words::office as say;
@@ -193,13 +193,11 @@ fn read(form: &mut Form, before: Option<&ApplianceFacts>, unit: crate::quantity:
     let charge = form.take("full-charge", parse::mass(form.text("full-charge"), unit));
     let installed_on = form.take("installed-on", day(form.text("installed-on")));
     let room = form.trimmed("room-volume");
-    let room = match parse_decimal(&room) {
-        _ if room.is_empty() => Some(None),
-        Ok(volume) if volume > crate::quantity::Ratio::from_integer(0) => Some(Some(room.replace(',', "."))),
-        _ => {
-            form.wrong("room-volume", say::not_a_pressure(&room));
-            None
-        }
+    let room = if room.is_empty() {
+        Some(None)
+    } else {
+        let read = Volume::from_cubic_metres_text(&room).map_err(|error| words::sentence(&error.to_string()));
+        form.take("room-volume", read.map(|_| Some(room.replace(',', "."))))
     };
     let written = charge?;
     // Typed as it was, an exact mass of imported history stays what it was.

@@ -7,7 +7,7 @@ use super::plant::FormMsg;
 use super::{Form, Go, Office};
 use crate::app::App;
 use crate::ledger::{CylinderFacts, CylinderId, CylinderKind, GasStatus};
-use crate::quantity::{MassUnit, Ratio, Volume, Weighing, decimal_text, parse_decimal};
+use crate::quantity::{GaugePressure, MassUnit, QuantityError, Volume, Weighing, decimal_text};
 use crate::view::shown::{Choice, Ready};
 use crate::view::{parse, words};
 use words::office as say;
@@ -145,23 +145,19 @@ fn litres(text: &str) -> Result<Option<String>, String> {
         let volume = mass.and_then(Volume::of_water).and_then(|volume| decimal_text(volume.litres()));
         return volume.map(Some).ok_or_else(|| say::not_a_pressure(text));
     }
-    number(text.trim_end_matches(['l', 'L']))
+    number(text.trim_end_matches(['l', 'L']), Volume::from_litres_text)
 }
 
-/// A number above zero, kept as it was written.
-fn number(text: &str) -> Result<Option<String>, String> {
+/// A number that `read` takes, kept as it was written.
+fn number<T>(text: &str, read: impl Fn(&str) -> Result<T, QuantityError>) -> Result<Option<String>, String> {
     let text = text.trim();
     if text.is_empty() {
         return Ok(None);
     }
-    match parse_decimal(text) {
-        Ok(value) if value > Ratio::from_integer(0) => Ok(Some(text.replace(',', "."))),
-        _ => Err(say::not_a_pressure(text)),
-    }
+    read(text).map(|_| Some(text.replace(',', "."))).map_err(|error| words::sentence(&error.to_string()))
 }
 
 fn read(form: &mut Form, unit: MassUnit) -> Option<CylinderFacts> {
-    let pressure = |text: &str, unit: &str| number(text.trim().trim_end_matches(unit));
     let gas = form.trimmed("gas");
     let refrigerant = if gas.is_empty() { Some(None) } else { form.take("gas", gas_named(&gas)).map(Some) };
     let tare = form.take("tare", parse::mass(form.text("tare"), unit)).flatten();
@@ -169,8 +165,9 @@ fn read(form: &mut Form, unit: MassUnit) -> Option<CylinderFacts> {
     let capacity = form.take("water-capacity", litres(form.text("water-capacity")));
     let requalify_by = form.take("requalify-by", last_day(form.text("requalify-by")));
     let stamped = form.take("stamped-maximum", parse::mass(form.text("stamped-maximum"), unit));
-    let service = form.take("service-pressure", pressure(form.text("service-pressure"), "psig"));
-    let test = form.take("test-pressure", pressure(form.text("test-pressure"), "bar"));
+    let service =
+        form.take("service-pressure", number(form.text("service-pressure").trim().trim_end_matches("psig"), GaugePressure::from_psi_text));
+    let test = form.take("test-pressure", number(form.text("test-pressure").trim().trim_end_matches("bar"), GaugePressure::from_bar_text));
     let tare_written = tare?;
     let (gross_written, stamped) = (gross?, stamped?);
     Some(CylinderFacts {
