@@ -70,6 +70,7 @@ impl App {
         }
         let eve = span.from.pred_opt().unwrap_or(span.from);
         let mut unknown = BTreeSet::new();
+        let mut worked_back = BTreeSet::new();
         for (on, opening) in [(eve, true), (span.to, false)] {
             for cylinder in self.cylinders(on)? {
                 let Some((gas, held)) = held(&cylinder, on) else { continue };
@@ -79,6 +80,8 @@ impl App {
                 *place = place.zip(held).map(|(sum, held)| sum + held);
                 if held.is_none() {
                     unknown.insert(cylinder.cylinder.name.clone());
+                } else if cylinder.balance.worked_back {
+                    worked_back.insert(cylinder.cylinder.name.clone());
                 }
             }
         }
@@ -88,10 +91,14 @@ impl App {
                 "What these cylinders held is not known, so neither is the holding of their gas: {names}. Weigh them and write down the gross."
             )));
         }
-        account.remarks.push(plain(
-            "Gas bought and gas sent away are not kept in this store yet. A cylinder counts from the first day of its register line, \
-             without one from the beginning.",
-        ));
+        account.remarks.push(plain("Gas bought and gas sent away are not kept in this store yet."));
+        if !worked_back.is_empty() {
+            let names = worked_back.into_iter().collect::<Vec<_>>().join(", ");
+            account.remarks.push(plain(&format!(
+                "These cylinders were first weighed later; what they held before is worked back from that weighing by what went in and \
+                 out since: {names}."
+            )));
+        }
         Ok(())
     }
 
@@ -466,13 +473,15 @@ mod tests {
     }
 
     #[test]
-    fn cylinders_hold_what_was_weighed_less_what_left() {
+    fn cylinders_hold_what_was_weighed_and_before_that_what_left() {
         let account = app().annual_account(2026, None).unwrap();
         let gas = |name: &str| account.gases.iter().find(|gas| gas.refrigerant == name).unwrap().line;
+        // Weighed when the register came, after all that its log tells.
         let kg20 = Mass::from_kg(20);
-        assert_eq!((gas("R-22").opening, gas("R-22").closing), (Some(kg20 - lb(10)), Some(kg20 - lb(15))));
+        assert_eq!((gas("R-22").opening, gas("R-22").closing), (Some(kg20 + lb(5)), Some(kg20)));
         // S-2 was never weighed.
         assert_eq!((gas("R-410A").opening, gas("R-410A").bought), (None, None));
+        assert!(account.remarks.iter().any(|remark| remark.text.contains("worked back") && remark.text.contains("S-1")));
         assert!(account.remarks.iter().any(|remark| remark.text.contains("S-2")));
         assert!(account.remarks.iter().any(|remark| remark.text.contains("43.09127515 kg were charged")), "{:?}", account.remarks);
     }

@@ -5,11 +5,12 @@ use super::entries::known_gas;
 use super::{App, AppError};
 use crate::ledger::{
     Appliance, ApplianceFacts, ApplianceId, Category, Company, Cylinder, CylinderFacts, CylinderId, Dated, Instrument, InstrumentId,
-    Person, PersonId, Site, SiteFacts, SiteId, Versions,
+    Person, PersonId, ReadAt, Site, SiteFacts, SiteId, Versions,
 };
 use crate::quantity::{Mass, Weighing};
 use crate::rules::rulebook;
-use chrono::NaiveDate;
+use crate::store::{Store, StoreError};
+use chrono::{DurationRound, NaiveDate, TimeDelta};
 
 /// A site as first written down.
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -98,21 +99,44 @@ impl App {
     /// The identification is missing or taken; the gas is unknown; gross below tare.
     pub fn add_cylinder(&self, name: &str, facts: CylinderFacts) -> Result<CylinderId, AppError> {
         let facts = sound_cylinder(facts)?;
-        let cylinder = Cylinder { id: CylinderId(self.new_id()), name: named(name)?, versions: Versions::always(facts) };
-        self.store.write(self.now(), |tx| tx.add_cylinder(&cylinder).map_err(AppError::from))?;
-        Ok(cylinder.id)
+        let id = CylinderId(self.new_id());
+        let name = named(name)?;
+        self.store.write(self.now(), |tx| {
+            let weighed = if facts.gross.is_some() { Some(self.reading_now(tx)?) } else { None };
+            let versions = Versions::always(CylinderFacts { gas_told: None, weighed, ..facts });
+            Ok::<_, AppError>(tx.add_cylinder(&Cylinder { id, name, versions })?)
+        })?;
+        Ok(id)
     }
 
     /// A cylinder moved, was weighed anew, filled at the supplier's, requalified, taken out of use.
+    ///
+    /// Gross, gas and status that differ from those written down last were
+    /// read now, or where `from` is a day gone by, on that day. A gross that
+    /// is the same counts as read anew where `facts` do not say when it was.
     ///
     /// # Errors
     /// As [`App::add_cylinder`].
     pub fn change_cylinder(&self, cylinder: CylinderId, facts: CylinderFacts, from: NaiveDate, reason: &str) -> Result<(), AppError> {
         let facts = sound_cylinder(facts)?;
         self.store.write(self.now(), |tx| {
-            tx.cylinder(cylinder)?.ok_or(AppError::Unknown { what: "cylinder" })?;
+            let known = tx.cylinder(cylinder)?.ok_or(AppError::Unknown { what: "cylinder" })?;
+            let last = known.versions.latest();
+            let now = if from >= self.today() { Some(self.reading_now(tx)?) } else { None };
+            let weighed_anew = facts.gross != last.gross || (last.weighed.is_some() && facts.weighed.is_none());
+            let told_anew = (&facts.refrigerant, facts.gas_status) != (&last.refrigerant, last.gas_status);
+            let weighed = if facts.gross.is_some() && weighed_anew { now } else { last.weighed };
+            let gas_told = if told_anew { now } else { last.gas_told };
+            let facts = CylinderFacts { gas_told, weighed, ..facts };
             Ok(tx.add_cylinder_version(cylinder, &dated(from, reason, facts))?)
         })
+    }
+
+    /// What is read now, after all that was written so far.
+    pub(super) fn reading_now(&self, store: &Store) -> Result<ReadAt, StoreError> {
+        let now = self.now();
+        let instant = now.duration_trunc(TimeDelta::minutes(1)).unwrap_or(now);
+        Ok(ReadAt { at: self.moment_in(self.clock.zone()), instant, after: store.last_position()? })
     }
 
     /// The id of `person` is given here.

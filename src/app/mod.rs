@@ -12,6 +12,7 @@ mod entries;
 mod error;
 mod import;
 mod inputs;
+mod limits;
 mod methods;
 mod paper;
 mod refusals;
@@ -32,8 +33,9 @@ pub use import::{ImportError, Imported, Remark};
 pub use inputs::{
     ChargeInput, Common, NewEntry, PressureInput, RecoverInput, RecycleInput, RepairInput, RetrofitInput, SimpleAct, TestInput,
 };
+pub use limits::LimitRules;
 pub use paper::{Printed, Recognised, fit};
-pub use refusals::{Kind, Refusal, measured, measured_under};
+pub use refusals::{Kind, Refusal};
 pub use service_bans::{ServiceBan, service_bans};
 pub use standing::{ApplianceStanding, CylinderStanding, WeighingGap};
 pub use visits::OpenVisit;

@@ -3,13 +3,14 @@
 //!
 //! History that is imported is taken as it happened and does not pass here.
 
+use super::limits::LimitRules;
 use super::methods::is_direct;
 use super::service_bans::service_bans;
 use super::standing::{ApplianceStanding, CylinderStanding};
-use crate::gas;
+use crate::gas::{self, Gas};
 use crate::ledger::{Act, ChargePurpose, CylinderKind, GasStatus, Line, Moment, TestKind};
-use crate::measure::{self, CylinderLaw, Rating, cylinder_limit};
-use crate::quantity::{GaugePressure, Mass, Ratio, Volume, parse_decimal};
+use crate::measure::{CylinderLimit, Limit, Missing, Rating, is_near_critical};
+use crate::quantity::{GaugePressure, Mass, Ratio, rounded_text};
 use chrono::NaiveDate;
 use std::fmt;
 
@@ -32,7 +33,10 @@ pub enum Kind {
     NotRefillable,
     Overdue,
     OverLimit,
+    NoLimit,
+    ContentUnknown,
     NotRated,
+    RatingUnknown,
     NothingToRecycle,
     WeighingGap,
     IndirectMethod,
@@ -274,64 +278,102 @@ pub fn of_recovery(
         Some(gas) => {
             let content =
                 gross_after.map(|gross| gross - cylinder.facts.tare).or_else(|| cylinder.balance.content.mass().map(|held| held + net));
-            refusals.extend(of_limit(standing, cylinder, gas, content, oil_factor));
+            let rules = LimitRules::under(&standing.site_facts.rulebooks, oil_factor);
+            refusals.extend(of_limit(name, cylinder, gas, content, rules));
         }
     }
     refusals
 }
 
-fn of_limit(
-    standing: &ApplianceStanding,
-    cylinder: &CylinderStanding,
-    gas: &gas::Gas,
-    content: Option<Mass>,
-    oil_factor: Ratio,
-) -> Vec<Refusal> {
-    let name = &cylinder.cylinder.name;
-    let mut refusals = Vec::new();
-    let limit = cylinder_limit(gas, &measured(standing, cylinder), oil_factor);
-    if let (Some(content), Some(binding)) = (content, &limit.binding)
-        && content > binding.net
-    {
-        let sentence = format!(
-            "Cylinder {name} would hold {} kg, over its limit of {} kg ({}). Stop before that; if it has happened, write why and empty it at once.",
-            content.kg_text(),
-            binding.net.kg_text(),
-            binding.kind.name(),
-        );
-        refusals.push(Refusal::judgement(Kind::OverLimit, sentence, binding.kind.basis()));
+/// Filled too full, or with a gas whose pressure it is not made for, a cylinder bursts. What cannot be shown to
+/// hold is refused; where only a figure was not written down, a reason lets it pass.
+fn of_limit(name: &str, cylinder: &CylinderStanding, gas: &Gas, content: Option<Mass>, rules: LimitRules) -> Vec<Refusal> {
+    let limit = rules.limit_of(gas, cylinder, true);
+    let mut refusals: Vec<Refusal> = match (&limit.binding, content) {
+        (None, _) => Some(no_limit(name, gas, &limit)),
+        (Some(binding), None) => Some(content_unknown(name, binding)),
+        (Some(binding), Some(content)) if content > binding.net => Some(over_limit(name, content, binding)),
+        (Some(_), Some(_)) => None,
     }
-    if let Rating::Judged { suffices: false, pressure, allowed, basis, at } = limit.rating {
-        let bar = |pressure: GaugePressure| crate::quantity::rounded_text(pressure.bar(), 1);
-        let sentence = format!(
-            "Cylinder {name} is not rated for {}: {} bar gauge at {at} °C, {} bar are allowed.",
-            gas.designation(),
-            bar(pressure),
-            bar(allowed),
-        );
-        refusals.push(Refusal::firm(Kind::NotRated, sentence, basis));
-    }
+    .into_iter()
+    .collect();
+    refusals.extend(of_rating(name, gas, &limit.rating));
     refusals
 }
 
-/// The cylinder as the limits are worked out from it.
-pub fn measured(standing: &ApplianceStanding, cylinder: &CylinderStanding) -> measure::Cylinder {
-    let united_states = standing.site_facts.rulebooks.iter().any(|id| id.starts_with("us-"));
-    measured_under(if united_states { CylinderLaw::UnitedStates } else { CylinderLaw::Adr }, cylinder)
+fn over_limit(name: &str, content: Mass, binding: &Limit) -> Refusal {
+    let sentence = format!(
+        "Cylinder {name} would hold {} kg, over its limit of {} kg ({}). Stop before that; if it has happened, write why and empty it at once.",
+        content.kg_text(),
+        binding.net.kg_text(),
+        binding.name(),
+    );
+    Refusal::judgement(Kind::OverLimit, sentence, binding.kind.basis())
 }
 
-/// The same under a law that is known without an appliance.
-pub fn measured_under(law: CylinderLaw, cylinder: &CylinderStanding) -> measure::Cylinder {
-    let facts = &cylinder.facts;
-    // Water capacities weighed in pounds have more digits than a person writes.
-    let litres = facts.water_capacity_l.as_ref().and_then(|text| parse_decimal(text).ok());
-    measure::Cylinder {
-        water_capacity: litres.and_then(Volume::from_litres),
-        tare: Some(facts.tare),
-        stamped_maximum: facts.stamped_maximum,
-        service_pressure: facts.service_pressure_psig.as_ref().and_then(|text| GaugePressure::from_psi_text(text).ok()),
-        test_pressure: facts.test_pressure_bar.as_ref().and_then(|text| GaugePressure::from_bar_text(text).ok()),
-        law,
+fn content_unknown(name: &str, binding: &Limit) -> Refusal {
+    let sentence = format!(
+        "What cylinder {name} held before is not known, so nor is what it holds now; its limit is {} kg ({}). Weigh it with its tare.",
+        binding.net.kg_text(),
+        binding.name(),
+    );
+    Refusal::judgement(Kind::ContentUnknown, sentence, "49 CFR 173.304a(c)")
+}
+
+fn no_limit(name: &str, gas: &Gas, limit: &CylinderLimit) -> Refusal {
+    let designation = gas.designation();
+    if is_near_critical(gas) {
+        let sentence = format!(
+            "No limit can be worked out for {designation} in cylinder {name}: near its critical temperature no density tells it. \
+             Take a cylinder made and stamped for {designation}."
+        );
+        return Refusal::firm(Kind::NoLimit, sentence, "49 CFR 173.304a(a)(2); ADR 4.1.4.1, P200");
+    }
+    let sentence = if limit.missing.contains(&Missing::WaterCapacity) {
+        format!("How much cylinder {name} may take is not known: write down its water capacity or stamped maximum.")
+    } else {
+        format!(
+            "How much {designation} cylinder {name} may take is not known: no density of it is at hand. Write down its stamped maximum."
+        )
+    };
+    Refusal::judgement(Kind::NoLimit, sentence, "49 CFR 173.304(b)")
+}
+
+fn of_rating(name: &str, gas: &Gas, rating: &Rating) -> Option<Refusal> {
+    let designation = gas.designation();
+    let bar = |pressure: &GaugePressure| rounded_text(pressure.bar(), 1);
+    match rating {
+        Rating::Judged { suffices: true, .. } | Rating::Named { suffices: true, .. } => None,
+        Rating::Judged { pressure, allowed, basis, at, .. } => {
+            let (pressure, allowed) = (bar(pressure), bar(allowed));
+            let sentence =
+                format!("Cylinder {name} is not rated for {designation}: {pressure} bar gauge at {at} °C, {allowed} bar are allowed.");
+            Some(Refusal::firm(Kind::NotRated, sentence, basis))
+        }
+        Rating::Named { needed, given, basis, .. } => {
+            let (needed, given) = (bar(needed), bar(given));
+            let sentence =
+                format!("Cylinder {name} is not made for {designation}: {needed} bar gauge are asked for, it is stamped {given}.");
+            Some(Refusal::firm(Kind::NotRated, sentence, basis))
+        }
+        Rating::NotGiven | Rating::NoPressure if is_near_critical(gas) => {
+            let sentence = format!(
+                "Nothing shows that cylinder {name} is made for {designation}, which is near its critical temperature when warm. \
+                 Take a cylinder made for it, with its service or test pressure written down."
+            );
+            Some(Refusal::firm(Kind::NotRated, sentence, "49 CFR 173.304a(a)(2); ADR 4.1.4.1, P200"))
+        }
+        Rating::NotGiven => {
+            let sentence =
+                format!("Whether cylinder {name} is made for {designation} is not known: write down its service or test pressure.");
+            Some(Refusal::judgement(Kind::RatingUnknown, sentence, "49 CFR 173.301(a)(8); ADR 4.1.4.1, P200"))
+        }
+        Rating::NoPressure => {
+            let sentence = format!(
+                "Whether cylinder {name} is made for {designation} is not known: the catalogue has no pressure of it in a warm cylinder."
+            );
+            Some(Refusal::judgement(Kind::RatingUnknown, sentence, "49 CFR 173.301(a)(8); ADR 4.1.4.1, P200"))
+        }
     }
 }
 
@@ -435,8 +477,16 @@ pub(super) mod tests {
             ..CylinderFacts::new(CylinderKind::Recovery, kg("10"), Weighing::new("10", MassUnit::Kilogram))
         };
         let cylinder = Cylinder { id: CylinderId(Uuid::nil()), name: "S-204".to_owned(), versions: Versions::always(facts.clone()) };
-        let balance = CylinderBalance { content: Content::Known(kg(content)), gas: gas.map(str::to_owned), status, last_gross: None };
+        let balance =
+            CylinderBalance { content: Content::Known(kg(content)), gas: gas.map(str::to_owned), status, ..CylinderBalance::UNKNOWN };
         CylinderStanding { cylinder, facts, balance, recovered_from: None }
+    }
+
+    impl CylinderStanding {
+        fn gas_is(mut self, gas: &str) -> Self {
+            self.balance.gas = Some(gas.to_owned());
+            self
+        }
     }
 
     fn kinds(refusals: Vec<Refusal>) -> Vec<(Kind, bool)> {
@@ -448,7 +498,7 @@ pub(super) mod tests {
     }
 
     fn recover(standing: &ApplianceStanding, cylinder: &CylinderStanding, net: &str) -> Vec<(Kind, bool)> {
-        kinds(of_recovery(standing, cylinder, kg(net), None, measure::default_oil_factor(), day("2026-06-01")))
+        kinds(of_recovery(standing, cylinder, kg(net), None, crate::measure::default_oil_factor(), day("2026-06-01")))
     }
 
     #[test]
@@ -555,6 +605,54 @@ pub(super) mod tests {
         // 0.8 × 1.0589 kg/l × 26.2 l × 0.9 = 19.97 kg.
         assert_eq!(recover(&plant, &good, "17.9"), []);
         assert_eq!(recover(&plant, &good, "18.1"), [(Kind::OverLimit, true)]);
+    }
+
+    #[test]
+    fn gas_near_its_critical_point_goes_into_no_ordinary_cylinder() {
+        let ordinary = |gas| cylinder(None, None, "0").gas_is(gas);
+        for gas in ["R-744", "R-13", "R-23", "R-116", "R-503", "R-508B"] {
+            for rulebook in ["us-82f", "eu-573"] {
+                let plant = standing(rulebook, gas);
+                let firm = |change: &dyn Fn(&mut CylinderStanding)| {
+                    let mut changed = ordinary(gas);
+                    change(&mut changed);
+                    let refused = recover(&plant, &changed, "0.1");
+                    assert!(refused.iter().any(|(kind, judgement)| *kind == Kind::NotRated && !judgement), "{gas} {rulebook} {refused:?}");
+                };
+                firm(&|_| {});
+                firm(&|c| c.facts.service_pressure_psig = None);
+                firm(&|c| (c.facts.service_pressure_psig, c.facts.test_pressure_bar) = (None, Some("48".to_owned())));
+                firm(&|c| c.facts.stamped_maximum = Some(kg("5")));
+            }
+        }
+        // What a table names is the way in.
+        let mut made_for_it = ordinary("R-744");
+        made_for_it.facts.test_pressure_bar = Some("250".to_owned());
+        assert_eq!(recover(&standing("eu-573", "R-744"), &made_for_it, "15.5"), []);
+        assert_eq!(recover(&standing("eu-573", "R-744"), &made_for_it, "15.6"), [(Kind::OverLimit, true)]);
+        made_for_it.facts.service_pressure_psig = Some("1800".to_owned());
+        assert_eq!(recover(&standing("us-84c", "R-744"), &made_for_it, "10"), []);
+        // 40 CFR names no filling density for it, so nothing says how much is too much.
+        made_for_it.balance.gas = Some("R-23".to_owned());
+        assert!(recover(&standing("us-84c", "R-23"), &made_for_it, "1").contains(&(Kind::NoLimit, false)));
+    }
+
+    #[test]
+    fn what_was_not_written_down_asks_for_a_reason() {
+        let plant = standing("us-82f", "R-410A");
+        let with = |change: &dyn Fn(&mut CylinderStanding)| {
+            let mut changed = cylinder(Some("R-410A"), Some(GasStatus::Recovered), "2");
+            change(&mut changed);
+            recover(&plant, &changed, "4")
+        };
+        assert_eq!(with(&|c| c.facts.service_pressure_psig = None), [(Kind::RatingUnknown, true)]);
+        assert_eq!(with(&|c| c.facts.water_capacity_l = None), [(Kind::NoLimit, true)]);
+        assert_eq!(with(&|c| c.balance.content = Content::NotWeighed), [(Kind::ContentUnknown, true)]);
+        // Weighed with its tare when it was over, it is known.
+        let mut unknown = cylinder(Some("R-410A"), Some(GasStatus::Recovered), "2");
+        unknown.balance.content = Content::NotWeighed;
+        let factor = crate::measure::default_oil_factor();
+        assert_eq!(kinds(of_recovery(&plant, &unknown, kg("4"), Some(kg("20")), factor, day("2026-06-01"))), []);
     }
 
     #[test]

@@ -1,9 +1,9 @@
 //! The fold from entries to what a cylinder holds and what an appliance took:
 //! the only place where masses are added up for a balance.
 
-use super::{Act, ApplianceId, Cylinder, CylinderFacts, CylinderId, Dated, EntryId, GasStatus, Line, Moment, Position};
-use crate::quantity::Mass;
-use chrono::NaiveDate;
+use super::{Act, ApplianceId, Cylinder, CylinderFacts, CylinderId, EntryId, GasStatus, Line, Moment, Position, ReadAt};
+use crate::quantity::{Mass, Weighing};
+use chrono::{DateTime, NaiveDate, Utc};
 
 /// Gas that went into or out of a cylinder, or was made fit for use in it.
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -12,6 +12,8 @@ pub struct Movement {
     pub appliance: ApplianceId,
     pub entry: EntryId,
     pub at: Moment,
+    /// The same in UTC; `None` where history gives no time.
+    pub instant: Option<DateTime<Utc>>,
     pub position: Position,
     pub kind: MovementKind,
     /// The cylinder with its tare when it was over, where it was weighed so.
@@ -28,6 +30,30 @@ pub enum MovementKind {
     Into(Mass),
     /// The content was made recycled gas.
     Recycled,
+}
+
+impl MovementKind {
+    /// What the cylinder holds more afterwards.
+    fn gain(self) -> Mass {
+        match self {
+            Self::Out(mass) => -mass,
+            Self::Into(mass) => mass,
+            Self::Recycled => Mass::ZERO,
+        }
+    }
+}
+
+impl Movement {
+    /// Whether the gas had moved when something was read. What was written
+    /// down later may still have happened earlier; history without a time
+    /// happened by the day's readings.
+    fn is_before(&self, reading: &ReadAt) -> bool {
+        self.position <= reading.after
+            || match self.instant {
+                Some(instant) => instant < reading.instant,
+                None => self.at.date <= reading.at.date,
+            }
+    }
 }
 
 /// How much is in a cylinder.
@@ -74,6 +100,10 @@ pub struct KnownGross {
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub struct CylinderBalance {
     pub content: Content,
+    /// The content follows from a weighing that came only later.
+    pub worked_back: bool,
+    /// What was left in it when it was last filled, where that is known.
+    pub heel: Option<Mass>,
     /// Gas in it, or last in it; `None`: none yet.
     pub gas: Option<String>,
     pub status: Option<GasStatus>,
@@ -82,25 +112,45 @@ pub struct CylinderBalance {
 }
 
 impl CylinderBalance {
+    /// Of a cylinder about which nothing is known.
+    pub const UNKNOWN: Self =
+        Self { content: Content::NotWeighed, worked_back: false, heel: None, gas: None, status: None, last_gross: None };
+
     /// Two gases in one cylinder.
     pub fn is_mixed(&self) -> bool {
         self.status == Some(GasStatus::Mixed)
     }
 }
 
+#[derive(Clone, Copy)]
 enum Event<'a> {
-    Version(&'a Dated<CylinderFacts>),
-    Movement(&'a Movement),
+    /// Gas and status were written down.
+    Told(&'a CylinderFacts),
+    /// No gas was ever named in it: it is empty.
+    Empty,
+    Weighed {
+        gross: Mass,
+        tare: Mass,
+        at: Option<Moment>,
+        division: Option<Mass>,
+    },
+    Moved {
+        movement: &'a Movement,
+        tare: Mass,
+    },
 }
+
+/// An event with its day; `None`: from the beginning.
+type OnDay<'a> = (Option<NaiveDate>, Event<'a>);
 
 /// Folds a cylinder's register versions and movements, in any order and of
 /// any cylinders, up to and with the day `on`. `gas_of` names the gas that the
 /// appliance of a movement held then.
 ///
-/// A gross reading settles the content anew; between two of them transfers
-/// are added. A version with a weighing counts from the start of its day.
-/// Another gas on top of some makes a mix, and nothing unmakes it but a
-/// version that says so.
+/// A gross reading settles the content anew, wherever it was taken; between
+/// two of them transfers are added. Before the first of them the content is
+/// worked back from it. Another gas on top of some makes a mix, and nothing
+/// unmakes it but a version that says so.
 pub fn cylinder_balance(
     cylinder: &Cylinder,
     movements: &[Movement],
@@ -119,61 +169,118 @@ pub fn follow_cylinder(
     gas_of: &dyn Fn(&Movement) -> Option<String>,
     before: &mut dyn FnMut(&Movement, &CylinderBalance),
 ) -> CylinderBalance {
-    let versions = cylinder.versions.all().iter().filter(|version| version.from.is_none_or(|from| from <= on));
-    let moved = movements.iter().filter(|movement| movement.cylinder == cylinder.id && movement.at.date <= on);
-    let mut events: Vec<((Option<NaiveDate>, Position), Event)> = versions
-        .map(|version| ((version.from, 0), Event::Version(version)))
-        .chain(moved.map(|movement| ((Some(movement.at.date), movement.position), Event::Movement(movement))))
-        .collect();
-    events.sort_by_key(|(at, _)| *at);
+    let mut fold = Fold { balance: CylinderBalance::UNKNOWN, filling: false };
+    let (by_then, later): (Vec<OnDay>, Vec<OnDay>) =
+        events(cylinder, movements).into_iter().partition(|(day, _)| day.is_none_or(|day| day <= on));
+    for (_, event) in by_then {
+        if let Event::Moved { movement, .. } = event {
+            before(movement, &fold.balance);
+        }
+        fold.take(event, gas_of);
+    }
+    if fold.balance.content == Content::NotWeighed {
+        fold.balance.work_back(later);
+    }
+    fold.balance
+}
 
-    let mut balance = CylinderBalance { content: Content::NotWeighed, gas: None, status: None, last_gross: None };
-    let mut facts: Option<&CylinderFacts> = None;
-    for (_, event) in events {
-        match event {
-            Event::Version(version) => {
-                balance.take_version(version, facts);
-                facts = Some(&version.facts);
-            }
-            Event::Movement(movement) => {
-                before(movement, &balance);
-                // History may know of transfers from before the first version.
-                let tare = facts.map_or_else(|| cylinder.versions.first().facts.tare, |facts| facts.tare);
-                balance.take_movement(movement, tare, gas_of);
+/// All that ever happened to a cylinder, in order.
+fn events<'a>(cylinder: &'a Cylinder, movements: &'a [Movement]) -> Vec<OnDay<'a>> {
+    let mut moved: Vec<&Movement> = movements.iter().filter(|movement| movement.cylinder == cylinder.id).collect();
+    moved.sort_by_key(|movement| (movement.at, movement.position));
+    // Each with the number of movements that come before it.
+    let mut read: Vec<(usize, OnDay)> = Vec::new();
+    let mut before: Option<&CylinderFacts> = None;
+    for version in cylinder.versions.all() {
+        let facts = &version.facts;
+        let place = |mark: Option<&ReadAt>| match (mark, version.from) {
+            (Some(mark), _) => (moved.iter().rposition(|movement| movement.is_before(mark)).map_or(0, |last| last + 1), Some(mark.at.date)),
+            (None, Some(from)) => (moved.partition_point(|movement| movement.at.date < from), Some(from)),
+            (None, None) => (0, None),
+        };
+        let told_anew = before.is_none_or(|before| {
+            (&before.refrigerant, before.gas_status, before.gas_told) != (&facts.refrigerant, facts.gas_status, facts.gas_told)
+        });
+        if told_anew {
+            let (index, day) = place(facts.gas_told.as_ref());
+            read.push((index, (day, Event::Told(facts))));
+        }
+        let weighed_anew = before.is_none_or(|before| (before.gross, before.weighed) != (facts.gross, facts.weighed));
+        if let Some(gross) = facts.gross.filter(|_| weighed_anew) {
+            let (index, day) = place(facts.weighed.as_ref());
+            let at = facts.weighed.map(|mark| mark.at).or(day.map(|date| Moment { date, minute: None }));
+            let division = facts.gross_written.as_ref().map(Weighing::last_digit);
+            read.push((index, (day, Event::Weighed { gross, tare: facts.tare, at, division })));
+        } else if before.is_none() && facts.refrigerant.is_none() {
+            let (index, day) = place(None);
+            read.push((index, (day, Event::Empty)));
+        }
+        before = Some(facts);
+    }
+    read.sort_by_key(|(index, _)| *index);
+    let mut read = read.into_iter().peekable();
+    let mut events = Vec::with_capacity(moved.len() + read.len());
+    for (index, movement) in moved.into_iter().enumerate() {
+        while let Some((_, event)) = read.next_if(|(place, _)| *place <= index) {
+            events.push(event);
+        }
+        // History may know of transfers from before the first version.
+        let tare = cylinder.versions.on(movement.at.date).unwrap_or_else(|| &cylinder.versions.first().facts).tare;
+        events.push((Some(movement.at.date), Event::Moved { movement, tare }));
+    }
+    events.extend(read.map(|(_, event)| event));
+    events
+}
+
+/// A balance in the making.
+struct Fold {
+    balance: CylinderBalance,
+    /// Nothing was drawn off since gas last came in.
+    filling: bool,
+}
+
+impl Fold {
+    fn take(&mut self, event: Event, gas_of: &dyn Fn(&Movement) -> Option<String>) {
+        if let Event::Moved { movement, .. } = event {
+            match movement.kind {
+                MovementKind::Into(_) if !self.filling => {
+                    self.balance.heel = self.balance.content.mass();
+                    self.filling = true;
+                }
+                MovementKind::Out(_) => self.filling = false,
+                MovementKind::Into(_) | MovementKind::Recycled => {}
             }
         }
+        self.balance.take(event, gas_of);
     }
-    balance
 }
 
 impl CylinderBalance {
-    fn take_version(&mut self, version: &Dated<CylinderFacts>, before: Option<&CylinderFacts>) {
-        let facts = &version.facts;
-        let weighed_anew = facts.gross.filter(|gross| before.is_none_or(|before| before.gross != Some(*gross)));
-        if before.is_none_or(|before| before.refrigerant != facts.refrigerant || before.gas_status != facts.gas_status)
-            || weighed_anew.is_some()
-        {
-            self.gas.clone_from(&facts.refrigerant);
-            self.status = facts.gas_status;
+    fn take(&mut self, event: Event, gas_of: &dyn Fn(&Movement) -> Option<String>) {
+        match event {
+            Event::Told(facts) => {
+                if self.gas != facts.refrigerant {
+                    self.heel = None;
+                }
+                self.gas.clone_from(&facts.refrigerant);
+                self.status = facts.gas_status;
+            }
+            Event::Empty => self.content = Content::Known(Mass::ZERO),
+            Event::Weighed { gross, tare, at, division } => {
+                self.content = Content::Known(gross - tare);
+                self.last_gross = Some(KnownGross { gross, at, read: true, division });
+            }
+            Event::Moved { movement, tare } => self.take_movement(movement, tare, gas_of),
         }
-        if let Some(gross) = weighed_anew {
-            self.content = Content::Known(gross - facts.tare);
-            let at = version.from.map(|date| Moment { date, minute: None });
-            let division = facts.gross_written.as_ref().map(crate::quantity::Weighing::last_digit);
-            self.last_gross = Some(KnownGross { gross, at, read: true, division });
-        } else if before.is_none() && facts.refrigerant.is_none() {
-            // No gas was ever named in it: it is empty.
-            self.content = Content::Known(Mass::ZERO);
-        }
+        // What was drawn off below the heel was heel.
+        let content = self.content.mass();
+        self.heel = self.heel.map(|heel| content.map_or(heel, |content| heel.min(content)).max(Mass::ZERO));
     }
 
     fn take_movement(&mut self, movement: &Movement, tare: Mass, gas_of: &dyn Fn(&Movement) -> Option<String>) {
         match movement.kind {
-            MovementKind::Out(mass) => self.content = self.content.plus(-mass),
-            MovementKind::Into(mass) => {
-                self.take_in(gas_of(movement));
-                self.content = self.content.plus(mass);
-            }
+            MovementKind::Out(_) => {}
+            MovementKind::Into(_) => self.take_in(gas_of(movement)),
             MovementKind::Recycled => {
                 if self.status == Some(GasStatus::Recovered) {
                     self.status = Some(GasStatus::Recycled);
@@ -181,6 +288,7 @@ impl CylinderBalance {
                 return;
             }
         }
+        self.content = self.content.plus(movement.kind.gain());
         if let Some(gross) = movement.gross_after {
             self.content = Content::Known(gross - tare);
         }
@@ -203,6 +311,28 @@ impl CylinderBalance {
             self.status = Some(GasStatus::Mixed);
         } else {
             self.status = Some(GasStatus::Recovered);
+        }
+    }
+
+    /// The first weighing to come, less what came in until then and more what went out.
+    fn work_back(&mut self, later: Vec<OnDay>) {
+        let mut gained = Mass::ZERO;
+        for (_, event) in later {
+            let weighed = match event {
+                Event::Weighed { gross, tare, .. } => Some(gross - tare),
+                Event::Moved { movement, tare } => {
+                    gained += movement.kind.gain();
+                    movement.gross_after.map(|gross| gross - tare)
+                }
+                Event::Told(_) | Event::Empty => None,
+            };
+            if let Some(weighed) = weighed {
+                // More that came in than was there later: history does not tell all.
+                let content = Some(weighed - gained).filter(|content| !content.is_negative());
+                self.content = content.map_or(Content::NotWeighed, Content::Known);
+                self.worked_back = content.is_some();
+                return;
+            }
         }
     }
 }
@@ -230,8 +360,8 @@ pub fn appliance_totals<'a>(lines: impl IntoIterator<Item = &'a Line>, from: Nai
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::ledger::{CylinderKind, Versions};
-    use crate::quantity::{MassUnit, Weighing};
+    use crate::ledger::{CylinderKind, Dated, Versions};
+    use crate::quantity::MassUnit;
     use uuid::Uuid;
 
     fn kg(text: &str) -> Mass {
@@ -262,6 +392,7 @@ mod tests {
             appliance: ApplianceId(Uuid::from_u128(position.unsigned_abs().into())),
             entry: EntryId(Uuid::from_u128(7)),
             at: Moment { date: day(date), minute: None },
+            instant: None,
             position,
             kind,
             gross_after: gross_after.map(kg),
@@ -318,6 +449,113 @@ mod tests {
         let moved = [movement(1, "2026-03-01", MovementKind::Into(kg("3")), None)];
         let balance = cylinder_balance(&emptied, &moved, day("2026-03-01"), &r22);
         assert_eq!((balance.gas.as_deref(), balance.status), (Some("R-22"), Some(GasStatus::Recovered)));
+    }
+
+    fn read_at(date: &str, time: &str, after: Position) -> ReadAt {
+        let instant: DateTime<Utc> = format!("{date}T{time}:00Z").parse().unwrap();
+        let minute = u16::try_from(chrono::Timelike::num_seconds_from_midnight(&instant.time()) / 60).unwrap();
+        ReadAt { at: Moment { date: day(date), minute: Some(minute) }, instant, after }
+    }
+
+    /// The same at a time of the day in UTC.
+    fn timed(time: &str, movement: Movement) -> Movement {
+        let mark = read_at(&movement.at.date.to_string(), time, 0);
+        Movement { at: mark.at, instant: Some(mark.instant), ..movement }
+    }
+
+    /// The register came with its history: the gross was read on the day of import.
+    #[test]
+    fn history_is_in_the_weighing_that_came_after_it() {
+        let mut imported = facts(Some("R-22"), Some(GasStatus::Virgin), Some("20"));
+        imported.weighed = Some(read_at("2026-03-10", "10:00", 0));
+        let imported = cylinder(imported);
+        let moved = [
+            movement(1, "2025-06-01", MovementKind::Out(kg("2")), None),
+            movement(2, "2026-03-10", MovementKind::Out(kg("1")), None),
+            timed("11:00", movement(3, "2026-03-10", MovementKind::Out(kg("0.5")), None)),
+        ];
+        let on = |date| cylinder_balance(&imported, &moved, day(date), &r22);
+        assert_eq!((on("2026-03-10").content, on("2026-03-10").worked_back), (Content::Known(kg("9.5")), false));
+        assert_eq!((on("2026-03-09").content, on("2026-03-09").worked_back), (Content::Known(kg("11")), true));
+        assert_eq!(on("2025-05-31").content, Content::Known(kg("13")));
+        assert_eq!(on("2026-03-09").last_gross, None);
+    }
+
+    #[test]
+    fn what_cannot_have_been_in_it_is_not_worked_back() {
+        let mut weighed = facts(Some("R-22"), Some(GasStatus::Recovered), Some("11"));
+        weighed.weighed = Some(read_at("2026-03-10", "10:00", 0));
+        let moved = [movement(1, "2026-03-01", MovementKind::Into(kg("3")), None)];
+        assert_eq!(cylinder_balance(&cylinder(weighed), &moved, day("2026-02-28"), &r22).content, Content::NotWeighed);
+    }
+
+    #[test]
+    fn a_weighing_stands_between_the_transfers_of_its_day() {
+        let mut weighed = cylinder(facts(Some("R-22"), Some(GasStatus::Virgin), Some("20")));
+        let mut again = facts(Some("R-22"), Some(GasStatus::Virgin), Some("18.2"));
+        again.weighed = Some(read_at("2026-03-01", "12:00", 1));
+        let again = Dated { from: Some(day("2026-03-01")), reason: None, facts: again };
+        weighed.versions = Versions::new([weighed.versions.all().to_vec(), vec![again]].concat()).unwrap();
+        let moved = [
+            timed("10:00", movement(1, "2026-03-01", MovementKind::Out(kg("2")), None)),
+            timed("15:00", movement(2, "2026-03-01", MovementKind::Out(kg("1")), None)),
+            // Written down in the evening, done before the weighing.
+            timed("11:00", movement(3, "2026-03-01", MovementKind::Into(kg("0.2")), None)),
+        ];
+        assert_eq!(cylinder_balance(&weighed, &moved, day("2026-03-01"), &r22).content, Content::Known(kg("7.2")));
+        // In one minute, what was written first was first.
+        let same_minute = [timed("12:00", movement(1, "2026-03-01", MovementKind::Out(kg("2")), None))];
+        assert_eq!(cylinder_balance(&weighed, &same_minute, day("2026-03-01"), &r22).content, Content::Known(kg("8.2")));
+        let next = [timed("12:00", movement(2, "2026-03-01", MovementKind::Out(kg("2")), None))];
+        assert_eq!(cylinder_balance(&weighed, &next, day("2026-03-01"), &r22).content, Content::Known(kg("6.2")));
+    }
+
+    /// The same figure read again is a weighing of its own.
+    #[test]
+    fn the_same_gross_read_anew_settles_too() {
+        let mut refilled = cylinder(facts(Some("R-22"), Some(GasStatus::Virgin), Some("20")));
+        let mut again = facts(Some("R-22"), Some(GasStatus::Virgin), Some("20"));
+        again.weighed = Some(read_at("2026-03-05", "12:00", 1));
+        let again = Dated { from: Some(day("2026-03-05")), reason: None, facts: again };
+        refilled.versions = Versions::new([refilled.versions.all().to_vec(), vec![again]].concat()).unwrap();
+        let moved = [movement(1, "2026-03-01", MovementKind::Out(kg("9")), None)];
+        assert_eq!(cylinder_balance(&refilled, &moved, day("2026-03-05"), &r22).content, Content::Known(kg("10")));
+    }
+
+    /// The gross read at the end of a transfer belongs to its own time, not to when it was written down.
+    #[test]
+    fn transfers_of_a_day_stand_in_order_of_time() {
+        let virgin = cylinder(facts(Some("R-22"), Some(GasStatus::Virgin), Some("20")));
+        let moved = [
+            timed("15:00", movement(1, "2026-03-01", MovementKind::Out(kg("2")), Some("16"))),
+            timed("09:00", movement(2, "2026-03-01", MovementKind::Out(kg("2")), Some("18"))),
+        ];
+        assert_eq!(cylinder_balance(&virgin, &moved, day("2026-03-01"), &r22).content, Content::Known(kg("6")));
+    }
+
+    #[test]
+    fn a_weighing_alone_unmakes_no_mix() {
+        let mut weighed = facts(Some("R-410A"), Some(GasStatus::Recovered), Some("15"));
+        weighed.weighed = Some(read_at("2026-03-05", "12:00", 2));
+        let moved = [movement(1, "2026-03-01", MovementKind::Into(kg("3")), None)];
+        let balance = cylinder_balance(&cylinder(weighed), &moved, day("2026-03-05"), &r22);
+        assert_eq!((balance.status, balance.content), (Some(GasStatus::Mixed), Content::Known(kg("5"))));
+    }
+
+    #[test]
+    fn the_heel_is_what_was_in_it_when_filling_began() {
+        let heel = |moved: &[Movement], date| {
+            let known = facts(Some("R-22"), Some(GasStatus::Recovered), Some("14"));
+            cylinder_balance(&cylinder(known), moved, day(date), &r22).heel
+        };
+        let moved = [
+            movement(1, "2026-03-01", MovementKind::Out(kg("3.5")), None),
+            movement(2, "2026-03-02", MovementKind::Into(kg("2")), None),
+            movement(3, "2026-03-03", MovementKind::Into(kg("2")), None),
+            movement(4, "2026-03-04", MovementKind::Out(kg("4.3")), None),
+        ];
+        assert_eq!((heel(&moved, "2026-03-01"), heel(&moved, "2026-03-03")), (None, Some(kg("0.5"))));
+        assert_eq!(heel(&moved, "2026-03-04"), Some(kg("0.2")));
     }
 
     #[test]

@@ -15,7 +15,8 @@ pub use balance::{
 pub use entry::{Act, CautionSeen, Detail, Entry, LeakPlace, Line, Moment, Position, Reading, Transfer, WeighingMode, by_appliance};
 pub use leaks::{OpenLeak, open_leaks};
 pub use register::{
-    Appliance, ApplianceFacts, Company, Cylinder, CylinderFacts, Dated, Instrument, InstrumentKind, Person, Site, SiteFacts, Versions,
+    Appliance, ApplianceFacts, Company, Cylinder, CylinderFacts, Dated, Instrument, InstrumentKind, Person, ReadAt, Site, SiteFacts,
+    Versions,
 };
 pub use registers::Registers;
 pub use visit::{Closing, Counterpart, Ink, Signature, Visit, VisitState};

@@ -2,10 +2,11 @@
 //! Each keeps every version with its first day; nothing is overwritten.
 
 use super::{
-    ApplianceId, Category, ChargeMethod, CylinderId, CylinderKind, Equipment, GasStatus, InstrumentId, PersonId, RateMethod, SiteId,
+    ApplianceId, Category, ChargeMethod, CylinderId, CylinderKind, Equipment, GasStatus, InstrumentId, Moment, PersonId, Position,
+    RateMethod, SiteId,
 };
 use crate::quantity::{Mass, Weighing};
-use chrono::NaiveDate;
+use chrono::{DateTime, NaiveDate, Utc};
 use serde::{Deserialize, Serialize};
 
 /// One version of a register line.
@@ -190,6 +191,18 @@ pub struct Cylinder {
     pub versions: Versions<CylinderFacts>,
 }
 
+/// When something was read off a cylinder, between the movements of its gas:
+/// what moved before is in the reading, what moved after is not.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
+pub struct ReadAt {
+    /// On the clock of the device.
+    pub at: Moment,
+    /// The same to the minute, for sites on another clock.
+    pub instant: DateTime<Utc>,
+    /// The last entry that was written by then.
+    pub after: Position,
+}
+
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
 pub struct CylinderFacts {
     pub kind: CylinderKind,
@@ -198,9 +211,15 @@ pub struct CylinderFacts {
     /// Empty cylinders may hold none yet.
     pub refrigerant: Option<String>,
     pub gas_status: Option<GasStatus>,
-    /// The weighing on the day it came into the store.
+    /// When gas and status were last said to be so; `None`: from the version's first day.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub gas_told: Option<ReadAt>,
+    /// The last weighing that was not part of an entry.
     pub gross: Option<Mass>,
     pub gross_written: Option<Weighing>,
+    /// When that was; `None`: as the version's first day began.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub weighed: Option<ReadAt>,
     /// Water capacity in litres, exact decimal as written or converted (1 kg of water = 1 l).
     pub water_capacity_l: Option<String>,
     /// Stamped maximum: net mass of gas.
@@ -229,8 +248,10 @@ impl CylinderFacts {
             tare_written,
             refrigerant: None,
             gas_status: None,
+            gas_told: None,
             gross: None,
             gross_written: None,
+            weighed: None,
             water_capacity_l: None,
             stamped_maximum: None,
             service_pressure_psig: None,

@@ -8,7 +8,7 @@ mod weighing;
 
 pub use cylinder_limit::{
     Cylinder, CylinderLaw, CylinderLimit, Limit, LimitKind, Missing, Rating, cylinder_limit, default_oil_factor, eighty_percent,
-    oil_factor_is_sound,
+    is_near_critical, oil_factor_is_sound, room_for_vapour,
 };
 pub use cylinder_pressure::{PressureCheck, PressureVerdict, pressure_check};
 pub use leak::{Leak, LeakUnit};

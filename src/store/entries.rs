@@ -7,6 +7,8 @@ use crate::ledger::{
     WeighingMode,
 };
 use crate::quantity::Mass;
+use chrono::{DateTime, NaiveDate, TimeZone, Utc};
+use chrono_tz::Tz;
 use rusqlite::types::{FromSqlError, ToSql};
 use rusqlite::{Connection, Row, params};
 use std::collections::HashSet;
@@ -215,7 +217,7 @@ fn gross_after(act: &Act, detail: &Detail) -> Result<Option<Mass>, StoreError> {
 
 fn movements_where(condition: &str) -> String {
     format!(
-        "SELECT cylinder, appliance, id, local_date, minute, position, act, mass, gross_after, division FROM entries \
+        "SELECT cylinder, appliance, id, local_date, minute, position, act, mass, gross_after, division, time_zone FROM entries \
          WHERE {condition} AND act IN ('charge', 'recover', 'recycle') \
          AND NOT EXISTS (SELECT 1 FROM entries s WHERE s.strikes = entries.id) ORDER BY position"
     )
@@ -223,8 +225,10 @@ fn movements_where(condition: &str) -> String {
 
 fn read_movements(mut rows: rusqlite::Rows<'_>) -> rusqlite::Result<Vec<Movement>> {
     let mut movements = Vec::new();
+    let mut zones = Zones::default();
     while let Some(row) = rows.next()? {
         let Day(date) = row.get(3)?;
+        let minute: Option<u16> = row.get(4)?;
         let kind = match row.get_ref(6)?.as_str()? {
             "charge" => MovementKind::Out(row.get(7)?),
             "recover" => MovementKind::Into(row.get(7)?),
@@ -234,7 +238,8 @@ fn read_movements(mut rows: rusqlite::Rows<'_>) -> rusqlite::Result<Vec<Movement
             cylinder: row.get(0)?,
             appliance: row.get(1)?,
             entry: row.get(2)?,
-            at: Moment { date, minute: row.get(4)? },
+            at: Moment { date, minute },
+            instant: minute.and_then(|minute| zones.instant(row.get_ref(10).ok()?.as_str().ok()?, date, minute)),
             position: row.get(5)?,
             kind,
             gross_after: row.get(8)?,
@@ -242,6 +247,25 @@ fn read_movements(mut rows: rusqlite::Rows<'_>) -> rusqlite::Result<Vec<Movement
         });
     }
     Ok(movements)
+}
+
+/// Sites' clocks as instants. Movements of one zone stand together, so the last zone is kept.
+#[derive(Default)]
+struct Zones {
+    last: Option<(String, Tz)>,
+}
+
+impl Zones {
+    /// `None` for a zone that nobody knows. Of an hour that comes twice the
+    /// later one: a movement is rather counted than taken as weighed already.
+    fn instant(&mut self, zone: &str, date: NaiveDate, minute: u16) -> Option<DateTime<Utc>> {
+        if self.last.as_ref().is_none_or(|(last, _)| last != zone) {
+            self.last = Some((zone.to_owned(), zone.parse().ok()?));
+        }
+        let (_, tz) = self.last.as_ref()?;
+        let local = date.and_hms_opt(u32::from(minute / 60), u32::from(minute % 60), 0)?;
+        tz.from_local_datetime(&local).latest().map(|instant| instant.with_timezone(&Utc))
+    }
 }
 
 fn struck(c: &Connection) -> rusqlite::Result<HashSet<EntryId>> {

@@ -267,16 +267,55 @@ mod tests {
 
         let newer = [MIGRATIONS, &[LATER]].concat();
         let store = Store::open_with(&path, OpenMode::MustExist, &newer).unwrap();
-        assert_eq!(store.read(version).unwrap(), 2);
+        let schema = i64::try_from(MIGRATIONS.len()).unwrap();
+        assert_eq!(store.read(version).unwrap(), schema + 1);
         assert_eq!(store.registers().unwrap().sites, [samples::site()]);
         drop(store);
-        let copy = Store::open(&folder.path().join("a.store.schema-1"), OpenMode::MustExist).unwrap();
+        let copy = Store::open(&folder.path().join(format!("a.store.schema-{schema}")), OpenMode::MustExist).unwrap();
         assert_eq!(copy.registers().unwrap().sites, [samples::site()]);
 
         // And back: what is newer than the program is left alone, byte by byte.
         let before = std::fs::read(&path).unwrap();
-        assert!(matches!(Store::open(&path, OpenMode::Create), Err(StoreError::Newer { found: 2, known: 1, .. })));
+        let refused = Store::open(&path, OpenMode::Create);
+        assert!(matches!(refused, Err(StoreError::Newer { found, known, .. }) if (found, known) == (schema + 1, schema)));
         assert_eq!(std::fs::read(&path).unwrap(), before);
+    }
+
+    /// One store of each schema that was ever released, opened by this program.
+    #[test]
+    fn a_store_of_every_schema_opens() {
+        for (schema, bytes) in [(1, include_bytes!("../../tests/fixtures/schema-1.store").as_slice())] {
+            let folder = folder();
+            let path = folder.path().join("a.store");
+            std::fs::write(&path, bytes).unwrap();
+            let store = Store::open(&path, OpenMode::MustExist).unwrap();
+            assert_eq!(store.read(version).unwrap(), i64::try_from(MIGRATIONS.len()).unwrap(), "schema {schema}");
+            assert_eq!(store.lines().unwrap().len(), 5);
+            assert!(store.check().unwrap().sound());
+            assert_eq!(std::fs::read(folder.path().join(format!("a.store.schema-{schema}"))).unwrap()[..16], bytes[..16]);
+        }
+    }
+
+    /// A store of schema 1 does not say when a gross was read: it was when its line was written.
+    #[test]
+    fn weighings_of_schema_1_count_from_when_they_were_written() {
+        let folder = folder();
+        let path = folder.path().join("a.store");
+        std::fs::write(&path, include_bytes!("../../tests/fixtures/schema-1.store")).unwrap();
+        let store = Store::open(&path, OpenMode::MustExist).unwrap();
+        let registers = store.registers().unwrap();
+        let content = |name: &str, on: &str| {
+            let cylinder = registers.cylinder_named(name).unwrap();
+            let gas = |_: &crate::ledger::Movement| Some("R-22".to_owned());
+            let balance = crate::ledger::cylinder_balance(cylinder, &store.movements().unwrap(), on.parse().unwrap(), &gas);
+            balance.content.mass().map(|mass| mass.in_unit(crate::quantity::MassUnit::Pound).to_string())
+        };
+        // 60 lb gross with 28 lb of tare, and 15 lb charged before that was read.
+        assert_eq!(content("S-1", "2026-12-01").as_deref(), Some("32"));
+        assert_eq!(content("S-1", "2025-02-28").as_deref(), Some("47"));
+        // Weighed anew on the day, after 2 lb were charged.
+        assert_eq!(content("S-2", "2026-12-01").as_deref(), Some("19"));
+        assert_eq!(content("V-1", "2026-12-01").as_deref(), Some("4"));
     }
 
     #[test]
@@ -287,7 +326,7 @@ mod tests {
         let failing = [MIGRATIONS, &[LATER, "CREATE TABLE later (again INTEGER) STRICT;"]].concat();
         assert!(Store::open_with(&path, OpenMode::MustExist, &failing).is_err());
         let store = Store::open(&path, OpenMode::MustExist).unwrap();
-        assert_eq!(store.read(version).unwrap(), 1);
+        assert_eq!(store.read(version).unwrap(), i64::try_from(MIGRATIONS.len()).unwrap());
         let tables: i64 =
             store.read(|c| c.query_row("SELECT count(*) FROM sqlite_schema WHERE name = 'later'", [], |row| row.get(0))).unwrap();
         assert_eq!(tables, 0);

@@ -147,6 +147,8 @@ fn cylinders(
     bad: &mut Vec<BadLine>,
     taken: &mut Imported,
 ) -> Result<(), ImportError> {
+    // A gross weight is the weighing on the day of import.
+    let weighed = app.reading_now(tx)?;
     let mut groups: BTreeMap<&str, Vec<Line<'_, _>>> = BTreeMap::new();
     for row in parts.cylinders.iter().filter(|row| !row.name.is_empty()) {
         groups.entry(&row.name).or_default().push(Line {
@@ -159,7 +161,10 @@ fn cylinders(
     }
     for (name, lines) in groups {
         let cylinder = known.cylinder_named(name);
-        let fresh = new_versions(cylinder.map(|cylinder| &cylinder.versions), lines, bad);
+        let mut fresh = new_versions(cylinder.map(|cylinder| &cylinder.versions), lines, bad);
+        for version in &mut fresh {
+            version.facts.weighed = version.facts.gross.map(|_| weighed);
+        }
         if let (None, Some(versions)) = (cylinder, Versions::new(fresh)) {
             tx.add_cylinder(&Cylinder { id: CylinderId(app.new_id()), name: name.to_owned(), versions })?;
             taken.cylinders += 1;

@@ -98,8 +98,15 @@ fn missing_sentence(missing: Missing, gas: &Gas) -> String {
             format!("The 80 % rule does not hold for {name}: its critical temperature of {critical} \u{b0}C is too near. Go by the stamp.")
         }
         Missing::Density(at) => format!("The catalogue has no liquid density of {name} at {at} \u{b0}C, so that limit is missing."),
+        Missing::TestPressure => {
+            format!("P200 names the filling ratio of {name} by the cylinder's test pressure: give it, and let ADR count.")
+        }
         Missing::WaterCapacity => "Without the water capacity only the stamp counts.".to_owned(),
     }
+}
+
+fn verdict(suffices: bool) -> &'static str {
+    if suffices { "The rating suffices." } else { "THE RATING DOES NOT SUFFICE: do not fill this cylinder with this gas." }
 }
 
 fn rating_sentence(rating: &Rating, gas: &Gas) -> String {
@@ -111,7 +118,16 @@ fn rating_sentence(rating: &Rating, gas: &Gas) -> String {
             rounded_text(pressure.bar(), 2),
             rounded_text(allowed.psi(), 1),
             rounded_text(allowed.bar(), 2),
-            if *suffices { "The rating suffices." } else { "THE RATING DOES NOT SUFFICE: do not fill this cylinder with this gas." }
+            verdict(*suffices),
+        ),
+        Rating::Named { needed, given, suffices, .. } => format!(
+            "For {} a table names {} psig ({} barg); this cylinder has {} psig ({} barg). {}",
+            gas.designation(),
+            rounded_text(needed.psi(), 0),
+            rounded_text(needed.bar(), 1),
+            rounded_text(given.psi(), 0),
+            rounded_text(given.bar(), 1),
+            verdict(*suffices),
         ),
         Rating::NotGiven => "Pressure rating not checked: give the service pressure or the test pressure.".to_owned(),
         Rating::NoPressure => format!(
@@ -151,7 +167,7 @@ fn table(args: &FillArgs, gas: &Gas, cylinder: &Cylinder, limit: &CylinderLimit)
     let mut rows = Vec::new();
     match &limit.binding {
         Some(binding) => rows.push(row(["net", &format!("{} kg", kilograms(binding.net)), &format!("{} lb", pounds(binding.net))])),
-        None => rows.push(row(["net", "no limit can be worked out: go by the stamp"])),
+        None => rows.push(row(["net", "no limit can be worked out: do not fill this cylinder with this gas"])),
     }
     if let (Some(gross), Some(tare)) = (limit.gross, args.tare) {
         rows.push(row(["tare", &format!("{} kg", kilograms(tare)), &format!("{} lb", pounds(tare))]));
@@ -166,7 +182,7 @@ fn table(args: &FillArgs, gas: &Gas, cylinder: &Cylinder, limit: &CylinderLimit)
         sheet.note(&missing_sentence(*missing, gas));
     }
     sheet.note(&rating_sentence(&limit.rating, gas));
-    if let Rating::Judged { basis, .. } = limit.rating {
+    if let Rating::Judged { basis, .. } | Rating::Named { basis, .. } = limit.rating {
         sheet.cite(basis);
     }
     sheet.cite(&format!("densities and pressures: {}; the lower density where sources differ", gas.fluid_source()));
@@ -203,6 +219,15 @@ fn json(args: &FillArgs, gas: &Gas, cylinder: &Cylinder, limit: &CylinderLimit) 
             "pressure_psig": rounded_text(pressure.psi(), 1),
             "allowed_pa_gauge": exact(allowed.pascal()),
             "allowed_psig": rounded_text(allowed.psi(), 1),
+            "source": basis,
+        }),
+        Rating::Named { needed, given, suffices, basis } => json!({
+            "checked": true,
+            "suffices": suffices,
+            "needed_pa_gauge": exact(needed.pascal()),
+            "needed_psig": rounded_text(needed.psi(), 1),
+            "given_pa_gauge": exact(given.pascal()),
+            "given_psig": rounded_text(given.psi(), 1),
             "source": basis,
         }),
         other => json!({ "checked": false, "suffices": null, "remark": rating_sentence(other, gas) }),

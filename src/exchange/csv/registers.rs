@@ -144,8 +144,10 @@ pub(super) fn cylinder_row(fields: &mut Fields) -> CylinderRow {
             tare_written,
             refrigerant,
             gas_status,
+            gas_told: None,
             gross: gross.as_ref().map(|(mass, _)| *mass),
             gross_written: gross.map(|(_, written)| written),
+            weighed: None,
             water_capacity_l: water_capacity(fields),
             stamped_maximum: fields.positive_mass("stamped_maximum", "unit").map(|(mass, _)| mass),
             service_pressure_psig: fields

@@ -1,7 +1,7 @@
 //! The page of one cylinder: what is in it, every limit at its own mark, its
 //! facts, each movement of gas.
 
-use super::cylinders::{limit_of, rounded, share, water_mass};
+use super::cylinders::{rounded, share, water_mass};
 use super::row::Row;
 use super::{Office, units::Units};
 use crate::app::{App, AppError, CylinderStanding};
@@ -55,9 +55,11 @@ fn refused(cylinder: &CylinderStanding, limit: Option<&CylinderLimit>, today: ch
     if cylinder.balance.is_mixed() {
         return say::refuse_mixed();
     }
-    if let Some(Rating::Judged { pressure, allowed, suffices: false, .. }) = limit.map(|limit| &limit.rating) {
-        let psig = |pressure: crate::quantity::GaugePressure| format!("{} psig", rounded_text(pressure.psi(), 0));
-        return say::refuse_rating(&psig(*pressure), &psig(*allowed));
+    let psig = |pressure: crate::quantity::GaugePressure| format!("{} psig", rounded_text(pressure.psi(), 0));
+    match limit.map(|limit| &limit.rating) {
+        Some(Rating::Judged { pressure, allowed, suffices: false, .. }) => return say::refuse_rating(&psig(*pressure), &psig(*allowed)),
+        Some(Rating::Named { needed, given, suffices: false, .. }) => return say::refuse_named_rating(&psig(*needed), &psig(*given)),
+        _ => {}
     }
     let full = limit.and_then(|limit| limit.binding.as_ref()).zip(cylinder.balance.content.mass());
     if full.is_some_and(|(limit, content)| content >= limit.net) { say::refuse_full() } else { String::new() }
@@ -67,7 +69,7 @@ impl Office {
     pub(super) fn read_cylinder(&self, app: &App, id: CylinderId) -> Result<Option<CylinderPage>, AppError> {
         let Some(cylinder) = self.cylinders.all.iter().find(|cylinder| cylinder.cylinder.id == id) else { return Ok(None) };
         let facts = &cylinder.facts;
-        let limit = limit_of(cylinder, self.cylinder_law());
+        let limit = self.limit_of(cylinder);
         let content = cylinder.balance.content.mass();
         let binding = limit.as_ref().and_then(|limit| limit.binding.as_ref());
         let unit = self.units.mass;
@@ -85,7 +87,7 @@ impl Office {
             content: figure(content),
             room: figure(room),
             unit: format::unit(unit).to_owned(),
-            mass: water_mass(cylinder).map(|whole| bar(content, limit.as_ref(), whole, &self.units)),
+            mass: water_mass(cylinder).map(|whole| bar(cylinder, limit.as_ref(), whole, &self.units)),
             limits: others
                 .map(|one| {
                     let counts = if one.counts { "" } else { ", does not count here" };
@@ -157,16 +159,17 @@ impl Office {
     }
 }
 
-fn bar(content: Option<Mass>, limit: Option<&CylinderLimit>, whole: f64, units: &Units) -> MassBar {
+fn bar(cylinder: &CylinderStanding, limit: Option<&CylinderLimit>, whole: f64, units: &Units) -> MassBar {
+    let content = cylinder.balance.content.mass();
     let binding = limit.and_then(|limit| limit.binding.as_ref());
     let limits = limit.iter().flat_map(|limit| &limit.limits).filter(|one| one.counts);
     MassBar {
-        heel: 0.0,
+        heel: content.and(cylinder.balance.heel).map_or(0.0, |heel| share(heel, whole)),
         content: content.map_or(0.0, |content| share(content, whole)),
         limits: limits
             .map(|one| MassLimit { name: short(one.kind).to_owned(), at: share(one.net, whole), binding: Some(one) == binding })
             .collect(),
         words: content.map_or_else(say::not_weighed, |content| rounded(content, units.mass)),
-        binding: binding.map(|one| say::limit(one.kind.name(), &rounded(one.net, units.mass))).unwrap_or_default(),
+        binding: binding.map(|one| say::limit(&one.name(), &rounded(one.net, units.mass))).unwrap_or_default(),
     }
 }

@@ -7,7 +7,7 @@ use super::plant::FormMsg;
 use super::{Form, Go, Office};
 use crate::app::App;
 use crate::ledger::{CylinderFacts, CylinderId, CylinderKind, GasStatus};
-use crate::quantity::{GaugePressure, MassUnit, QuantityError, Volume, Weighing, decimal_text};
+use crate::quantity::{GaugePressure, MassUnit, QuantityError, Volume, decimal_text};
 use crate::view::shown::{Choice, Ready};
 use crate::view::{parse, words};
 use words::office as say;
@@ -87,6 +87,13 @@ impl Office {
             return Vec::new();
         };
         let name = form.trimmed("identification");
+        let known = changed.and_then(|id| self.cylinders.all.iter().find(|known| known.cylinder.id == id));
+        let facts = match known.map(|known| known.cylinder.versions.latest()) {
+            Some(last) if facts.gross.is_none() => {
+                CylinderFacts { gross: last.gross, gross_written: last.gross_written.clone(), weighed: last.weighed, ..facts }
+            }
+            _ => facts,
+        };
         let done = match changed {
             Some(id) => app.change_cylinder(id, facts, self.today, "").map(|()| id),
             None => app.add_cylinder(&name, facts),
@@ -116,7 +123,8 @@ fn filled(name: &str, facts: &CylinderFacts) -> Form {
         ("gas", facts.refrigerant.clone().unwrap_or_default()),
         ("status", facts.gas_status.map_or("", |status| status.name()).to_owned()),
         ("tare", facts.tare_written.text()),
-        ("gross", facts.gross_written.as_ref().map(Weighing::text).unwrap_or_default()),
+        // Only what is read now is typed; the last gross stands on the cylinder's page.
+        ("gross", String::new()),
         ("water-capacity", facts.water_capacity_l.clone().map(|litres| litres + " l").unwrap_or_default()),
         ("requalify-by", facts.requalify_by.map(|day| day.to_string()).unwrap_or_default()),
         ("location", facts.location.clone()),

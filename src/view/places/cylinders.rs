@@ -5,11 +5,10 @@ use super::plant::{FormMsg, fits};
 use super::rates::number;
 use super::row::{Bar, Row};
 use super::{Form, Go, Office, Place, id};
-use crate::app::{App, CylinderStanding, measured_under};
-use crate::gas;
-use crate::ledger::{CylinderId, CylinderKind, GasStatus};
-use crate::measure::{self, CylinderLaw, CylinderLimit, cylinder_limit};
-use crate::quantity::{Mass, MassUnit, Ratio, parse_decimal};
+use crate::app::{App, CylinderStanding, LimitRules};
+use crate::ledger::{CylinderId, CylinderKind};
+use crate::measure::CylinderLimit;
+use crate::quantity::{Mass, MassUnit, parse_decimal};
 use crate::view::{format, words};
 use std::collections::BTreeMap;
 use words::office as say;
@@ -30,6 +29,8 @@ pub struct State {
     pub changed: Option<CylinderId>,
     pub form: Form,
     pub all: Vec<CylinderStanding>,
+    /// `None` until the store was read.
+    pub rules: Option<LimitRules>,
     pub cylinder: Option<CylinderPage>,
 }
 
@@ -64,14 +65,6 @@ pub struct Page {
     pub chosen: String,
 }
 
-/// What a cylinder may take of its gas; `None` while no gas is known in it.
-pub fn limit_of(cylinder: &CylinderStanding, law: CylinderLaw) -> Option<CylinderLimit> {
-    let gas = gas::find(cylinder.balance.gas.as_deref()?)?;
-    let recovered = matches!(cylinder.balance.status, Some(GasStatus::Recovered | GasStatus::Mixed));
-    let oil = if recovered { measure::default_oil_factor() } else { Ratio::from_integer(1) };
-    Some(cylinder_limit(gas, &measured_under(law, cylinder), oil))
-}
-
 /// The mass of water the cylinder holds: where its bar ends.
 pub fn water_mass(cylinder: &CylinderStanding) -> Option<f64> {
     let litres = cylinder.facts.water_capacity_l.as_ref().and_then(|text| parse_decimal(text).ok())?;
@@ -93,16 +86,16 @@ pub fn rounded(mass: Mass, unit: MassUnit) -> String {
 }
 
 impl Office {
-    /// The law that cylinders are filled under here: of the United States where a site is under it.
-    pub(super) fn cylinder_law(&self) -> CylinderLaw {
-        let sites = self.overview.iter().flat_map(|overview| &overview.registers.sites);
-        let united_states = sites.flat_map(|site| &site.versions.latest().rulebooks).any(|id| id.starts_with("us-"));
-        if united_states { CylinderLaw::UnitedStates } else { CylinderLaw::Adr }
+    /// What a cylinder may take of its gas, by the laws of all sites; `None` while no gas is known in it.
+    pub(super) fn limit_of(&self, cylinder: &CylinderStanding) -> Option<CylinderLimit> {
+        self.cylinders.rules.and_then(|rules| rules.limit_of_content(cylinder))
     }
 
     pub(super) fn refresh_cylinders(&mut self, app: &App) {
-        match app.cylinders(self.today) {
-            Ok(all) => self.cylinders.all = all,
+        let sites = self.overview.iter().flat_map(|overview| &overview.registers.sites);
+        let rulebooks: Vec<String> = sites.flat_map(|site| &site.versions.latest().rulebooks).cloned().collect();
+        match app.cylinders(self.today).and_then(|all| Ok((all, app.limit_rules(&rulebooks)?))) {
+            Ok((all, rules)) => (self.cylinders.all, self.cylinders.rules) = (all, Some(rules)),
             Err(error) => self.fail(&error),
         }
         if let Pane::Cylinder(cylinder) = self.cylinders.pane {
@@ -184,7 +177,7 @@ impl Office {
         let status = cylinder.balance.status.map_or(facts.kind.name(), |status| status.name());
         let row = Row::new(cylinder.cylinder.id.to_string(), &cylinder.cylinder.name, format::commas([status, &facts.location]));
         let content = cylinder.balance.content.mass();
-        let binding = limit_of(cylinder, self.cylinder_law()).and_then(|limit| limit.binding);
+        let binding = self.limit_of(cylinder).and_then(|limit| limit.binding);
         let aside = if facts.scrapped.is_some() {
             say::scrapped()
         } else if self.is_overdue(cylinder) {

@@ -3,10 +3,10 @@
 
 use super::weighing::{self, Context, WeighingForm};
 use super::{Panel, id, judge};
-use crate::app::{AppError, ApplianceStanding, ChargeInput, CylinderStanding, Kind, NewEntry, Prepared, Refusal, measured};
+use crate::app::{AppError, ApplianceStanding, ChargeInput, CylinderStanding, Kind, NewEntry, Prepared, Refusal};
 use crate::gas::{self, Weighting};
 use crate::ledger::{Act, ApplianceId, ChargePurpose, CylinderId, Entry, EntryId, GasStatus, Line, Position, Reading, WeighingMode};
-use crate::measure::{Direction, cylinder_limit};
+use crate::measure::Direction;
 use crate::quantity::{Mass, Ratio, Weighing};
 use crate::record::glides;
 use crate::rules::weights;
@@ -248,10 +248,8 @@ impl Desk {
         let standing = self.app.appliance_standing(form.appliance, today)?;
         let cylinder = form.weighing.cylinder.map(|id| self.app.cylinder_standing(id, today)).transpose()?;
         let gas = gas::find(&standing.facts.refrigerant);
-        let limit = gas.zip(cylinder.as_ref()).map(|(gas, cylinder)| -> Result<_, AppError> {
-            Ok(cylinder_limit(gas, &measured(&standing, cylinder), self.app.oil_factor()?))
-        });
-        let limit = limit.transpose()?;
+        let rules = self.app.limit_rules(&standing.site_facts.rulebooks)?;
+        let limit = cylinder.as_ref().and_then(|cylinder| rules.limit_of_content(cylinder));
         let attempt = self.attempt_charge(form, &standing);
         let prepared = attempt.as_ref().ok();
         let error = attempt.as_ref().err().map(|(_, sentence)| sentence.clone()).unwrap_or_default();

@@ -1,10 +1,9 @@
 //! Which cylinder: those that fit come first, the others say why not.
 
 use super::{Panel, id};
-use crate::app::{AppError, ApplianceStanding, CylinderStanding, measured};
+use crate::app::{AppError, ApplianceStanding, CylinderStanding};
 use crate::gas;
 use crate::ledger::{CylinderFacts, CylinderId, CylinderKind, GasStatus};
-use crate::measure::cylinder_limit;
 use crate::quantity::MassUnit;
 use crate::view::desk::Desk;
 use crate::view::shown::{Choice, Line, Ready};
@@ -249,7 +248,7 @@ impl Desk {
 
     fn room_words(&self, standing: &ApplianceStanding, cylinder: &CylinderStanding, unit: MassUnit) -> Result<Option<String>, AppError> {
         let Some(gas) = gas::find(&standing.facts.refrigerant) else { return Ok(None) };
-        let limit = cylinder_limit(gas, &measured(standing, cylinder), self.app.oil_factor()?);
+        let limit = self.app.limit_rules(&standing.site_facts.rulebooks)?.limit_of(gas, cylinder, true);
         let room = limit.binding.zip(cylinder.balance.content.mass()).map(|(binding, held)| binding.net - held);
         Ok(room.map(|room| format!("room {}", format::mass(room, unit))))
     }

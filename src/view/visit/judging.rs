@@ -256,7 +256,13 @@ fn round_up(value: f64) -> f64 {
 }
 
 /// A cylinder's bar: from empty to full of water.
-pub fn mass_bar(content: Option<Mass>, capacity: Option<Ratio>, limit: Option<&CylinderLimit>, unit: MassUnit) -> MassBar {
+pub fn mass_bar(
+    content: Option<Mass>,
+    heel: Option<Mass>,
+    capacity: Option<Ratio>,
+    limit: Option<&CylinderLimit>,
+    unit: MassUnit,
+) -> MassBar {
     let kg = |mass: Mass| format::float(mass.kg());
     let binding = limit.and_then(|limit| limit.binding.as_ref());
     // Without a water capacity the bar ends a quarter above what there is to show.
@@ -268,13 +274,13 @@ pub fn mass_bar(content: Option<Mass>, capacity: Option<Ratio>, limit: Option<&C
     let at = |mass: Mass| (kg(mass) / end).clamp(0.0, 1.0) as f32;
     let limits = limit.map_or(&[][..], |limit| &limit.limits).iter().filter(|limit| limit.counts);
     MassBar {
-        heel: 0.0,
+        heel: content.and(heel).map_or(0.0, at),
         content: content.map_or(0.0, at),
         limits: limits
             .map(|limit| MassLimit { name: short(limit.kind).to_owned(), at: at(limit.net), binding: Some(limit) == binding })
             .collect(),
         words: content.map_or_else(words::not_weighed, |content| format::mass(content, unit)),
-        binding: binding.map_or_else(words::no_limit, |binding| words::limit_binds(&format::mass(binding.net, unit), binding.kind.name())),
+        binding: binding.map_or_else(words::no_limit, |binding| words::limit_binds(&format::mass(binding.net, unit), &binding.name())),
     }
 }
 
@@ -301,9 +307,9 @@ mod tests {
 
     #[test]
     fn a_cylinder_without_facts_has_a_bar_all_the_same() {
-        let bar = mass_bar(None, None, None, MassUnit::Kilogram);
+        let bar = mass_bar(None, None, None, None, MassUnit::Kilogram);
         assert_eq!((bar.content, bar.words.as_str()), (0.0, "never weighed"));
-        let half = mass_bar(Some(Mass::from_kg(10)), Some(Ratio::from_integer(20)), None, MassUnit::Kilogram);
+        let half = mass_bar(Some(Mass::from_kg(10)), Some(Mass::from_kg(1)), Some(Ratio::from_integer(20)), None, MassUnit::Kilogram);
         assert_eq!(half.content, 0.5);
     }
 }

@@ -3,10 +3,10 @@
 use super::Panel;
 use super::charge::{refusal, why_not};
 use super::weighing::{self, Context, WeighingForm};
-use crate::app::{AppError, ApplianceStanding, CylinderStanding, NewEntry, Prepared, RecoverInput, measured};
+use crate::app::{AppError, ApplianceStanding, CylinderStanding, NewEntry, Prepared, RecoverInput};
 use crate::gas;
 use crate::ledger::{Act, ApplianceId, RecoveryPurpose};
-use crate::measure::{CylinderLimit, Direction, cylinder_limit};
+use crate::measure::{CylinderLimit, Direction};
 use crate::quantity::Mass;
 use crate::view::desk::Desk;
 use crate::view::shown::{self, Choice, Fact, Ready};
@@ -211,7 +211,7 @@ impl Desk {
         cylinder: Option<&CylinderStanding>,
     ) -> Result<Option<CylinderLimit>, AppError> {
         let Some((gas, cylinder)) = gas::find(&standing.facts.refrigerant).zip(cylinder) else { return Ok(None) };
-        Ok(Some(cylinder_limit(gas, &measured(standing, cylinder), self.app.oil_factor()?)))
+        Ok(Some(self.app.limit_rules(&standing.site_facts.rulebooks)?.limit_of(gas, cylinder, true)))
     }
 
     fn attempt_recovery(&self, form: &Form, standing: &ApplianceStanding) -> Result<Prepared, (&'static str, String)> {
@@ -255,11 +255,7 @@ fn room(form: &Form, cylinder: Option<&CylinderStanding>, limit: Option<&Cylinde
     let name = &cylinder.cylinder.name;
     Room {
         figure: format::mass(left, form.weighing.unit),
-        words: if left.is_negative() {
-            words::room_over(name, binding.kind.name())
-        } else {
-            words::room_left_in(name, binding.kind.name())
-        },
+        words: if left.is_negative() { words::room_over(name, &binding.name()) } else { words::room_left_in(name, &binding.name()) },
         over: left.is_negative(),
     }
 }

@@ -331,7 +331,7 @@ pub struct Context<'a> {
 
 fn bar(cylinder: &CylinderStanding, limit: Option<&CylinderLimit>, unit: MassUnit) -> shown::MassBar {
     let litres = cylinder.facts.water_capacity_l.as_ref().and_then(|text| crate::quantity::parse_decimal(text).ok());
-    mass_bar(cylinder.balance.content.mass(), litres, limit, unit)
+    mass_bar(cylinder.balance.content.mass(), cylinder.balance.heel, litres, limit, unit)
 }
 
 /// The error of what is prepared, with hoses that are not in the register yet.

@@ -388,6 +388,10 @@ pub fn refuse_rating(pressure: &str, allowed: &str) -> String {
     format!("Not rated for this gas: it reaches {pressure}, the cylinder allows {allowed}.")
 }
 
+pub fn refuse_named_rating(needed: &str, given: &str) -> String {
+    format!("Not made for this gas: that takes a cylinder of {needed}, this one is stamped {given}.")
+}
+
 pub fn limit(name: &str, mass: &str) -> String {
     format!("{name}: {mass}")
 }
