@@ -123,6 +123,13 @@ impl App {
     /// and nothing stays.
     fn take(&self, parts: &Parts, sums: &[(String, &str)], mut refused: RefusedImport) -> Result<Imported, ImportError> {
         self.store().write(self.now(), |tx| {
+            for (sha256, file) in sums {
+                // Another program may have been faster.
+                if let Some(before) = tx.import_of(sha256)? {
+                    refused.files.push(BadFile::TakenBefore { file: (*file).to_owned(), day: before.day, taken_as: before.file_name });
+                    return Err(refused.into());
+                }
+            }
             let mut taken = Imported::default();
             let strays = registers::take(tx, self, parts, &mut refused.lines, &mut taken)?;
             people::take(tx, self, &parts.people, &mut refused.lines, &mut taken)?;

@@ -176,7 +176,7 @@ fn faults_of_all_files_are_listed_at_once() {
         &told,
         &[
             "taken.csv was taken in already, on 2026-06-01 as taken.csv; leave it out",
-            "appliances.csv, line 1, column colour: is not a column of a appliances file; known are appliance, site,",
+            "appliances.csv, line 1, column colour: is not a column of an appliances file; known are appliance, site,",
             "appliances.csv, line 2, column category: ",
             "appliances.csv, line 3, column site: there is no site \u{201c}Nowhere\u{201d}; import its line",
             "log.csv, line 2, column unit: ",
@@ -329,6 +329,29 @@ fn what_exceeds_a_charge_or_a_content_is_remarked_on() {
 }
 
 #[test]
+fn tests_without_their_repair_and_cylinders_without_their_line_are_remarked_on() {
+    let told = take(
+        &stocked(),
+        &[(
+            "l.csv",
+            &log("2026-05-01,,R-1,follow-up verification test,,,,,fail,\n2026-05-02,,R-1,initial verification test,,,,,pass,\n\
+                  2026-05-03,,R-1,repair,,,,,,\n2026-05-04,,R-1,follow-up verification test,,,,,pass,\n\
+                  2026-05-05,,R-1,note,,,N-1,,,\n2026-05-05,,R-1,note,,,X-1,,,\n2026-05-06,,R-1,recover,1,lb,X-1,,,\n"),
+        )],
+    );
+    assert_eq!(
+        told,
+        [
+            "line 2: a follow-up verification test without a repair before it",
+            "line 3: an initial verification test without a repair before it",
+            "line 5: this follow-up test does not count: partial, or no initial test passed since the last repair",
+            "line 7: cylinder \u{201c}X-1\u{201d} is not in the register",
+            "line 8: cylinder \u{201c}X-1\u{201d} is not in the register; the mass counts for no cylinder",
+        ]
+    );
+}
+
+#[test]
 fn an_indirect_method_is_no_inspection() {
     let told = take(
         &stocked(),
@@ -338,7 +361,12 @@ fn an_indirect_method_is_no_inspection() {
                   2026-05-03,,R-1,leak inspection,,,,,no leak,electronic detector\n2026-05-04,,R-1,leak inspection,,,,,no leak,\n"),
         )],
     );
-    starts(&told, &["line 2: \u{201c}sight glass\u{201d} is an indirect method: it shows that gas is missing, not where"]);
+    starts(
+        &told,
+        &[
+            "line 2: \u{201c}sight glass\u{201d} is an indirect method: it shows that gas is missing, not where. It is no leak inspection (common practice); it was taken as written",
+        ],
+    );
 }
 
 #[test]

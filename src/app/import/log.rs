@@ -43,6 +43,7 @@ pub(super) fn take<'a>(
     let mut visits: HashMap<(SiteId, NaiveDate), VisitId> = HashMap::new();
     let mut by_appliance: BTreeMap<ApplianceId, OfAppliance> = BTreeMap::new();
     let mut position = tx.last_position()?;
+    let unread = parts.may_miss(Kind::Log);
     for row in &parts.log {
         let found = names.appliance(row).unwrap_or_else(|line| {
             bad.push(line);
@@ -55,6 +56,7 @@ pub(super) fn take<'a>(
         }
         let Some((appliance, site)) = found else { continue };
         let of_appliance = by_appliance.entry(appliance).or_default();
+        of_appliance.has_gaps |= unread;
         if !row.placed {
             of_appliance.has_gaps = true;
             continue;

@@ -37,9 +37,9 @@ pub(super) fn look(tx: &Writing<'_>, app: &App, parts: &Parts, entries: &[Taken]
         forbidden(site, &history, &rows, &mut cylinders, &mut taken.remarks);
     }
     for Taken { row, entry, .. } in entries {
-        if !row.cylinder.is_empty() && entry.line.act.cylinder().is_none() {
-            let message = format!("cylinder \u{201c}{}\u{201d} is not in the register; the mass counts for no cylinder", row.cylinder);
-            taken.remarks.push(remark(row, message));
+        if !row.cylinder.is_empty() && !cylinders.names.contains(row.cylinder.as_str()) {
+            let so = if entry.line.act.transfer().is_some() { "; the mass counts for no cylinder" } else { "" };
+            taken.remarks.push(remark(row, format!("cylinder \u{201c}{}\u{201d} is not in the register{so}", row.cylinder)));
         }
     }
     unchecked_detection_systems(tx, app, parts, &registers, &mut taken.remarks)?;
@@ -76,6 +76,9 @@ fn odd(history: &History, rows: &HashMap<EntryId, &LogRow>, remarks: &mut Vec<Re
             Act::Test { kind: TestKind::InitialVerification, .. } if history.repair_before(index).is_none() => {
                 say("an initial verification test without a repair before it".to_owned());
             }
+            Act::Test { kind: TestKind::FollowUpVerification, .. } if history.repair_before(index).is_none() => {
+                say("a follow-up verification test without a repair before it".to_owned());
+            }
             Act::Test { kind: TestKind::FollowUpVerification, result: Some(TestResult::Pass), .. }
                 if !history.is_follow_up_that_counts(index) =>
             {
@@ -83,7 +86,7 @@ fn odd(history: &History, rows: &HashMap<EntryId, &LogRow>, remarks: &mut Vec<Re
             }
             Act::Test { kind, .. } => {
                 if let Some(refusal) = refusals::of_inspection(*kind, &row.method) {
-                    say(told(&refusal));
+                    say(format!("{}; it was taken as written", told(&refusal)));
                 }
             }
             _ => {}
@@ -177,11 +180,12 @@ fn at<'a>(
 /// Refusals of a new entry that are remarks on an old one: what the law does
 /// not leave to judgement. Masses are looked at for themselves.
 fn told_of(refused: Vec<Refusal>, cylinder: &CylinderStanding) -> impl Iterator<Item = String> {
-    // That nobody wrote down what is in a cylinder is nothing to say of each line.
     let nameless = cylinder.balance.gas.is_none();
     refused
         .into_iter()
-        .filter(move |refusal| !refusal.judgement && !(nameless && matches!(refusal.kind, Kind::OtherGas | Kind::NothingToRecycle)))
+        .filter(|refusal| !refusal.judgement)
+        // That nobody wrote down what is in a cylinder is nothing to say of each line.
+        .filter(move |refusal| !nameless || !matches!(refusal.kind, Kind::OtherGas | Kind::NothingToRecycle))
         .map(|refusal| told(&refusal))
 }
 
@@ -204,6 +208,7 @@ fn over_content(cylinder: &CylinderStanding, transfer: &Transfer) -> Option<Stri
 /// The cylinders of a log, each as it stood before the entry looked at.
 struct Cylinders<'a> {
     known: HashMap<CylinderId, &'a Cylinder>,
+    names: HashSet<&'a str>,
     held: HashMap<EntryId, HeldBefore>,
     standing: HashMap<CylinderId, CylinderStanding>,
 }
@@ -212,6 +217,7 @@ impl<'a> Cylinders<'a> {
     fn new(tx: &Writing<'_>, registers: &'a Registers, moved: &HashSet<CylinderId>) -> Result<Self, StoreError> {
         Ok(Self {
             known: registers.cylinders.iter().map(|cylinder| (cylinder.id, cylinder)).collect(),
+            names: registers.cylinders.iter().map(|cylinder| cylinder.name.as_str()).collect(),
             held: held_before_entries(tx, registers, moved)?,
             standing: HashMap::new(),
         })

@@ -47,13 +47,14 @@ impl Kind {
     /// In the order in which headers are tried.
     const ALL: [Self; 5] = [Self::Log, Self::Cylinders, Self::Appliances, Self::Sites, Self::People];
 
+    /// With its article.
     fn name(self) -> &'static str {
         match self {
-            Self::Sites => "sites",
-            Self::Appliances => "appliances",
-            Self::Cylinders => "cylinders",
-            Self::People => "people",
-            Self::Log => "log",
+            Self::Sites => "a sites file",
+            Self::Appliances => "an appliances file",
+            Self::Cylinders => "a cylinders file",
+            Self::People => "a people file",
+            Self::Log => "a log",
         }
     }
 
@@ -180,18 +181,17 @@ pub fn read_table(file: &str, bytes: &[u8]) -> Result<Table, Vec<BadLine>> {
         return Err(empty());
     }
     let semicolons = header.contains(';');
+    let delimiter = if semicolons { b';' } else { b',' };
     let mut reader = ::csv::ReaderBuilder::new()
-        .delimiter(if semicolons { b';' } else { b',' })
+        .delimiter(delimiter)
         .flexible(true)
         .has_headers(false)
         .trim(::csv::Trim::All)
         .from_reader(text.as_bytes());
     let mut records = reader.records();
     let mut lines_of = Lines::default();
-    let mut line_of = |position: Option<&::csv::Position>| {
-        let byte = position.map_or(0, |position| usize::try_from(position.byte()).unwrap_or(usize::MAX));
-        lines_of.of_record(text.as_bytes(), byte)
-    };
+    let byte_of = |position: Option<&::csv::Position>| position.map_or(0, |at| usize::try_from(at.byte()).unwrap_or(usize::MAX));
+    let mut line_of = |position: Option<&::csv::Position>| lines_of.of_record(text.as_bytes(), byte_of(position));
     let unreadable = |line: u64, error: &::csv::Error| bad(line, format!("cannot be read as CSV: {error}; look at its quotation marks"));
     let (header_line, names): (u64, Vec<String>) = match records.next() {
         Some(Ok(record)) => (line_of(record.position()), record.iter().map(str::to_owned).collect()),
@@ -217,6 +217,12 @@ pub fn read_table(file: &str, bytes: &[u8]) -> Result<Table, Vec<BadLine>> {
                 complete = false;
             }
         }
+    }
+    // Lines may have gone into a field whose quotation mark is never closed: the last one then.
+    let open = |record: &::csv::StringRecord| opens_a_quotation(text.as_bytes(), byte_of(record.position()), delimiter);
+    if complete && let Some((line, _)) = lines.pop_if(|(_, record)| open(record)) {
+        faults.push(bad(line, "has a quotation mark that is not closed; close it, or take it out".to_owned()));
+        complete = false;
     }
     let columns = names.into_iter().enumerate().filter(|(_, name)| kind.knows(name)).map(|(index, name)| (name, index)).collect();
     Ok(Table { kind, bad: faults, file: file.to_owned(), columns, comma_decimals: semicolons, lines, complete })
@@ -249,6 +255,21 @@ impl Lines {
     }
 }
 
+/// Whether a quotation that begins in or after the record at this byte is open at the end of the text.
+fn opens_a_quotation(text: &[u8], byte: usize, delimiter: u8) -> bool {
+    let (mut quoted, mut at_start) = (false, true);
+    let mut rest = text.get(byte..).unwrap_or_default().iter().peekable();
+    while let Some(&byte) = rest.next() {
+        match byte {
+            b'"' if quoted => quoted = rest.next_if(|next| **next == b'"').is_some(),
+            b'"' if at_start => quoted = true,
+            _ => {}
+        }
+        at_start = !quoted && (byte == delimiter || matches!(byte, b'\n' | b'\r'));
+    }
+    quoted
+}
+
 /// The kind of file, where the header names all that such a file needs, and what is wrong with it.
 fn check_header(file: &str, line: u64, names: &[String]) -> (Option<Kind>, Vec<BadLine>) {
     let bad = |column: &str, message: String| BadLine { file: file.to_owned(), line, column: column.to_owned(), message };
@@ -258,14 +279,14 @@ fn check_header(file: &str, line: u64, names: &[String]) -> (Option<Kind>, Vec<B
     let mut faults = Vec::new();
     for (index, name) in names.iter().enumerate() {
         if !closest.knows(name) {
-            faults.push(bad(name, format!("is not a column of a {} file; known are {}", closest.name(), known())));
+            faults.push(bad(name, format!("is not a column of {}; known are {}", closest.name(), known())));
         } else if names[..index].contains(name) {
             faults.push(bad(name, "is named twice; take one of the two out".to_owned()));
         }
     }
     if kind.is_none() {
         for needed in closest.required().iter().filter(|needed| !names.iter().any(|name| name == *needed)) {
-            faults.push(bad(needed, format!("is missing; a {} file needs {}", closest.name(), closest.required().join(", "))));
+            faults.push(bad(needed, format!("is missing; {} needs {}", closest.name(), closest.required().join(", "))));
         }
     }
     (kind, faults)
@@ -469,6 +490,17 @@ mod tests {
         assert_eq!(lines("\n\nperson\r\na\r\n\r\nb"), [4, 6]);
         assert_eq!(lines("person,company\n\"a\nb\",c\nd,e\n,\nf,g"), [2, 4, 6]);
         assert_eq!(lines("person\ra\rb\r"), [2, 3]);
+    }
+
+    #[test]
+    fn a_quotation_that_is_not_closed_swallows_no_lines() {
+        let told = |text: &str| {
+            let table = read_table("f.csv", text.as_bytes()).unwrap();
+            (table.lines.len(), table.complete, table.bad.iter().map(|bad| bad.line).collect::<Vec<_>>())
+        };
+        assert_eq!(told("person,company\na,b\nc,\"d\ne,f\n"), (1, false, vec![3]));
+        assert_eq!(told("person,company\na,\"say \"\"d\"\"\"\n\"e\",5\" pipe\n"), (2, true, Vec::new()));
+        assert_eq!(told("person,company\na,\"d\ne\"\n"), (1, true, Vec::new()));
     }
 
     #[test]
