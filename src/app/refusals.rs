@@ -76,6 +76,8 @@ impl Refusal {
     }
 }
 
+/// What to do about a filling over the limit; nothing to say of one long past.
+pub(super) const STOP_BEFORE: &str = " Stop before that; if it has happened, write why and empty it at once.";
 const SAME_OWNER: &str = "40 CFR 82.156(h), 82.154(d)";
 const EU_RECOVERED: &str = "Regulation (EU) 2024/573 Art. 8(6)";
 const INDIRECT: &str = "common practice";
@@ -303,7 +305,7 @@ fn of_limit(name: &str, cylinder: &CylinderStanding, gas: &Gas, content: Option<
 
 fn over_limit(name: &str, content: Mass, binding: &Limit) -> Refusal {
     let sentence = format!(
-        "Cylinder {name} would hold {} kg, over its limit of {} kg ({}). Stop before that; if it has happened, write why and empty it at once.",
+        "Cylinder {name} would hold {} kg, over its limit of {} kg ({}).{STOP_BEFORE}",
         content.kg_text(),
         binding.net.kg_text(),
         binding.name(),

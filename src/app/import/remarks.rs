@@ -4,9 +4,11 @@
 use super::log::{Taken, remark};
 use super::{ImportError, Imported, Parts, Remark};
 use crate::app::App;
-use crate::app::refusals::{self, Kind, Refusal};
+use crate::app::limits::LimitRules;
+use crate::app::refusals::{self, Kind, Refusal, STOP_BEFORE};
 use crate::app::standing::{ApplianceStanding, CylinderStanding, HeldBefore, held_before_entries};
 use crate::exchange::csv::LogRow;
+use crate::gas;
 use crate::ledger::{
     Act, Appliance, ApplianceFacts, ApplianceId, ChargePurpose, Cylinder, CylinderFacts, CylinderId, EntryId, Registers, Site, TestKind,
     TestResult, Transfer,
@@ -130,7 +132,7 @@ fn forbidden(site: &Site, history: &History, rows: &HashMap<EntryId, &LogRow>, c
             (Act::Charge { purpose, transfer }, Some(cylinder)) => {
                 let standing = at(&mut standing, site, history.appliance, facts, date);
                 let refused = refusals::of_charge(standing, Some(cylinder), *purpose, transfer.mass, None, date);
-                told_of(refused, cylinder).chain(over_content(cylinder, transfer)).collect()
+                told_of(refused, cylinder).chain(over_content(standing, cylinder, transfer)).collect()
             }
             // Made with its charge, an appliance is not serviced.
             (Act::Charge { purpose, .. }, None) if *purpose != ChargePurpose::FactoryCharge => {
@@ -178,31 +180,42 @@ fn at<'a>(
 }
 
 /// Refusals of a new entry that are remarks on an old one: what the law does
-/// not leave to judgement. Masses are looked at for themselves.
+/// not leave to judgement, and a cylinder filled over its limit. That no limit
+/// can be worked out forbids a new filling, and says nothing of an old one.
 fn told_of(refused: Vec<Refusal>, cylinder: &CylinderStanding) -> impl Iterator<Item = String> {
     let nameless = cylinder.balance.gas.is_none();
     refused
         .into_iter()
-        .filter(|refusal| !refusal.judgement)
+        .filter(|refusal| refusal.kind == Kind::OverLimit || !refusal.judgement && refusal.kind != Kind::NoLimit)
         // That nobody wrote down what is in a cylinder is nothing to say of each line.
         .filter(move |refusal| !nameless || !matches!(refusal.kind, Kind::OtherGas | Kind::NothingToRecycle))
         .map(|refusal| told(&refusal))
 }
 
 fn told(refusal: &Refusal) -> String {
-    let sentence = refusal.sentence.trim_end_matches('.');
+    let sentence = refusal.sentence.strip_suffix(STOP_BEFORE).unwrap_or(&refusal.sentence).trim_end_matches('.');
     if refusal.source.is_empty() { sentence.to_owned() } else { format!("{sentence} ({})", refusal.source) }
 }
 
-/// A charge over what the cylinder held: by the transfers before, or where
-/// nothing is known of these, by the register.
-fn over_content(cylinder: &CylinderStanding, transfer: &Transfer) -> Option<String> {
-    let facts = &cylinder.facts;
-    let held = cylinder.balance.content.mass().or_else(|| facts.gross.map(|gross| gross - facts.tare))?.max(Mass::ZERO);
-    let name = &cylinder.cylinder.name;
-    (transfer.mass > held).then(|| {
-        format!("more was charged than cylinder {name} held by what is on record, {} kg of {} kg", transfer.mass.kg_text(), held.kg_text())
-    })
+/// A charge over what the cylinder held. Before its first weighing only what
+/// it may hold at all speaks against a charge, or where that is not known,
+/// what it held when it was weighed.
+fn over_content(standing: &ApplianceStanding, cylinder: &CylinderStanding, transfer: &Transfer) -> Option<String> {
+    let (name, facts) = (&cylinder.cylinder.name, &cylinder.facts);
+    let most = || {
+        let rules = LimitRules::under(&standing.site_facts.rulebooks, default_oil_factor());
+        rules.limit_of(gas::find(&standing.facts.refrigerant)?, cylinder, false).binding.map(|limit| limit.net)
+    };
+    let (held, so) = match cylinder.balance.content.mass() {
+        Some(held) => (held.max(Mass::ZERO), "held by what is on record"),
+        None => match (most(), facts.gross) {
+            (Some(most), _) => (most, "may hold"),
+            (None, Some(gross)) => (gross - facts.tare, "held when it was weighed"),
+            (None, None) => return None,
+        },
+    };
+    (transfer.mass > held)
+        .then(|| format!("{} kg were charged at once, more than cylinder {name} {so}, {} kg", transfer.mass.kg_text(), held.kg_text()))
 }
 
 /// The cylinders of a log, each as it stood before the entry looked at.
