@@ -1,4 +1,5 @@
-//! Taking in registers and history from CSV: one transaction, all or nothing.
+//! Taking in registers and history from CSV, and a company's own rulebooks: one
+//! transaction, all or nothing.
 //!
 //! History is taken as it happened. Refused is only what cannot be true or
 //! cannot be read; what the law forbade is taken and remarked on.
@@ -9,12 +10,13 @@ mod log;
 mod people;
 mod registers;
 mod remarks;
+mod rulebooks;
 
 use super::App;
 use crate::exchange::csv::{self, BadLine, Kind, Rows};
-use crate::store::{Import, StoreError};
+use crate::rules::{Adopted, OwnBook};
+use crate::store::{Import, StoreError, fingerprint_of};
 use chrono::NaiveDate;
-use sha2::{Digest, Sha256};
 use std::collections::HashSet;
 use std::fmt;
 
@@ -26,6 +28,8 @@ pub struct Imported {
     pub cylinders: usize,
     pub people: usize,
     pub entries: usize,
+    /// A company's own.
+    pub rulebooks: usize,
     pub remarks: Vec<Remark>,
 }
 
@@ -93,30 +97,39 @@ impl fmt::Display for RefusedImport {
 }
 
 impl App {
-    /// Takes in files, each a name and its bytes, in any order: registers
-    /// first, then logs, these in order of their files' names. Where a day's
+    /// Takes in files, each a name and its bytes, in any order: rulebooks
+    /// (`.toml`) first, then registers, then logs, these in order of their files' names. Where a day's
     /// lines on an appliance stand in two logs, that is their order.
     ///
     /// # Errors
     /// See [`ImportError`]; nothing is changed then.
     pub fn import(&self, files: &[(String, Vec<u8>)]) -> Result<Imported, ImportError> {
         let mut files: Vec<(&str, &[u8])> = files.iter().map(|(name, bytes)| (name.as_str(), bytes.as_slice())).collect();
-        files.sort_unstable();
+        // Sites may name a rulebook that comes with them.
+        files.sort_unstable_by_key(|&(file, bytes)| (!rulebooks::is_rulebook(file), file, bytes));
         let mut refused = RefusedImport::default();
         let mut parts = Parts::default();
         let mut sums: Vec<(String, &str)> = Vec::new();
+        // Unless all is taken, none stays known.
+        let mut adopted = Vec::new();
         for (file, bytes) in files {
-            let sha256: String = Sha256::digest(bytes).iter().map(|byte| format!("{byte:02x}")).collect();
+            let sha256 = fingerprint_of(bytes);
             if let Some((_, other)) = sums.iter().find(|(sum, _)| *sum == sha256) {
                 refused.files.push(BadFile::NamedTwice { file: file.to_owned(), other: (*other).to_owned() });
             } else if let Some(before) = self.store().import_of(&sha256)? {
                 refused.files.push(BadFile::TakenBefore { file: file.to_owned(), day: before.day, taken_as: before.file_name });
             } else {
-                parts.read(file, bytes, &mut refused.lines);
+                if rulebooks::is_rulebook(file) {
+                    adopted.extend(parts.read_rulebook(file, bytes, &mut refused.lines));
+                } else {
+                    parts.read(file, bytes, &mut refused.lines);
+                }
                 sums.push((sha256, file));
             }
         }
-        self.take(&parts, &sums, refused)
+        let taken = self.take(&parts, &sums, refused)?;
+        adopted.into_iter().for_each(Adopted::keep);
+        Ok(taken)
     }
 
     /// Where something is bad already, the rest is looked at all the same,
@@ -138,6 +151,7 @@ impl App {
                 refused.lines.sort_by(|a, b| (&a.file, a.line).cmp(&(&b.file, b.line)));
                 return Err(refused.into());
             }
+            rulebooks::take(tx, &parts.rulebooks, &mut taken)?;
             remarks::look(tx, self, parts, &entries, &mut taken)?;
             for (sha256, file) in sums {
                 tx.add_import(&Import { sha256: sha256.clone(), day: self.today(), file_name: (*file).to_owned() })?;
@@ -150,6 +164,8 @@ impl App {
 /// The rows of all files, by kind.
 #[derive(Default)]
 struct Parts {
+    /// Each with its file.
+    rulebooks: Vec<(String, OwnBook)>,
     sites: Vec<csv::SiteRow>,
     appliances: Vec<csv::ApplianceRow>,
     cylinders: Vec<csv::CylinderRow>,

@@ -4,6 +4,7 @@
 //! same code. Clock and ids are passed in.
 
 mod account;
+mod assessed;
 mod clock;
 mod closing;
 mod demonstration;
@@ -16,13 +17,13 @@ mod limits;
 mod methods;
 mod paper;
 mod refusals;
-mod service_bans;
 mod service_record;
 mod standing;
 pub mod testing;
 mod visits;
 mod weighing;
 
+pub use assessed::{assess_all, duty_calendar};
 pub use clock::{Clock, FreshIds, IdSource, SystemClock};
 pub use closing::Correction;
 pub use demonstration::{DemonstrationError, build_demonstration, demonstration_in_memory};
@@ -36,7 +37,6 @@ pub use inputs::{
 pub use limits::LimitRules;
 pub use paper::{Printed, Recognised, fit};
 pub use refusals::{Kind, Refusal};
-pub use service_bans::{ServiceBan, service_bans};
 pub use standing::{ApplianceStanding, CylinderStanding, WeighingGap};
 pub use visits::OpenVisit;
 

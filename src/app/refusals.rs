@@ -5,12 +5,12 @@
 
 use super::limits::LimitRules;
 use super::methods::is_direct;
-use super::service_bans::service_bans;
 use super::standing::{ApplianceStanding, CylinderStanding};
 use crate::gas::{self, Gas};
 use crate::ledger::{Act, ChargePurpose, CylinderKind, GasStatus, Line, Moment, TestKind};
 use crate::measure::{CylinderLimit, Limit, Missing, Rating, is_near_critical};
 use crate::quantity::{GaugePressure, Mass, Ratio, rounded_text};
+use crate::rules::service_bans;
 use chrono::NaiveDate;
 use std::fmt;
 
@@ -193,7 +193,7 @@ pub(super) fn banned(standing: &ApplianceStanding, status: Option<GasStatus>, da
         .into_iter()
         .map(|ban| {
             let sentence = format!("{} takes no {gas}: {}.", standing.appliance.name, ban.forbids);
-            Refusal { kind: Kind::ServiceBan, sentence, source: ban.source, judgement: ban.leaves_room() }
+            Refusal { kind: Kind::ServiceBan, sentence, source: &ban.source, judgement: ban.leaves_room() }
         })
         .collect()
 }

@@ -5,11 +5,10 @@ mod sheet;
 
 use super::visits::{appliance_named, site_named};
 use super::{Answer, day, open_store, today};
-use crate::ledger::{ApplianceId, Line, Registers, by_appliance};
-use crate::rules::{Assessment, assess};
+use crate::app::{assess_all, duty_calendar};
+use crate::ledger::{ApplianceId, by_appliance};
 use chrono::NaiveDate;
 use clap::{Args, ValueEnum};
-use std::collections::HashMap;
 use std::path::Path;
 
 #[derive(Debug, Args)]
@@ -36,6 +35,8 @@ pub enum AssessFormat {
     Table,
     Json,
     Csv,
+    /// Duties as an iCalendar file
+    Ics,
 }
 
 pub fn run(store: Option<&Path>, args: &AssessArgs) -> anyhow::Result<Answer> {
@@ -56,27 +57,7 @@ pub fn run(store: Option<&Path>, args: &AssessArgs) -> anyhow::Result<Answer> {
         AssessFormat::Json => answer::json(on, &assessments, args.explain)?,
         AssessFormat::Table => sheet::text(on, &assessments, args.explain),
         AssessFormat::Csv => sheet::csv(&assessments)?,
+        AssessFormat::Ics => duty_calendar(&assessments, on, store.rows_written()?),
     };
     Ok(Answer::well(text))
-}
-
-/// Every wanted appliance judged, by site and identification.
-pub fn assess_all<'a>(
-    registers: &'a Registers,
-    lines: &'a HashMap<ApplianceId, Vec<Line>>,
-    on: NaiveDate,
-    wanted: impl Fn(&crate::ledger::Appliance) -> bool,
-) -> Vec<Assessment<'a>> {
-    let sites: HashMap<_, _> = registers.sites.iter().map(|site| (site.id, site)).collect();
-    let mut assessments: Vec<Assessment> = registers
-        .appliances
-        .iter()
-        .filter(|appliance| wanted(appliance))
-        .filter_map(|appliance| {
-            let lines = lines.get(&appliance.id).map(Vec::as_slice).unwrap_or_default();
-            assess(sites.get(&appliance.site)?, appliance, lines, on)
-        })
-        .collect();
-    assessments.sort_by(|a, b| (&a.site.name, &a.history.appliance.name).cmp(&(&b.site.name, &b.history.appliance.name)));
-    assessments
 }

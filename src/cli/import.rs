@@ -1,4 +1,4 @@
-//! `import`: registers and logs from CSV.
+//! `import`: registers and logs from CSV, and a company's own rulebooks.
 
 use super::{Answer, place};
 use crate::app::{App, FreshIds, SystemClock};
@@ -8,7 +8,7 @@ use std::path::{Path, PathBuf};
 
 #[derive(Debug, Args)]
 pub struct ImportArgs {
-    /// CSV files in any order; the kind is told from the header
+    /// CSV files in any order, the kind told from the header; company rulebooks as .toml
     #[arg(required = true, value_name = "FILE")]
     files: Vec<PathBuf>,
 }
@@ -26,6 +26,7 @@ pub fn run(store: Option<&Path>, args: &ImportArgs) -> anyhow::Result<Answer> {
         text.push_str(&format!("{}, line {}: remark: {}\n", remark.file, remark.line, remark.message));
     }
     let counts = [
+        (taken.rulebooks, "rulebook"),
         (taken.sites, "site"),
         (taken.appliances, "appliance"),
         (taken.cylinders, "cylinder"),

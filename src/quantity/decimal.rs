@@ -73,6 +73,13 @@ pub fn rounded_text(value: Ratio, places: u32) -> String {
     place_point(round_half_up(scaled), places)
 }
 
+/// The ratio with `places` decimals, cut off below: for a figure beside a
+/// limit that it must not seem to reach.
+pub fn floored_text(value: Ratio, places: u32) -> String {
+    let scaled = value * Ratio::from_integer(10_i128.pow(places));
+    place_point(scaled.floor().to_integer(), places)
+}
+
 fn round_half_up(value: Ratio) -> i128 {
     let (numer, denom) = (*value.numer(), *value.denom());
     let sign = numer.signum();
@@ -142,6 +149,13 @@ mod tests {
         assert_eq!(rounded_text(Ratio::new(365, 18), 2), "20.28");
         assert_eq!(rounded_text(Ratio::new(-1, 8), 2), "-0.13");
         assert_eq!(rounded_text(Ratio::new(5, 2), 0), "3");
+    }
+
+    #[test]
+    fn a_figure_beside_a_limit_is_cut_off() {
+        assert_eq!(floored_text(Ratio::new(49_997, 10_000), 3), "4.999");
+        assert_eq!(floored_text(Ratio::new(-1, 8), 2), "-0.13");
+        assert_eq!(floored_text(Ratio::from_integer(5), 3), "5.000");
     }
 
     #[test]

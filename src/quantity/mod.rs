@@ -9,7 +9,7 @@ mod volume;
 mod written;
 
 pub use calendar::{add_months, days_between};
-pub use decimal::{NotADecimal, Ratio, decimal_text, parse_decimal, rounded_text, square_root_text};
+pub use decimal::{NotADecimal, Ratio, decimal_text, floored_text, parse_decimal, rounded_text, square_root_text};
 pub use mass::{Mass, MassError, MassUnit, Weighing};
 pub use pressure::{AbsolutePressure, GaugePressure, PressureStep, WrittenPressure};
 pub use temperature::{Temperature, TemperatureStep};

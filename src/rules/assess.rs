@@ -1,9 +1,10 @@
 //! The whole judgement of one appliance as of a day.
 
-use super::book::{Rulebook, rulebook};
+use super::book::Rulebook;
 use super::duty::{Duty, DutySource, duties};
 use super::history::History;
 use super::loss::{Loss, loss_between};
+use super::own::rulebook;
 use super::rate::{LeakRate, leak_rates};
 use super::scope::applicability;
 use crate::gas::Weighting;

@@ -3,11 +3,15 @@
 //! The rows are data (`books/*.toml`), so that a threshold has a first and a
 //! last day and no constant of the law stands in code.
 
+pub(super) mod read;
+
+use super::ban::{InstallationBan, ServiceBan};
 use crate::gas::Weighting;
 use crate::ledger::{Category, Equipment};
-use crate::quantity::{Mass, MassUnit, Ratio, parse_decimal};
+use crate::quantity::{Mass, Ratio};
 use chrono::NaiveDate;
-use serde::{Deserialize, Deserializer};
+use read::{day, optional_day, optional_mass, optional_month_day, optional_ratio, ratio, weighting};
+use serde::Deserialize;
 use std::sync::LazyLock;
 
 /// One legal text.
@@ -20,11 +24,15 @@ pub struct Rulebook {
     /// Whose GWP and ODP tables weight losses at sites under this text.
     #[serde(deserialize_with = "weighting")]
     pub weights: Weighting,
-    /// Years for which records are kept.
-    pub retention_years: u32,
     /// How far the text itself was read; empty when read in full.
     #[serde(default)]
     pub confidence: String,
+    /// Which edition of the book this is: the program's version, or the
+    /// fingerprint of a company's own file.
+    #[serde(skip)]
+    pub version: String,
+    #[serde(default, rename = "retention")]
+    pub retentions: Vec<Retention>,
     /// Present where the text has a leak rate.
     #[serde(default, rename = "rate")]
     pub rates: Vec<RateRow>,
@@ -40,13 +48,167 @@ pub struct Rulebook {
     pub exemptions: Vec<Exemption>,
     #[serde(default, rename = "duty")]
     pub duties: Vec<DutyRow>,
+    /// Leakage detection systems that must be there, and what they must notice.
+    #[serde(default, rename = "detection")]
+    pub detections: Vec<Detection>,
+    /// Gas that may not be used to service what.
+    #[serde(default, rename = "service_ban")]
+    pub service_bans: Vec<ServiceBan>,
+    /// Gas with which what may not be put into operation.
+    #[serde(default, rename = "installation_ban")]
+    pub installation_bans: Vec<InstallationBan>,
+    /// Disposals whose recovered gas is added up by month.
+    #[serde(default, rename = "disposal")]
+    pub disposals: Vec<Disposal>,
+    /// Releases that must be reported.
+    #[serde(default, rename = "release")]
+    pub releases: Vec<Release>,
+    /// How a leak check is made.
+    #[serde(default, rename = "practice")]
+    pub practices: Vec<Practice>,
+}
+
+/// A row of the law: it holds from its first to its last day.
+pub trait Dated {
+    /// First day, and last day; `None` while in force.
+    fn days(&self) -> (NaiveDate, Option<NaiveDate>);
+
+    fn holds_on(&self, day: NaiveDate) -> bool {
+        let (from, to) = self.days();
+        from <= day && to.is_none_or(|to| day <= to)
+    }
+}
+
+/// The article of a row, and its days.
+pub(super) trait Row: Dated {
+    /// What the file calls it.
+    const NAME: &'static str;
+
+    fn source(&self) -> &str;
+}
+
+macro_rules! rows {
+    ($($name:ident $file_name:literal,)*) => {$(
+        impl Dated for $name {
+            fn days(&self) -> (NaiveDate, Option<NaiveDate>) {
+                (self.from, self.to)
+            }
+        }
+
+        impl Row for $name {
+            const NAME: &'static str = $file_name;
+
+            fn source(&self) -> &str {
+                &self.source
+            }
+        }
+    )*};
+}
+
+rows! {
+    Retention "retention",
+    RateRow "rate",
+    Season "season",
+    Scope "scope",
+    Trigger "trigger",
+    Band "band",
+    Exemption "exemption",
+    DutyRow "duty",
+    Detection "detection",
+    ServiceBan "service_ban",
+    InstallationBan "installation_ban",
+    Disposal "disposal",
+    Release "release",
+    Practice "practice",
+}
+
+/// How long records are kept.
+#[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct Retention {
+    #[serde(deserialize_with = "day")]
+    pub from: NaiveDate,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub to: Option<NaiveDate>,
+    pub years: u32,
+    /// What is kept so long, from which day on.
+    pub what: String,
+    pub source: String,
+}
+
+/// A leakage detection system that must be there.
+#[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct Detection {
+    #[serde(deserialize_with = "day")]
+    pub from: NaiveDate,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub to: Option<NaiveDate>,
+    #[serde(default)]
+    pub categories: Vec<Category>,
+    #[serde(default)]
+    pub equipment: Vec<Equipment>,
+    #[serde(default, deserialize_with = "optional_mass")]
+    pub charge_at_least: Option<Mass>,
+    /// What is measured, and from how much on a system must be there.
+    pub basis: Option<Basis>,
+    #[serde(default, deserialize_with = "optional_ratio")]
+    pub at_least: Option<Ratio>,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub installed_from: Option<NaiveDate>,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub installed_to: Option<NaiveDate>,
+    /// The alarm's mass: the smaller of the two.
+    #[serde(default, deserialize_with = "optional_mass")]
+    pub alerts_at: Option<Mass>,
+    #[serde(default, deserialize_with = "optional_ratio")]
+    pub alerts_at_percent: Option<Ratio>,
+    pub why: String,
+    pub source: String,
+}
+
+/// Disposals of which the recovered gas is added up by month and kind.
+#[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct Disposal {
+    #[serde(deserialize_with = "day")]
+    pub from: NaiveDate,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub to: Option<NaiveDate>,
+    #[serde(default, deserialize_with = "optional_mass")]
+    pub charge_over: Option<Mass>,
+    #[serde(default, deserialize_with = "optional_mass")]
+    pub charge_below: Option<Mass>,
+    pub source: String,
+}
+
+/// A release that must be reported.
+#[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct Release {
+    #[serde(deserialize_with = "day")]
+    pub from: NaiveDate,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub to: Option<NaiveDate>,
+    #[serde(default, deserialize_with = "optional_ratio")]
+    pub kg_over: Option<Ratio>,
+    #[serde(default, deserialize_with = "optional_ratio")]
+    pub kg_at_least: Option<Ratio>,
+    #[serde(default, deserialize_with = "optional_ratio")]
+    pub kg_below: Option<Ratio>,
+    /// How and by when it is reported.
+    pub report: String,
+    pub source: String,
 }
 
 /// How leak rates are calculated.
 #[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
 pub struct RateRow {
-    #[serde(flatten)]
-    pub validity: Validity,
+    #[serde(deserialize_with = "day")]
+    pub from: NaiveDate,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub to: Option<NaiveDate>,
     /// Neither the days since the last addition nor the rolling period count more.
     pub longest_days: i64,
     pub source: String,
@@ -59,36 +221,34 @@ pub struct RateRow {
     pub first_added_from: Option<NaiveDate>,
     #[serde(default)]
     pub first_added_from_source: String,
+    /// A follow-up test begins the rolling period anew while it is less than
+    /// so many calendar months ago.
+    pub follow_up_months: u32,
+    /// Why the method cannot be changed at will; empty where the text is silent.
+    #[serde(default)]
+    pub method_lock: String,
+    #[serde(default)]
+    pub method_lock_source: String,
 }
 
 /// Within how many calendar months a seasonal removal and its return lie.
 #[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
 pub struct Season {
-    #[serde(flatten)]
-    pub validity: Validity,
-    pub months: u32,
-    pub source: String,
-}
-
-/// When a row holds.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Deserialize)]
-pub struct Validity {
     #[serde(deserialize_with = "day")]
     pub from: NaiveDate,
-    /// Last day; `None` while in force.
     #[serde(default, deserialize_with = "optional_day")]
     pub to: Option<NaiveDate>,
-}
-
-impl Validity {
-    pub fn holds_on(&self, day: NaiveDate) -> bool {
-        self.from <= day && self.to.is_none_or(|to| day <= to)
-    }
+    pub months: u32,
+    pub source: String,
 }
 
 /// Which gases a scope row takes.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Deserialize)]
 pub enum GasTest {
+    /// Every gas of the catalogue.
+    #[serde(rename = "any")]
+    Any,
     /// A gas with a CFC, HCFC or halon part.
     #[serde(rename = "ozone-depleting")]
     OzoneDepleting,
@@ -127,9 +287,12 @@ pub enum EquipmentTest {
 
 /// One way into a rulebook.
 #[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
 pub struct Scope {
-    #[serde(flatten)]
-    pub validity: Validity,
+    #[serde(deserialize_with = "day")]
+    pub from: NaiveDate,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub to: Option<NaiveDate>,
     pub gas: GasTest,
     #[serde(default, deserialize_with = "optional_ratio")]
     pub gwp_over: Option<Ratio>,
@@ -145,11 +308,26 @@ pub struct Scope {
     pub why: String,
 }
 
+/// How a leak check is made, where a text says so.
+#[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct Practice {
+    #[serde(deserialize_with = "day")]
+    pub from: NaiveDate,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub to: Option<NaiveDate>,
+    pub text: String,
+    pub source: String,
+}
+
 /// The leak rate over which duties arise; the first row that fits holds.
 #[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
 pub struct Trigger {
-    #[serde(flatten)]
-    pub validity: Validity,
+    #[serde(deserialize_with = "day")]
+    pub from: NaiveDate,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub to: Option<NaiveDate>,
     /// `None` takes every other category.
     pub category: Option<Category>,
     #[serde(deserialize_with = "ratio")]
@@ -173,9 +351,12 @@ pub enum Basis {
 
 /// An interval of leak checks.
 #[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
 pub struct Band {
-    #[serde(flatten)]
-    pub validity: Validity,
+    #[serde(deserialize_with = "day")]
+    pub from: NaiveDate,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub to: Option<NaiveDate>,
     pub basis: Basis,
     #[serde(default, deserialize_with = "optional_ratio")]
     pub at_least: Option<Ratio>,
@@ -191,9 +372,12 @@ pub struct Band {
 
 /// A way out of a rulebook: all that is named must hold.
 #[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
 pub struct Exemption {
-    #[serde(flatten)]
-    pub validity: Validity,
+    #[serde(deserialize_with = "day")]
+    pub from: NaiveDate,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub to: Option<NaiveDate>,
     #[serde(default)]
     pub labelled_hermetically_sealed: bool,
     #[serde(default)]
@@ -268,16 +452,21 @@ pub enum CountedFrom {
 
 /// One duty with its numbers; the first row that fits the appliance holds.
 #[derive(Debug, Clone, Deserialize)]
+#[serde(deny_unknown_fields)]
 pub struct DutyRow {
     pub duty: DutyKind,
-    #[serde(flatten)]
-    pub validity: Validity,
+    #[serde(deserialize_with = "day")]
+    pub from: NaiveDate,
+    #[serde(default, deserialize_with = "optional_day")]
+    pub to: Option<NaiveDate>,
     pub days: Option<i64>,
     /// How long before the duty began it may have been met.
     pub days_before: Option<i64>,
     pub months: Option<u32>,
     /// Periods in a row without a rate over the trigger that end a series.
     pub clean_periods: Option<usize>,
+    /// Calendar months without one that end it, where no periods are counted.
+    pub clean_months: Option<u32>,
     /// Month and day of the next calendar year.
     #[serde(default, deserialize_with = "optional_month_day")]
     pub due_in_next_year: Option<(u32, u32)>,
@@ -293,6 +482,19 @@ pub struct DutyRow {
     pub categories: Vec<Category>,
     #[serde(default, deserialize_with = "optional_mass")]
     pub charge_at_least: Option<Mass>,
+    /// Later due days that hold where somebody can show their reason.
+    #[serde(default, rename = "extension")]
+    pub extensions: Vec<Extension>,
+    pub source: String,
+}
+
+/// A later due day, counted from the same day as the duty's own.
+#[derive(Debug, Clone, PartialEq, Eq, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct Extension {
+    pub days: i64,
+    /// What must be the case, as a clause: `an industrial process shutdown is needed`.
+    pub when: String,
     pub source: String,
 }
 
@@ -311,6 +513,7 @@ pub fn built_in() -> &'static [Rulebook] {
         .into_iter()
         // A book that does not parse fails the tests, not a user: see below.
         .filter_map(|text| toml::from_str(text).ok())
+        .map(|book| Rulebook { version: env!("CARGO_PKG_VERSION").to_owned(), ..book })
         .collect()
     });
     &BOOKS
@@ -320,59 +523,23 @@ pub fn built_in() -> &'static [Rulebook] {
 /// of the day of the return; before the first row by that row.
 pub fn season_months(day: NaiveDate) -> Option<u32> {
     let mut rows = built_in().iter().flat_map(|book| &book.seasons);
-    rows.clone().find(|row| row.validity.holds_on(day)).or_else(|| rows.next()).map(|row| row.months)
-}
-
-/// The rulebook with this id.
-pub fn rulebook(id: &str) -> Option<&'static Rulebook> {
-    built_in().iter().find(|book| book.id == id)
-}
-
-fn day<'de, D: Deserializer<'de>>(deserializer: D) -> Result<NaiveDate, D::Error> {
-    let text = String::deserialize(deserializer)?;
-    text.parse().map_err(|_| serde::de::Error::custom(format!("\u{201c}{text}\u{201d} is not a day such as 2026-01-01")))
-}
-
-fn optional_day<'de, D: Deserializer<'de>>(deserializer: D) -> Result<Option<NaiveDate>, D::Error> {
-    day(deserializer).map(Some)
-}
-
-fn optional_month_day<'de, D: Deserializer<'de>>(deserializer: D) -> Result<Option<(u32, u32)>, D::Error> {
-    let text = String::deserialize(deserializer)?;
-    let parts = text.split_once('-').and_then(|(month, day)| Some((month.parse().ok()?, day.parse().ok()?)));
-    // A leap year, so that 02-29 could be written.
-    let known = parts.filter(|&(month, day)| NaiveDate::from_ymd_opt(2024, month, day).is_some());
-    known.map(Some).ok_or_else(|| serde::de::Error::custom(format!("\u{201c}{text}\u{201d} is not a month and day such as 03-01")))
-}
-
-fn ratio<'de, D: Deserializer<'de>>(deserializer: D) -> Result<Ratio, D::Error> {
-    parse_decimal(&String::deserialize(deserializer)?).map_err(serde::de::Error::custom)
-}
-
-fn optional_ratio<'de, D: Deserializer<'de>>(deserializer: D) -> Result<Option<Ratio>, D::Error> {
-    ratio(deserializer).map(Some)
-}
-
-fn optional_mass<'de, D: Deserializer<'de>>(deserializer: D) -> Result<Option<Mass>, D::Error> {
-    let text = String::deserialize(deserializer)?;
-    let (number, unit) = text.split_once(' ').ok_or_else(|| serde::de::Error::custom("a mass needs a unit, as in 50 lb"))?;
-    let unit = MassUnit::from_name(unit).map_err(serde::de::Error::custom)?;
-    Mass::parse(number, unit).map(Some).map_err(serde::de::Error::custom)
-}
-
-fn weighting<'de, D: Deserializer<'de>>(deserializer: D) -> Result<Weighting, D::Error> {
-    match String::deserialize(deserializer)?.as_str() {
-        "us" => Ok(Weighting::UnitedStates),
-        "eu" => Ok(Weighting::EuropeanUnion),
-        "gb" => Ok(Weighting::GreatBritain),
-        other => Err(serde::de::Error::custom(format!("\u{201c}{other}\u{201d} is not a set of weights; known are us, eu, gb"))),
-    }
+    rows.clone().find(|row| row.holds_on(day)).or_else(|| rows.next()).map(|row| row.months)
 }
 
 impl Rulebook {
     /// How rates are calculated on a day; `None` where the text has no leak rate then.
     pub fn rate_row(&self, day: NaiveDate) -> Option<&RateRow> {
-        self.rates.iter().find(|row| row.validity.holds_on(day))
+        self.rates.iter().find(|row| row.holds_on(day))
+    }
+
+    /// How long records are kept by the law of a day.
+    pub fn retention(&self, day: NaiveDate) -> Option<&Retention> {
+        self.retentions.iter().find(|row| row.holds_on(day))
+    }
+
+    /// The first day on which any of its rules held.
+    pub fn begins(&self) -> Option<NaiveDate> {
+        self.scopes.iter().map(|row| row.from).min()
     }
 }
 
@@ -386,19 +553,12 @@ mod tests {
         assert_eq!(ids, ["us-82f", "us-84c", "eu-573", "eu-590", "gb-517", "gb-1005", "ca-halocarbon"]);
     }
 
+    /// Also that no row ends before it begins, and all else that is asked of a company's own book.
     #[test]
-    fn every_row_names_its_article() {
+    fn every_built_in_book_is_sound() {
         for book in built_in() {
-            let sources = (book.scopes.iter().map(|row| &row.source))
-                .chain(book.triggers.iter().map(|row| &row.source))
-                .chain(book.bands.iter().map(|row| &row.source))
-                .chain(book.exemptions.iter().map(|row| &row.source))
-                .chain(book.duties.iter().map(|row| &row.source))
-                .chain(book.rates.iter().map(|row| &row.source))
-                .chain(book.seasons.iter().map(|row| &row.source));
-            for source in sources {
-                assert!(source.chars().any(|c| c.is_ascii_digit()), "{}: {source:?}", book.id);
-            }
+            let faults = super::super::own::faults(book);
+            assert!(faults.is_empty(), "{}: {faults:?}", book.id);
         }
     }
 }

@@ -3,10 +3,10 @@
 mod checks;
 mod exceedance;
 
-use super::book::{DutyKind, DutyRow, Rulebook};
+use super::book::{Dated, DutyKind, DutyRow, Extension, Rulebook};
 use super::history::History;
 use super::rate::{LeakRate, Verdict};
-use super::scope::applicability;
+use super::scope::taking;
 use crate::ledger::{Act, ApplianceFacts, TestKind};
 use crate::quantity::{add_months, days_between};
 use chrono::{Days, NaiveDate};
@@ -54,6 +54,13 @@ pub struct Duty {
     clock_from: NaiveDate,
     /// Last day of the rule that asks for it, where it has one.
     rule_ends: Option<NaiveDate>,
+    /// The day of the rate over the trigger that it answers, where there is one.
+    pub exceeded_on: Option<NaiveDate>,
+    /// Which of a series' periods it is for, the first being 1; 0: no series.
+    pub period: u32,
+    /// Days that the row counts, and the later due days it knows.
+    days: Option<i64>,
+    extensions: &'static [Extension],
     /// The line it comes from.
     pub from_line: Option<usize>,
     /// The line that met it.
@@ -70,6 +77,17 @@ impl Duty {
             (None, None, Some(due)) if on > due => DutyState::Late,
             (None, None, _) => DutyState::Open,
         }
+    }
+
+    /// Later due days that the rule knows, each with what must be the case and
+    /// its article. Whether it is the case nobody can tell from a log: the
+    /// duty's own due day stays what it is.
+    pub fn extensions(&self) -> impl Iterator<Item = (NaiveDate, &'static Extension)> + use<'_> {
+        let due = self.due.zip(self.days);
+        self.extensions.iter().filter_map(move |extension| {
+            let (due, days) = due?;
+            Some((after_days(due, Some(extension.days - days)), extension))
+        })
     }
 
     /// Whether it is listed on a day: while open, late or suspended, and for
@@ -94,7 +112,7 @@ impl Duty {
 
 /// Everything that the duties of one appliance under one rulebook are read from.
 pub struct DutySource<'a> {
-    pub book: &'a Rulebook,
+    pub book: &'static Rulebook,
     pub history: &'a History<'a>,
     pub rates: &'a [LeakRate],
     pub on: NaiveDate,
@@ -127,20 +145,20 @@ pub fn duties(source: &DutySource) -> Vec<Duty> {
 }
 
 impl DutySource<'_> {
-    fn row(&self, kind: DutyKind, facts: &ApplianceFacts, day: NaiveDate) -> Option<&DutyRow> {
+    fn row(&self, kind: DutyKind, facts: &ApplianceFacts, day: NaiveDate) -> Option<&'static DutyRow> {
         self.book.duties.iter().find(|row| {
             row.duty == kind
-                && row.validity.holds_on(day)
+                && row.holds_on(day)
                 && (row.categories.is_empty() || row.categories.contains(&facts.category))
                 && row.charge_at_least.is_none_or(|least| facts.full_charge.is_some_and(|charge| charge >= least))
         })
     }
 
     fn applies(&self, facts: &ApplianceFacts, day: NaiveDate) -> bool {
-        (self.at_site)(day) && applicability(self.book, facts, day).applies
+        (self.at_site)(day) && taking(self.book, facts, day).is_some()
     }
 
-    fn duty(&self, row: &DutyRow, from: NaiveDate, from_line: Option<usize>, due: Option<NaiveDate>) -> Duty {
+    fn duty(&self, row: &'static DutyRow, from: NaiveDate, from_line: Option<usize>, due: Option<NaiveDate>) -> Duty {
         Duty {
             kind: row.duty,
             rulebook: self.book.id.clone(),
@@ -151,7 +169,11 @@ impl DutySource<'_> {
             ended_on: None,
             suspended: false,
             clock_from: from,
-            rule_ends: row.validity.to,
+            rule_ends: row.to,
+            exceeded_on: None,
+            period: 0,
+            days: row.days,
+            extensions: &row.extensions,
             from_line,
             met_by: None,
         }
@@ -160,10 +182,7 @@ impl DutySource<'_> {
     /// Mothballing stops an open duty's clock until gas is charged again.
     fn stop_clock(&self, duty: &mut Duty) {
         let history = self.history;
-        for (line, entry) in history.lines.iter().enumerate() {
-            if !matches!(entry.act, Act::Mothball) {
-                continue;
-            }
+        for &line in history.mothballs() {
             let day = history.date(line);
             let resumed = history.first_after(Some(line), |after| history.is_charge(after));
             let over_before_it_began = resumed.is_some_and(|charge| history.date(charge) <= duty.clock_from);

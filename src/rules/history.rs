@@ -24,6 +24,10 @@ pub struct History<'a> {
     /// Per line: index of its work.
     work_of: Vec<usize>,
     pub works: Vec<Work>,
+    /// Per line: a follow-up verification test that counts.
+    follow_up_counts: Vec<bool>,
+    mothballs: Vec<usize>,
+    retired_on: Option<NaiveDate>,
     /// Facts that hold from a place in `lines` on, by place.
     facts: Vec<(NaiveDate, Option<usize>, ApplianceFacts)>,
 }
@@ -54,6 +58,9 @@ impl<'a> History<'a> {
             same_leak: vec![false; count],
             work_of: vec![0; count],
             works: Vec::new(),
+            follow_up_counts: follow_ups_that_count(&lines),
+            mothballs: (0..count).filter(|&index| matches!(lines[index].act, Act::Mothball)).collect(),
+            retired_on: lines.iter().find(|line| matches!(line.act, Act::Retire)).map(|line| line.at.date),
             lines,
             facts,
         };
@@ -140,11 +147,7 @@ impl<'a> History<'a> {
     /// A follow-up verification test that counts: passed, not partial, and an
     /// initial test passed between the latest repair before it and itself.
     pub fn is_follow_up_that_counts(&self, index: usize) -> bool {
-        let passed = matches!(
-            self.lines[index].act,
-            Act::Test { kind: TestKind::FollowUpVerification, result: Some(TestResult::Pass), partial: false, .. }
-        );
-        passed && self.repair_before(index).is_some_and(|repair| (repair + 1..index).any(|i| self.is_passed_initial_test(i)))
+        self.follow_up_counts[index]
     }
 
     /// The latest repair of any kind before a line.
@@ -159,7 +162,12 @@ impl<'a> History<'a> {
 
     /// The day on which the appliance was retired.
     pub fn retired_on(&self) -> Option<NaiveDate> {
-        self.lines.iter().find(|line| matches!(line.act, Act::Retire)).map(|line| line.at.date)
+        self.retired_on
+    }
+
+    /// The lines that mothball the appliance.
+    pub fn mothballs(&self) -> &[usize] {
+        &self.mothballs
     }
 
     fn gather_works(&mut self) {
@@ -243,6 +251,27 @@ impl<'a> History<'a> {
             earlier = Some(number);
         }
     }
+}
+
+/// Per line whether it is a follow-up verification test that counts: one that
+/// passed, is not partial, and has an initial test passed since the last repair.
+fn follow_ups_that_count(lines: &[&Line]) -> Vec<bool> {
+    // Nothing counts before the first repair.
+    let (mut repaired, mut tested_since) = (false, false);
+    let mut counts = Vec::with_capacity(lines.len());
+    for line in lines {
+        let mut this = false;
+        match line.act {
+            Act::Repair { .. } => (repaired, tested_since) = (true, false),
+            Act::Test { kind: TestKind::InitialVerification, result: Some(TestResult::Pass), .. } => tested_since = repaired,
+            Act::Test { kind: TestKind::FollowUpVerification, result: Some(TestResult::Pass), partial: false, .. } => {
+                this = tested_since;
+            }
+            _ => {}
+        }
+        counts.push(this);
+    }
+    counts
 }
 
 /// Order of a day: by time, or by position where any line has no time.

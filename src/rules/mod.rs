@@ -1,17 +1,23 @@
 //! Rulebooks, leak rates, scope and duties. Exact: no float, no clock.
 
 mod assess;
+mod ban;
 mod book;
 mod duty;
 mod history;
 mod loss;
+mod own;
 mod rate;
 mod scope;
+mod why;
 
 pub use assess::{Assessment, Judgement, assess, weights};
-pub use book::{Band, Basis, DutyKind, DutyRow, Rulebook, Validity, built_in, rulebook};
+pub use ban::{InstallationBan, ServiceBan, installation_bans, service_bans};
+pub use book::{Band, Basis, Dated, Detection, DutyKind, DutyRow, Extension, Rulebook};
 pub use duty::{Duty, DutyState};
 pub use history::{History, Work};
 pub use loss::{Loss, LossEntry, loss_between, loss_entries};
+pub use own::{Adopted, BookFault, OwnBook, adopt, known, read_own, rulebook};
 pub use rate::{LeakRate, Verdict, WeighingBand, annualized, leak_rates, trigger};
 pub use scope::{Applicability, applicability, months, strictest_band};
+pub use why::{MonthlyDisposal, Point, alert_mass, monthly_disposals, points, release_row};

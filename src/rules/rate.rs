@@ -1,11 +1,11 @@
 //! Leak rates: both methods of 40 CFR 82.152, exact.
 
-use super::book::{Rulebook, Trigger};
+use super::book::{Dated, RateRow, Rulebook, Trigger};
 use super::history::History;
-use super::scope::applicability;
+use super::scope::taking;
 use crate::ledger::{Act, ApplianceFacts, RateMethod};
 use crate::quantity::{Mass, Ratio, days_between, square_root_text};
-use chrono::{Days, NaiveDate};
+use chrono::{Days, Months, NaiveDate};
 use num_bigint::{BigInt, BigUint};
 
 /// How a leak rate stands to its trigger. Nothing rounded is compared.
@@ -90,7 +90,9 @@ pub fn leak_rates(book: &Rulebook, history: &History, sites: &dyn Fn(NaiveDate) 
         let end = (index..history.lines.len()).find(|&i| history.date(i) != day).unwrap_or(history.lines.len());
         if let Some(first) = (index..end).find(|&i| history.counted[i])
             && let Some((true, method)) = sites(day)
-            && let Some(rate) = leak_rate(book, history, method, first, end, rates.is_empty())
+            // 84.106(b)(1) and (2) speak of the first use of each method.
+            && let first_of_method = !rates.iter().any(|rate: &LeakRate| rate.method == method)
+            && let Some(rate) = leak_rate(book, history, method, first, end, first_of_method)
         {
             rates.push(rate);
         }
@@ -107,9 +109,7 @@ fn leak_rate(book: &Rulebook, history: &History, method: RateMethod, first: usiz
     let longest = rules.longest_days;
     let last_counted = (first..end).rev().find(|&i| history.counted[i])?;
     let facts = history.facts_at(last_counted)?;
-    if !applicability(book, facts, day).applies {
-        return None;
-    }
+    taking(book, facts, day)?;
     let full_charge = facts.full_charge?;
     let trigger = trigger(book, facts, day)?;
     let mut notes = Vec::new();
@@ -127,7 +127,7 @@ fn leak_rate(book: &Rulebook, history: &History, method: RateMethod, first: usiz
             (added, Some(days), None, lines)
         }
         RateMethod::RollingAverage => {
-            let (mut from, after) = window(history, first, longest);
+            let (mut from, after) = window(history, first, rules);
             if let Some(earliest) = rules.first_added_from.filter(|_| first_rate).filter(|&earliest| earliest > from) {
                 notes.push(format!("first calculation: what was added from {earliest} ({})", rules.first_added_from_source));
                 from = earliest;
@@ -170,7 +170,7 @@ fn leak_rate(book: &Rulebook, history: &History, method: RateMethod, first: usiz
 
 /// The trigger rate for an appliance's category on a day.
 pub fn trigger<'b>(book: &'b Rulebook, facts: &ApplianceFacts, day: NaiveDate) -> Option<&'b Trigger> {
-    book.triggers.iter().find(|row| row.validity.holds_on(day) && row.category.is_none_or(|category| category == facts.category))
+    book.triggers.iter().find(|row| row.holds_on(day) && row.category.is_none_or(|category| category == facts.category))
 }
 
 /// Days from the last charge before the work or chain to the rate's day.
@@ -191,13 +191,14 @@ fn days_since(history: &History, first: usize, longest: i64, notes: &mut Vec<Str
 }
 
 /// First day of the rolling window, and the follow-up test it starts after.
-fn window(history: &History, first: usize, longest: i64) -> (NaiveDate, Option<usize>) {
+fn window(history: &History, first: usize, rules: &RateRow) -> (NaiveDate, Option<usize>) {
     let day = history.date(first);
-    let year_ago = day.checked_sub_months(chrono::Months::new(12)).unwrap_or(NaiveDate::MIN);
-    let test = (0..first).rev().find(|&i| history.is_follow_up_that_counts(i)).filter(|&i| history.date(i) > year_ago);
+    let too_old = day.checked_sub_months(Months::new(rules.follow_up_months)).unwrap_or(NaiveDate::MIN);
+    let test = (0..first).rev().find(|&i| history.is_follow_up_that_counts(i)).filter(|&i| history.date(i) > too_old);
     match test {
         Some(test) => (history.date(test), Some(test)),
-        None => (day.checked_sub_days(Days::new(longest.unsigned_abs() - 1)).unwrap_or(NaiveDate::MIN), None),
+        // The day itself is one of the longest period's days.
+        None => (day.checked_sub_days(Days::new(rules.longest_days.unsigned_abs().saturating_sub(1))).unwrap_or(NaiveDate::MIN), None),
     }
 }
 

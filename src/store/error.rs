@@ -26,6 +26,8 @@ pub enum StoreError {
     Damaged { path: PathBuf, detail: String },
     #[error("{} lies where a database cannot be kept safely (a network share, perhaps). Move the store to a disk of this machine.", path.display())]
     NoSafePlace { path: PathBuf },
+    #[error("The company's own rulebook in {} cannot be read by this program: {detail}. Nothing was changed. Open the store with the program that the rulebook was added with.", path.display())]
+    UnreadableRulebook { path: PathBuf, detail: String },
     #[error("{} exists already and is not overwritten. Name a new file.", path.display())]
     Exists { path: PathBuf },
     #[error("{} could not be written: {detail}. Check that its folder exists and has room.", path.display())]

@@ -23,7 +23,7 @@ pub use drafts::{Draft, DraftWriter};
 pub use error::StoreError;
 pub use opening::OpenMode;
 pub use records::{ClosedRecord, Countersignature, HandOver};
-pub use settings::Import;
+pub use settings::{Import, fingerprint_of};
 pub use upkeep::{RecordCheck, Report};
 pub use visits::VisitFilter;
 pub use writing::Writing;

@@ -54,6 +54,7 @@ impl Store {
         if journal != "wal" {
             return Err(StoreError::NoSafePlace { path: path.to_owned() });
         }
+        store.adopt_rulebooks()?;
         Ok(store)
     }
 

@@ -296,6 +296,7 @@ fn what_the_law_forbade_is_remarked_on() {
         &[
             "line 3: C-1 takes no virgin R-404A: gas with a GWP of 2,500 or more does not service refrigeration equipment (Regulation (EU) 2024/573 Art. 13(3))",
             "line 5: C-1 takes no R-404A of unknown origin, which is taken as virgin: ",
+            "line 6: put into operation where refrigeration equipment with gas of GWP 2,500 or more, other than chillers and for products",
             "line 7: H-1 takes no R-22 of unknown origin, which is taken as virgin: ozone-depleting gas, of whatever origin, is not used to fill equipment",
             "line 9: Cylinder E-1 holds recovered gas, which is not charged before it is recycled or reclaimed (Regulation (EU) 2024/573 Art. 8(6))",
             "line 9: C-1 takes no recovered R-404A: ",

@@ -5,7 +5,7 @@
 mod big_store;
 
 use big_store::{fill, today};
-use bubblepoint::cli::assess::assess_all;
+use bubblepoint::app::assess_all;
 use bubblepoint::ledger::by_appliance;
 use bubblepoint::store::{OpenMode, Store, StoreError};
 use chrono::NaiveDate;
@@ -27,37 +27,40 @@ fn main() {
     let sum =
         fastest(7, || bare.query_row("SELECT total(mass) FROM entries", [], |row| row.get::<_, f64>(0)).map(|sum| drop(black_box(sum))));
     let read = fastest(5, || store.lines().map(|lines| drop(black_box(lines))));
-    let judged = fastest(5, || -> Result<(), StoreError> {
-        let registers = store.registers()?;
-        let lines = by_appliance(store.lines()?);
-        black_box(assess_all(&registers, &lines, on, |_| true));
-        Ok(())
-    });
+    let judged = fastest(5, || whole_pass(&store, on));
     println!("{appliances} appliances, {} entries", appliances * each);
     println!("sum over entries  {sum:>10.2?}");
     println!("read all lines    {read:>10.2?}  {:>6.1}x the sum", ratio(read, sum));
     println!("assess            {judged:>10.2?}  {:>6.1}x the sum (aim 20x)", ratio(judged, sum));
 
-    if !quick {
-        growth(folder.path(), on);
-    }
+    // 10,000 appliances and 500,000 entries in the end.
+    let (wide, deep) = if quick { ((20, 10), (10, 20)) } else { ((2_500, 50), (250, 125)) };
+    println!("more appliances");
+    growth(folder.path(), on, |times| (wide.0 * times, wide.1));
+    println!("longer logs");
+    growth(folder.path(), on, |times| (deep.0, deep.1 * times));
 }
 
-/// Time for 1, 2 and 4 times as many entries: linear growth prints 1, 2, 4.
-fn growth(folder: &Path, on: NaiveDate) {
+/// Read from the disk, judge every appliance: what `assess` does before it prints.
+fn whole_pass(store: &Store, on: NaiveDate) -> Result<(), StoreError> {
+    let registers = store.registers()?;
+    let lines = by_appliance(store.lines()?);
+    black_box(assess_all(&registers, &lines, on, |_| true));
+    Ok(())
+}
+
+/// Time of one pass over 1, 2 and 4 times as many entries: linear growth prints 1, 2, 4.
+fn growth(folder: &Path, on: NaiveDate, size: impl Fn(usize) -> (usize, usize)) {
     let mut first = None;
     for times in [1_usize, 2, 4] {
-        let path = folder.join(format!("growth-{times}.db"));
-        fill(&path, 500 * times, 50).expect("a store");
+        let (appliances, each) = size(times);
+        let path = folder.join(format!("growth-{appliances}-{each}.db"));
+        fill(&path, appliances, each).expect("a store");
         let store = Store::open(&path, OpenMode::MustExist).expect("the store opens");
-        let registers = store.registers().expect("registers");
-        let lines = by_appliance(store.lines().expect("lines"));
-        let took = fastest(5, || -> Result<(), StoreError> {
-            black_box(assess_all(&registers, &lines, on, |_| true));
-            Ok(())
-        });
+        let took = fastest(3, || whole_pass(&store, on));
         let base = *first.get_or_insert(took);
-        println!("{:>7} entries     {took:>10.2?}  {:>6.2}x for {times}x", 25_000 * times, ratio(took, base));
+        let entries = appliances * each;
+        println!("{appliances:>7} appliances, {entries:>7} entries  {took:>10.2?}  {:>6.2}x for {times}x", ratio(took, base));
     }
 }
 

@@ -4,8 +4,10 @@
 mod account;
 mod assess;
 mod bad_input;
+mod calendar;
 mod demo;
 mod import;
+mod own_rulebook;
 mod record;
 
 use std::path::{Path, PathBuf};

@@ -143,6 +143,145 @@ fn deadlines_run_from_the_addition() {
     assert!(told(&story.on("2026-05-02")).contains(&"us-82f repair 2026-03-03 due 2026-05-21 open".to_owned()));
 }
 
+/// 82.157(d)(1), (e)(1), (f)(1)(iii) and 84.106(d), (e), (f), from t0 2026-03-03: 120 days where a process shutdown is
+/// needed; parts that are not to be had, at most 180 and 270. The duty's own day stays.
+#[test]
+fn later_due_days_are_told_and_not_taken() {
+    for (book, gas) in [("us-82f", "R-22"), ("us-84c", "R-448A")] {
+        let log = "2026-02-01 charge 1 lb\n2026-03-03 charge 40 lb";
+        let story = Story::new(book, IndustrialProcessRefrigeration, gas, "100 lb").log(log);
+        let assessed = story.on("2026-03-04");
+        assert!(told(&assessed).contains(&format!("{book} repair 2026-03-03 due 2026-04-02 open")), "{:?}", told(&assessed));
+        for kind in ["repair", "initial verification test"] {
+            let duty = assessed.duties.iter().find(|duty| duty.kind.name() == kind).unwrap();
+            let days: Vec<String> = duty.extensions().map(|(day, _)| day.to_string()).collect();
+            assert_eq!(days, ["2026-07-01", "2026-08-30", "2026-11-28"], "{book} {kind}");
+        }
+        let follow_up =
+            assessed.duties.iter().any(|duty| duty.kind.name() == "follow-up verification test" && duty.extensions().count() > 0);
+        assert!(!follow_up);
+    }
+}
+
+/// A later due day moves with its duty while the appliance is mothballed.
+#[test]
+fn mothballing_moves_the_later_due_days_too() {
+    let log = "2025-09-04 charge 1 lb\n2026-03-03 charge 10 lb\n2026-03-13 mothball\n2026-05-01 charge 90 lb mothball";
+    let story = Story::new("us-82f", CommercialRefrigeration, "R-22", "100 lb").log(log);
+    let assessed = story.on("2026-05-02");
+    let repair = assessed.duties.iter().find(|duty| duty.kind.name() == "repair" && duty.from == day("2026-03-03")).unwrap();
+    assert_eq!(repair.due, Some(day("2026-05-21")));
+    assert_eq!(repair.extensions().next().unwrap().0, day("2026-08-19"), "120 and 49 days");
+}
+
+/// 82.157(g)(4): an indirect system alerts at a loss of 50 lb or 10 % of the full charge, whichever is less.
+#[test]
+fn detection_systems_alert_at_the_lesser_mass() {
+    let book = bubblepoint::rules::rulebook("us-82f").unwrap();
+    for (full_charge, alert) in [("400 lb", "40 lb"), ("500 lb", "50 lb"), ("2000 lb", "50 lb")] {
+        let story = Story::new("us-82f", CommercialRefrigeration, "R-22", full_charge).with(|facts| facts.leakage_detection_system = true);
+        let assessed = story.installed("2020-01-01");
+        let assessed = assessed.on("2026-06-01");
+        assert_eq!(bubblepoint::rules::alert_mass(&book.detections[0], &assessed.facts), Some(mass(alert)));
+        let said: Vec<String> = bubblepoint::rules::points(&assessed).into_iter().map(|point| point.text).collect();
+        let words = format!("one that measures losses alerts at {alert}");
+        assert!(said.iter().any(|text| text.contains(&words)), "{said:#?}");
+    }
+}
+
+/// 84.108 (second-hand): 1,500 lb or more, commercial or process refrigeration, by the day of installation.
+#[test]
+fn large_appliances_need_a_detection_system() {
+    let asked = |category, charge: &str, installed: &str| {
+        let story = Story::new("us-84c", category, "R-448A", charge).installed(installed);
+        let found = bubblepoint::rules::points(&story.on("2026-06-01"));
+        found.into_iter().filter(|point| point.source.starts_with("40 CFR 84.108")).map(|point| point.text).collect::<Vec<_>>()
+    };
+    let old = asked(CommercialRefrigeration, "1500 lb", "2017-01-01");
+    assert!(old.len() == 1 && old[0].contains("by 2027-01-01; none is declared"), "{old:?}");
+    let new = asked(IndustrialProcessRefrigeration, "1500 lb", "2026-01-01");
+    assert!(new.len() == 1 && new[0].contains("within 30 days"), "{new:?}");
+    assert_eq!(asked(CommercialRefrigeration, "1499.9 lb", "2026-01-01"), [""; 0]);
+    assert_eq!(asked(CommercialRefrigeration, "1500 lb", "2016-12-31"), [""; 0]);
+    assert_eq!(asked(ComfortCooling, "1500 lb", "2026-01-01"), [""; 0]);
+}
+
+/// 82.156(a)(3): over 5 and under 50 lb, by calendar month and gas.
+#[test]
+fn disposals_of_middle_size_are_added_up_by_month() {
+    let office = crate::support::office::taken(
+        "site,rulebooks\nYard,us-82f",
+        "appliance,site,category,refrigerant,full_charge,unit
+         A,Yard,other,R-22,5,lb
+         B,Yard,other,R-22,5.1,lb
+         C,Yard,other,R-22,49.9,lb
+         D,Yard,other,R-22,50,lb
+         E,Yard,other,R-410A,20,lb
+         F,Yard,other,R-22,20,lb",
+        "date,appliance,what,amount,unit,purpose
+         2026-05-04,A,recover,4,lb,retire\n2026-05-04,A,retire,,,
+         2026-05-04,B,recover,4,lb,retire\n2026-05-04,B,retire,,,
+         2026-05-30,C,recover,40.5,lb,retire\n2026-05-31,C,retire,,,
+         2026-05-04,D,recover,48,lb,retire\n2026-05-04,D,retire,,,
+         2026-05-04,E,recover,18,lb,retire\n2026-05-04,E,retire,,,
+         2026-06-01,F,recover,15,lb,retire\n2026-06-01,F,retire,,,",
+    );
+    let totals = bubblepoint::rules::monthly_disposals(&office.on("2026-12-01"));
+    let found: Vec<_> =
+        totals.iter().map(|total| (total.month.to_string(), total.refrigerant.as_str(), total.recovered, total.appliances)).collect();
+    assert_eq!(
+        found,
+        [
+            ("2026-05-01".to_owned(), "R-22", mass("44.5 lb"), 2),
+            ("2026-05-01".to_owned(), "R-410A", mass("18 lb"), 1),
+            ("2026-06-01".to_owned(), "R-22", mass("15 lb"), 1),
+        ]
+    );
+    assert!(totals.iter().all(|total| total.source == "40 CFR 82.156(a)(3)"));
+}
+
+/// 84.106(a): the exempt subsector is a declaration, told with the reason that was given for it.
+#[test]
+fn the_exempt_subsector_is_declared_with_a_reason() {
+    let mut story = Story::new("us-84c", ComfortCooling, "R-410A", "60 lb");
+    let mut declared = story.appliance.versions.latest().clone();
+    let before = declared.clone();
+    declared.residential_or_light_commercial_ac = true;
+    let dated = |from: Option<&str>, reason: Option<&str>, facts| bubblepoint::ledger::Dated {
+        from: from.map(|text| day(text)),
+        reason: reason.map(str::to_owned),
+        facts,
+    };
+    story.appliance.versions = bubblepoint::ledger::Versions::new(vec![
+        dated(None, None, before),
+        dated(Some("2026-03-01"), Some("packaged rooftop unit of a small shop"), declared),
+    ])
+    .unwrap();
+    assert!(story.on("2026-02-28").rulebooks[0].applies);
+    let after = story.on("2026-03-01");
+    assert!(!after.rulebooks[0].applies && after.rulebooks[0].why.contains("84.106(a)"), "{}", after.rulebooks[0].why);
+    let said: Vec<String> = bubblepoint::rules::points(&after).into_iter().map(|point| point.text).collect();
+    assert!(said.iter().any(|text| text.contains("from 2026-03-01 on") && text.ends_with("reason: packaged rooftop unit of a small shop")));
+}
+
+/// 84.106(a) with 84.64(b): what is counted as nothing is said.
+#[test]
+fn the_scope_says_what_it_counted_as_nothing() {
+    let why = |gas: &str| {
+        let story = Story::new("us-84c", CommercialRefrigeration, gas, "200 lb");
+        let assessed = story.on("2026-06-01");
+        (assessed.rulebooks[0].applies, assessed.rulebooks[0].why.clone())
+    };
+    for (gas, applies) in [("R-408A", true), ("R-406A", false), ("R-414B", false)] {
+        let (found, why) = why(gas);
+        assert!(found == applies && why.contains("ozone-depleting parts count 0"), "{gas}: {why}");
+    }
+    let (applies, unknown) = why("R-1336mzz(E)");
+    assert!(!applies && unknown.contains("is not known and counts as not over 53"), "{unknown}");
+    let (_, known) = why("R-1234yf");
+    assert!(known.contains("not over 53") && !known.contains("ozone"), "{known}");
+}
+
 /// Section 3 of the law's scope: 15.0 and 50.0 lb are in, R-22 is out of part 84.
 #[test]
 fn scope_is_by_full_charge_and_gas() {

@@ -14,7 +14,9 @@ mod eu_boundaries;
 mod ipcc;
 mod montreal_annexes;
 mod ozone_secretariat;
+mod regime_changes;
 mod rsif_table_a;
+mod stories;
 mod uk_factors;
 mod un_p200;
 

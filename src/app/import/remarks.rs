@@ -15,7 +15,7 @@ use crate::ledger::{
 };
 use crate::measure::default_oil_factor;
 use crate::quantity::Mass;
-use crate::rules::{DutyKind, History, rulebook};
+use crate::rules::{Dated, DutyKind, History, installation_bans, rulebook};
 use crate::store::{StoreError, Writing};
 use chrono::NaiveDate;
 use std::collections::{BTreeMap, HashMap, HashSet};
@@ -148,6 +148,11 @@ fn forbidden(site: &Site, history: &History, rows: &HashMap<EntryId, &LogRow>, c
             _ => Vec::new(),
         };
         remarks.extend(found.into_iter().map(|message| remark(row, message)));
+        if let Act::Charge { purpose: ChargePurpose::Installation | ChargePurpose::FactoryCharge, .. } = line.act {
+            let rulebooks = site.versions.on(date).map(|site| site.rulebooks.as_slice()).unwrap_or_default();
+            let warnings = installation_bans(rulebooks, facts, date).into_iter();
+            remarks.extend(warnings.map(|ban| remark(row, format!("put into operation where {} ({})", ban.forbids, ban.source))));
+        }
     }
 }
 
@@ -273,7 +278,7 @@ fn unchecked_detection_systems(
             .rulebooks
             .iter()
             .filter_map(|id| rulebook(id))
-            .find_map(|book| book.duties.iter().find(|row| row.duty == DutyKind::DetectionSystemCheck && row.validity.holds_on(today)));
+            .find_map(|book| book.duties.iter().find(|row| row.duty == DutyKind::DetectionSystemCheck && row.holds_on(today)));
         let declared = appliance.versions.on(today).is_some_and(|facts| facts.leakage_detection_system);
         let Some(asked) = asked.filter(|_| declared && looked_at.insert(appliance.id)) else { continue };
         if !tx.lines_of(appliance.id)?.iter().any(|line| line.act == Act::DetectionSystemCheck) {

@@ -122,11 +122,11 @@ pub(super) fn rulebook_versions(store: &Store, visit: &Visit, on: NaiveDate) -> 
     Ok(rulebooks(&ids).into_iter().map(|book| format!("{} {}", book.id, book.version)).collect::<Vec<_>>().join(", "))
 }
 
-/// Rulebooks come with the program and change with it alone.
+/// A rulebook that comes with the program changes with it alone; a company's own says its fingerprint.
 fn rulebooks(ids: &[String]) -> Vec<record::Rulebook> {
     let known = ids.iter().filter_map(|id| rulebook(id));
     known
-        .map(|book| record::Rulebook { id: book.id.clone(), name: book.title.clone(), version: env!("CARGO_PKG_VERSION").to_owned() })
+        .map(|book| record::Rulebook { id: book.id.clone(), name: book.title.clone(), version: book.version.chars().take(12).collect() })
         .collect()
 }
 

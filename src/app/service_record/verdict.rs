@@ -233,7 +233,20 @@ impl Sight<'_> {
                 source: "40 CFR 82.152, leak rate, rolling average method".to_owned(),
             });
         }
+        notices.extend(
+            self.assessment.rulebooks.iter().filter(|judgement| judgement.applies).flat_map(|judgement| self.of_the_text(judgement)),
+        );
         notices
+    }
+
+    /// How far the law itself was read, and how long this record is kept.
+    fn of_the_text(&self, judgement: &Judgement) -> Vec<Notice> {
+        let Some(book) = rules::rulebook(&judgement.id) else { return Vec::new() };
+        let unread = (!book.confidence.is_empty()).then(|| Notice { text: format!("{}.", book.confidence), source: book.title.clone() });
+        let kept = book
+            .retention(self.assessment.on)
+            .map(|row| Notice { text: format!("Kept for {} years: {}.", row.years, row.what), source: row.source.clone() });
+        unread.into_iter().chain(kept).collect()
     }
 
     fn tests_that_do_not_count(&self) -> HashMap<EntryId, String> {

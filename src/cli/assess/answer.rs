@@ -4,7 +4,7 @@ use crate::app::PROGRAM;
 use crate::gas::Weighting;
 use crate::ledger::Act;
 use crate::quantity::{Mass, Ratio, decimal_text, rounded_text};
-use crate::rules::{Assessment, Duty, Judgement, LeakRate, Loss};
+use crate::rules::{Assessment, Duty, Judgement, LeakRate, Loss, MonthlyDisposal, monthly_disposals};
 use chrono::NaiveDate;
 use serde::Serialize;
 
@@ -13,6 +13,19 @@ struct Whole {
     on: NaiveDate,
     program: &'static str,
     appliances: Vec<OneAppliance>,
+    /// Only with `--explain`.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    disposals: Vec<OneDisposal>,
+}
+
+#[derive(Serialize)]
+struct OneDisposal {
+    month: String,
+    refrigerant: String,
+    recovered_kg: String,
+    appliances: usize,
+    rulebook: String,
+    source: String,
 }
 
 #[derive(Serialize)]
@@ -92,7 +105,19 @@ pub fn json(on: NaiveDate, assessments: &[Assessment], explain: bool) -> anyhow:
             explain: if explain { super::sheet::explanations(assessment) } else { Vec::new() },
         })
         .collect();
-    Ok(serde_json::to_string_pretty(&Whole { on, program: PROGRAM, appliances })? + "\n")
+    let disposals = if explain { monthly_disposals(assessments).into_iter().map(disposal).collect() } else { Vec::new() };
+    Ok(serde_json::to_string_pretty(&Whole { on, program: PROGRAM, appliances, disposals })? + "\n")
+}
+
+fn disposal(total: MonthlyDisposal) -> OneDisposal {
+    OneDisposal {
+        month: total.month.format("%Y-%m").to_string(),
+        refrigerant: total.refrigerant,
+        recovered_kg: total.recovered.kg_text(),
+        appliances: total.appliances,
+        rulebook: total.rulebook,
+        source: total.source,
+    }
 }
 
 fn rulebook(judgement: &Judgement) -> OneRulebook {

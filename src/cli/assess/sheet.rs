@@ -4,7 +4,7 @@ use super::answer::{exact, moved};
 use crate::cli::table::TextTable;
 use crate::ledger::Act;
 use crate::quantity::{Ratio, rounded_text};
-use crate::rules::{Assessment, LeakRate};
+use crate::rules::{Assessment, LeakRate, monthly_disposals, points};
 use chrono::NaiveDate;
 
 pub fn text(on: NaiveDate, assessments: &[Assessment], explain: bool) -> String {
@@ -14,6 +14,19 @@ pub fn text(on: NaiveDate, assessments: &[Assessment], explain: bool) -> String 
     let mut text = format!("as of {on}\n");
     for assessment in assessments {
         one(&mut text, assessment, on, explain);
+    }
+    if explain {
+        for total in monthly_disposals(assessments) {
+            text.push_str(&format!(
+                "\ndisposals in {}: {} kg of {} recovered from {}, {} ({})\n",
+                total.month.format("%Y-%m"),
+                rounded_text(total.recovered.kg(), 3),
+                total.refrigerant,
+                if total.appliances == 1 { "1 appliance".to_owned() } else { format!("{} appliances", total.appliances) },
+                total.rulebook,
+                total.source,
+            ));
+        }
     }
     text
 }
@@ -114,6 +127,7 @@ pub fn explanations(assessment: &Assessment) -> Vec<String> {
             lines.extend(rate.notes.iter().map(|note| format!("{}: {} {note}", judgement.id, rate.on)));
         }
     }
+    lines.extend(points(assessment).into_iter().map(|point| format!("{}: {} ({})", point.rulebook, point.text, point.source)));
     for (index, line) in history.lines.iter().enumerate() {
         if let (Act::Charge { purpose, .. }, false, Some(mass)) = (&line.act, history.counted[index], moved(&line.act)) {
             lines.push(format!("{} charge of {} kg asked for no rate: {purpose}", line.at.date, mass.kg_text()));

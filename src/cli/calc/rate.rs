@@ -54,7 +54,7 @@ pub(super) fn run(args: &RateArgs) -> Result<String, CalcError> {
 
 /// The triggers in force last: of the one category, or of every one that has its own.
 fn stands(book: &Rulebook, percent: Ratio, category: Option<Category>) -> Vec<Stand> {
-    let in_force = book.triggers.iter().filter(|row| row.validity.to.is_none());
+    let in_force = book.triggers.iter().filter(|row| row.to.is_none());
     let rows: Vec<_> = match category {
         Some(category) => in_force.filter(|row| row.category.is_none_or(|own| own == category)).take(1).collect(),
         None => in_force.collect(),

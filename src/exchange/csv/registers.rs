@@ -3,7 +3,7 @@
 use super::table::Fields;
 use crate::ledger::{ApplianceFacts, Category, ChargeMethod, CylinderFacts, CylinderKind, Equipment, GasStatus, RateMethod, SiteFacts};
 use crate::quantity::{GaugePressure, Mass, MassUnit, Volume, Weighing, decimal_text};
-use crate::rules::{built_in, rulebook};
+use crate::rules::{known, rulebook};
 use chrono::NaiveDate;
 
 #[derive(Debug)]
@@ -63,7 +63,7 @@ pub(super) fn site_row(fields: &mut Fields) -> SiteRow {
     }
     for id in &rulebooks {
         if rulebook(id).is_none() {
-            let known: Vec<&str> = built_in().iter().map(|book| book.id.as_str()).collect();
+            let known: Vec<&str> = known().into_iter().map(|book| book.id.as_str()).collect();
             fields.fault("rulebooks", format!("\u{201c}{id}\u{201d} is not a rulebook; known are {}", known.join(", ")));
         }
     }

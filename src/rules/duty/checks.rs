@@ -100,7 +100,7 @@ impl DutySource<'_> {
         // Whether the appliance is large enough cannot be known: asked of every one that would be in scope if it were.
         let large = ApplianceFacts { full_charge: Some(Mass::MOST), ..facts.clone() };
         if self.applies(&large, self.on) {
-            let from = facts.installed_on.map_or(row.validity.from, |installed| installed.max(row.validity.from));
+            let from = facts.installed_on.map_or(row.from, |installed| installed.max(row.from));
             duties.push(self.duty(row, from, None, Some(from)));
         }
     }

@@ -6,10 +6,9 @@ use crate::ledger::{Act, ApplianceFacts};
 use crate::quantity::{Mass, Ratio, add_months};
 use crate::rules::book::{CountedFrom, DutyKind, DutyRow};
 use crate::rules::rate::{LeakRate, Verdict};
-use crate::rules::scope::applicability;
+use crate::rules::scope::taking;
 use chrono::{Datelike, Days, NaiveDate};
 
-const MONTHS_A_YEAR: u32 = 12;
 /// No inspection series is followed further than this.
 const MOST_PERIODS: u32 = 400;
 
@@ -49,6 +48,11 @@ impl DutySource<'_> {
         rate.on.checked_sub_days(Days::new(days.unsigned_abs())).unwrap_or(NaiveDate::MIN)
     }
 
+    /// Last day of the rule that takes the appliance on a day, where it has one.
+    fn scope_ends(&self, facts: &ApplianceFacts, day: NaiveDate) -> Option<NaiveDate> {
+        taking(self.book, facts, day).and_then(|row| row.to)
+    }
+
     pub(super) fn after_exceedance(&self, index: usize, rate: &LeakRate, duties: &mut Vec<Duty>) {
         let history = self.history;
         let Some(facts) = history.facts_at(rate.charge) else { return };
@@ -74,9 +78,10 @@ impl DutySource<'_> {
         self.plan(index, rate, &answer, facts, duties);
         self.inspections(rate, &answer, facts, duties);
         // A rule's end ends all that followed from an exceedance under it.
-        let scope_ends = applicability(self.book, facts, rate.on).until;
+        let scope_ends = self.scope_ends(facts, rate.on);
         for duty in &mut duties[first..] {
             duty.rule_ends = [duty.rule_ends, scope_ends].into_iter().flatten().min();
+            duty.exceeded_on = Some(rate.on);
         }
     }
 
@@ -119,13 +124,14 @@ impl DutySource<'_> {
         let Some(row) = self.row(DutyKind::LeakInspection, facts, rate.on) else { return };
         let periods = self.inspection_periods(row, from);
         let series_ends = periods.ends;
-        let scope_ends = applicability(self.book, facts, rate.on).until;
+        let scope_ends = self.scope_ends(facts, rate.on);
         for (number, (after, end)) in periods.days.into_iter().enumerate() {
             let begins = if number == 0 { from } else { after_days(after, Some(1)) };
             if begins > self.on || scope_ends.is_some_and(|last| begins > last) {
                 break;
             }
             let mut duty = self.duty(row, from, Some(start), Some(end));
+            duty.period = u32::try_from(number + 1).unwrap_or(u32::MAX);
             // A calendar year's clock starts with the year.
             duty.clock_from = if row.calendar_year { begins } else { from };
             let inspected = history.first_after(Some(start), |line| {
@@ -145,8 +151,7 @@ impl DutySource<'_> {
     fn inspection_periods(&self, row: &DutyRow, from: NaiveDate) -> Periods {
         let over: Vec<NaiveDate> = self.rates.iter().filter(|rate| rate.verdict == Verdict::Over).map(|rate| rate.on).collect();
         let over_within = |after: NaiveDate, end: NaiveDate| over.iter().copied().filter(|&day| after < day && day <= end).max();
-        let months = row.months.unwrap_or(MONTHS_A_YEAR);
-        if let Some(needed) = row.clean_periods {
+        if let (Some(needed), Some(months)) = (row.clean_periods, row.months) {
             let (mut days, mut clean, mut after) = (Vec::new(), 0, from);
             for period in 1..=MOST_PERIODS {
                 let end = add_months(from, months * period);
@@ -159,18 +164,20 @@ impl DutySource<'_> {
             }
             return Periods { days, ends: after };
         }
+        // A row of a series says after how many clean months it ends: `own::faults`.
+        let clean_months = row.clean_months.unwrap_or_default();
         let mut last_over = from;
-        while let Some(day) = over_within(last_over, add_months(last_over, MONTHS_A_YEAR)) {
+        while let Some(day) = over_within(last_over, add_months(last_over, clean_months)) {
             last_over = day;
         }
-        let ends = add_months(last_over, MONTHS_A_YEAR);
+        let ends = add_months(last_over, clean_months);
         let mut days = Vec::new();
         let mut after = from;
         for period in 1..=MOST_PERIODS {
             let end = if row.calendar_year {
                 NaiveDate::from_ymd_opt(from.year() + period.cast_signed() - 1, 12, 31).unwrap_or(NaiveDate::MAX)
             } else {
-                add_months(from, months * period)
+                add_months(from, row.months.unwrap_or(clean_months) * period)
             };
             days.push((after, end));
             after = end;
@@ -247,7 +254,7 @@ impl DutySource<'_> {
                 let mut duty = self.duty(row, day, Some(line), due);
                 duty.meet(history, history.first_after(Some(line), |later| matches!(history.lines[later].act, Act::ReportSent)));
                 self.stop_clock(&mut duty);
-                duty.rule_ends = [duty.rule_ends, applicability(self.book, facts, day).until].into_iter().flatten().min();
+                duty.rule_ends = [duty.rule_ends, self.scope_ends(facts, day)].into_iter().flatten().min();
                 duties.push(duty);
             }
         }

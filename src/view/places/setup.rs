@@ -9,7 +9,7 @@ use super::{Form, Go, Office, Place, id};
 use crate::app::App;
 use crate::ledger::{Instrument, InstrumentId, InstrumentKind, PersonId, SiteId, VisitState};
 use crate::quantity::MassUnit;
-use crate::rules::built_in;
+use crate::rules::known;
 use crate::store::VisitFilter;
 use crate::view::format;
 use crate::view::shown::{Choice, Fact, Verdict};
@@ -112,7 +112,7 @@ pub fn mass_units() -> Vec<Choice> {
 /// The titles of every rulebook and the tables of gas values, for About.
 pub fn sources() -> Vec<Fact> {
     vec![
-        Fact::new("rulebooks", built_in().iter().map(|book| book.title.as_str()).collect::<Vec<_>>().join("; ")),
+        Fact::new("rulebooks", known().into_iter().map(|book| book.title.as_str()).collect::<Vec<_>>().join("; ")),
         Fact::new("ODP", "Montreal Protocol, annexes A to E"),
         Fact::new("GWP", "IPCC AR4, AR5, AR6; tables of the rulebooks"),
     ]

@@ -5,7 +5,7 @@ use super::plant::{FormMsg, Pane};
 use super::{Form, Go, Office};
 use crate::app::{App, NewSite};
 use crate::ledger::{RateMethod, SiteFacts, SiteId};
-use crate::rules::{self, built_in};
+use crate::rules::{self, known};
 use crate::view::shown::{Choice, Ready};
 use crate::view::words::office as say;
 
@@ -73,12 +73,12 @@ impl Office {
             facts: about(&book.id).to_owned(),
             on: self.plant.site_form.is_on(&format!("rulebook {}", book.id)),
         };
-        built_in().iter().map(choice).collect()
+        known().into_iter().map(choice).collect()
     }
 
     /// A method matters only where a chosen rulebook has a leak rate.
     pub fn site_form_asks_method(&self) -> bool {
-        built_in().iter().any(|book| !book.rates.is_empty() && self.plant.site_form.is_on(&format!("rulebook {}", book.id)))
+        known().into_iter().any(|book| !book.rates.is_empty() && self.plant.site_form.is_on(&format!("rulebook {}", book.id)))
     }
 
     pub fn site_form_ready(&self) -> Ready {
@@ -155,7 +155,7 @@ impl Office {
         let site = self.plant.changed_site.and_then(|id| registers?.site(id));
         let before = site.map(|site| site.versions.latest().rulebooks.clone()).unwrap_or_default();
         let on = |id: &str| self.plant.site_form.is_on(&format!("rulebook {id}"));
-        let added = built_in().iter().map(|book| book.id.clone()).filter(|id| !before.contains(id));
+        let added = known().into_iter().map(|book| book.id.clone()).filter(|id| !before.contains(id));
         before.iter().cloned().chain(added).filter(|id| on(id)).collect()
     }
 }

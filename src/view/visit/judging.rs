@@ -4,7 +4,7 @@ use crate::app::ApplianceStanding;
 use crate::ledger::{Act, EntryId, Line, RateMethod};
 use crate::measure::{CylinderLimit, LimitKind};
 use crate::quantity::{Mass, MassUnit, Ratio, parse_decimal};
-use crate::rules::{self, Assessment, Duty, DutyState, Judgement, LeakRate, assess, rulebook};
+use crate::rules::{self, Assessment, Duty, DutyState, Judgement, LeakRate, assess, points, rulebook};
 use crate::view::shown::{Fact, MassBar, MassLimit, Rate, Reason, Verdict};
 use crate::view::{format, shown, words};
 use chrono::NaiveDate;
@@ -176,6 +176,13 @@ impl Sight<'_> {
                 });
             }
         }
+        // What else the rulebooks ask: detection systems, records, later due days, gas that may not be used.
+        reasons.extend(points(self.assessment).into_iter().map(|point| Reason {
+            title: title(&point.rulebook),
+            text: words::sentence(&point.text),
+            source: point.source,
+            ..Reason::default()
+        }));
         reasons
     }
 
