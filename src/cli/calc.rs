@@ -2,14 +2,16 @@
 
 mod fill;
 mod gas;
+mod hold;
 mod leak;
 mod rate;
 mod room;
 mod saturation;
 mod sheet;
+mod vacuum;
 
 use crate::gas::Gas;
-use crate::quantity::{Mass, QuantityError, Volume};
+use crate::quantity::{Mass, PressureStep, QuantityError, Ratio, Temperature, TemperatureStep, Volume, WrittenPressure};
 use clap::{Args, Subcommand, ValueEnum};
 
 /// What goes wrong in a calculation that was asked for rightly. The sentence says what to do.
@@ -36,6 +38,10 @@ pub enum CalcCommand {
     Rate(rate::RateArgs),
     /// How much a cylinder may take, and which limit binds
     Fill(fill::FillArgs),
+    /// A pressure hold with dry nitrogen: what was lost, and what the hold could have shown
+    Hold(hold::HoldArgs),
+    /// A vacuum rise, judged by its shape
+    Vacuum(vacuum::VacuumArgs),
     /// A leak in all its units
     Leak(leak::LeakArgs),
     /// The whole charge let into a room, against each limit
@@ -61,6 +67,8 @@ pub fn run(args: &CalcArgs) -> Result<String, CalcError> {
         CalcCommand::Gas(args) => gas::run(args),
         CalcCommand::Rate(args) => rate::run(args),
         CalcCommand::Fill(args) => fill::run(args),
+        CalcCommand::Hold(args) => hold::run(args),
+        CalcCommand::Vacuum(args) => vacuum::run(args),
         CalcCommand::Leak(args) => leak::run(args),
         CalcCommand::Room(args) => room::run(args),
         CalcCommand::Saturation(args) => saturation::run(args),
@@ -77,6 +85,30 @@ fn find_gas(name: &str) -> Result<&'static Gas, CalcError> {
         };
         CalcError::UnknownGas { name: name.trim().to_owned(), hint }
     })
+}
+
+fn float(value: Ratio) -> f64 {
+    *value.numer() as f64 / *value.denom() as f64
+}
+
+fn temperature(text: &str) -> Result<Temperature, String> {
+    Temperature::from_written(text).map_err(|error| error.to_string())
+}
+
+fn temperature_step(text: &str) -> Result<TemperatureStep, String> {
+    TemperatureStep::from_written(text).map_err(|error| error.to_string())
+}
+
+fn pressure(text: &str) -> Result<WrittenPressure, String> {
+    WrittenPressure::from_written(text).map_err(|error| error.to_string())
+}
+
+fn pressure_step(text: &str) -> Result<PressureStep, String> {
+    PressureStep::from_written(text).map_err(|error| error.to_string())
+}
+
+fn volume(text: &str) -> Result<Volume, String> {
+    Volume::from_written(text).map_err(|error| error.to_string())
 }
 
 /// A mass above zero.

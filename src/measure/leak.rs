@@ -1,9 +1,8 @@
 //! Leaks in the units people use.
 
+use super::nitrogen::GAS_CONSTANT;
 use crate::gas::Gas;
 
-/// J/(mol K), exact in the SI since 2019, to ten digits.
-const GAS_CONSTANT: f64 = 8.314_462_618;
 /// A year of 365 days.
 const SECONDS_PER_YEAR: f64 = 31_536_000.0;
 /// Pa·m³/s in one atm·cm³/s.

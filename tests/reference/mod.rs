@@ -15,6 +15,7 @@ mod ipcc;
 mod montreal_annexes;
 mod ozone_secretariat;
 mod regime_changes;
+mod pressure_and_vacuum;
 mod rsif_table_a;
 mod stories;
 mod uk_factors;

@@ -1,7 +1,7 @@
 //! `calc leak`: a leak in all its units.
 
 use super::sheet::{Sheet, json_text, row, significant};
-use super::{CalcError, CalcFormat, find_gas};
+use super::{CalcError, CalcFormat, find_gas, float, temperature};
 use crate::measure::{Leak, LeakUnit};
 use crate::quantity::{Temperature, decimal_text};
 use clap::Args;
@@ -33,15 +33,11 @@ fn rate(text: &str) -> Result<(f64, LeakUnit), String> {
     if value.is_finite() && value > 0.0 && value < 1e9 { Ok((value, unit)) } else { Err("must be above zero, and a leak".to_owned()) }
 }
 
-fn temperature(text: &str) -> Result<Temperature, String> {
-    Temperature::from_written(text).map_err(|error| error.to_string())
-}
-
 pub(super) fn run(args: &LeakArgs) -> Result<String, CalcError> {
     let gas = find_gas(&args.refrigerant)?;
     let kelvin = args.temperature.kelvin();
     let (rate, unit) = args.rate;
-    let leak = Leak::new(gas, rate, unit, *kelvin.numer() as f64 / *kelvin.denom() as f64)
+    let leak = Leak::new(gas, rate, unit, float(kelvin))
         .ok_or_else(|| CalcError::Cannot(format!("the catalogue has no molar mass of {}", gas.designation())))?;
     let celsius = decimal_text(args.temperature.celsius()).unwrap_or_else(|| crate::quantity::rounded_text(args.temperature.celsius(), 2));
     let molar = gas.molar_mass().and_then(|figure| decimal_text(figure.value)).unwrap_or_default();

@@ -1,7 +1,7 @@
 //! `calc room`: the whole charge let into a room.
 
 use super::sheet::{Sheet, json_text, row, significant};
-use super::{CalcError, CalcFormat, find_gas, positive_mass};
+use super::{CalcError, CalcFormat, find_gas, float, positive_mass, volume};
 use crate::gas::Gas;
 use crate::measure::{RoomCheck, RoomLimit, RoomLimitKind, parts_per_million, room_check};
 use crate::quantity::{Mass, Ratio, Volume, decimal_text, rounded_text};
@@ -26,10 +26,6 @@ const PERMISSION: &str = "Passing is no permission: local codes, the maker's man
 const CHECK: &str = "Limits from memory or second-hand: check against your own copy of the standard.";
 const PPM: &str = "ppm by volume: ideal gas at 25 \u{b0}C and 1 atm, 24.465 l/mol";
 
-fn volume(text: &str) -> Result<Volume, String> {
-    Volume::from_written(text).map_err(|error| error.to_string())
-}
-
 pub(super) fn run(args: &RoomArgs) -> Result<String, CalcError> {
     let gas = find_gas(&args.refrigerant)?;
     let check = room_check(gas, args.charge, args.volume);
@@ -37,10 +33,6 @@ pub(super) fn run(args: &RoomArgs) -> Result<String, CalcError> {
         CalcFormat::Table => table(args, gas, &check),
         CalcFormat::Json => json_text(&json(args, gas, &check)),
     })
-}
-
-fn float(value: Ratio) -> f64 {
-    *value.numer() as f64 / *value.denom() as f64
 }
 
 fn ppm(gas: &Gas, kg_per_m3: Ratio) -> String {

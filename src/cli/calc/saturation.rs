@@ -1,7 +1,7 @@
 //! `calc saturation`: between liquid and vapour, and what a cylinder's pressure means.
 
 use super::sheet::{Sheet, json_text, row};
-use super::{CalcError, CalcFormat, find_gas};
+use super::{CalcError, CalcFormat, find_gas, float, pressure, pressure_step, temperature, temperature_step};
 use crate::gas::Gas;
 use crate::measure::{PressureCheck, PressureVerdict, pressure_check};
 use crate::quantity::{PressureStep, Ratio, Temperature, TemperatureStep, WrittenPressure, rounded_text};
@@ -29,26 +29,6 @@ pub struct SaturationArgs {
 
 const ATMOSPHERE: &str = "gauge pressures are against the standard atmosphere, 1.01325 bar";
 const BUBBLE: &str = "a still cylinder with liquid in it shows the bubble pressure, also for a blend with glide";
-
-fn temperature(text: &str) -> Result<Temperature, String> {
-    Temperature::from_written(text).map_err(|error| error.to_string())
-}
-
-fn temperature_step(text: &str) -> Result<TemperatureStep, String> {
-    TemperatureStep::from_written(text).map_err(|error| error.to_string())
-}
-
-fn pressure(text: &str) -> Result<WrittenPressure, String> {
-    WrittenPressure::from_written(text).map_err(|error| error.to_string())
-}
-
-fn pressure_step(text: &str) -> Result<PressureStep, String> {
-    PressureStep::from_written(text).map_err(|error| error.to_string())
-}
-
-fn float(value: Ratio) -> f64 {
-    *value.numer() as f64 / *value.denom() as f64
-}
 
 const ATM_BAR: f64 = 1.01325;
 const BAR_PER_PSI: f64 = 0.068_947_572_931_683_6;
