@@ -2,9 +2,10 @@
 //! a first day and, where someone says, a reason.
 
 use super::entries::known_gas;
+use super::installation::entry_before;
 use super::{App, AppError};
 use crate::ledger::{
-    Appliance, ApplianceFacts, ApplianceId, Category, Company, Cylinder, CylinderFacts, CylinderId, Dated, Instrument, InstrumentId,
+    Appliance, ApplianceFacts, ApplianceId, Category, Company, Cylinder, CylinderFacts, CylinderId, Dated, Instrument, InstrumentId, Line,
     Person, PersonId, ReadAt, Site, SiteFacts, SiteId, Versions,
 };
 use crate::quantity::{Mass, Weighing};
@@ -64,7 +65,8 @@ impl App {
     }
 
     /// # Errors
-    /// The identification is missing or taken at this site; the gas is unknown; the full charge is not above zero.
+    /// The identification is missing or taken at this site; the gas is unknown; the full charge is not above zero;
+    /// it was installed after today, or after something was done to it.
     pub fn add_appliance(&self, new: &NewAppliance) -> Result<ApplianceId, AppError> {
         self.add_appliance_with(new.site, &new.name, new.facts()?)
     }
@@ -77,7 +79,8 @@ impl App {
         let facts = sound_appliance(facts)?;
         let appliance = Appliance { id: ApplianceId(self.new_id()), site, name: named(name)?, versions: Versions::always(facts) };
         self.store.write(self.now(), |tx| {
-            tx.site(site)?.ok_or(AppError::Unknown { what: "site" })?;
+            let site = tx.site(site)?.ok_or(AppError::Unknown { what: "site" })?;
+            self.sound_installation(&site, &appliance, appliance.there_since(), &[])?;
             Ok::<_, AppError>(tx.add_appliance(&appliance)?)
         })?;
         Ok(appliance.id)
@@ -90,9 +93,27 @@ impl App {
     pub fn change_appliance(&self, appliance: ApplianceId, facts: ApplianceFacts, from: NaiveDate, reason: &str) -> Result<(), AppError> {
         let facts = sound_appliance(facts)?;
         self.store.write(self.now(), |tx| {
-            tx.appliance(appliance)?.ok_or(AppError::Unknown { what: "appliance" })?;
+            let known = tx.appliance(appliance)?.ok_or(AppError::Unknown { what: "appliance" })?;
+            let site = tx.site(known.site)?.ok_or(AppError::Unknown { what: "site" })?;
+            self.sound_installation(&site, &known, facts.installed_on, &tx.lines_of(appliance)?)?;
             Ok(tx.add_appliance_version(appliance, &dated(from, reason, facts))?)
         })
+    }
+
+    fn sound_installation(&self, site: &Site, appliance: &Appliance, stated: Option<NaiveDate>, lines: &[Line]) -> Result<(), AppError> {
+        let Some(installed) = stated else { return Ok(()) };
+        let today = self.today_there(site);
+        if installed > today {
+            let sentence = format!("{installed} has not come yet at this site; leave the day empty until the appliance stands.");
+            return Err(AppError::input("installed on", sentence));
+        }
+        match entry_before(installed, appliance, lines) {
+            Some(first) => {
+                let sentence = format!("There is a {} on {}, before {installed}. Correct the day.", first.act.name(), first.at.date);
+                Err(AppError::input("installed on", sentence))
+            }
+            None => Ok(()),
+        }
     }
 
     /// # Errors

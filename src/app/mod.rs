@@ -13,6 +13,7 @@ mod entries;
 mod error;
 mod import;
 mod inputs;
+mod installation;
 mod limits;
 mod methods;
 mod paper;

@@ -3,5 +3,6 @@
 mod corrections;
 mod cylinders;
 mod import;
+mod installation;
 mod refusals;
 mod visits;

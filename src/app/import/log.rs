@@ -97,7 +97,7 @@ pub(super) fn take<'a>(
 
 /// The law's day is the site's.
 fn today_at(app: &App, site: Option<&Site>) -> NaiveDate {
-    site.map_or_else(|| app.today(), |site| app.moment_in(app.zone_of(site.versions.latest())).date)
+    site.map_or_else(|| app.today(), |site| app.today_there(site))
 }
 
 fn write(tx: &Writing<'_>, registers: &Registers, entries: &[Taken]) -> Result<(), ImportError> {

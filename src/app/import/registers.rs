@@ -6,6 +6,7 @@
 use super::columns::{Columns, differences};
 use super::{ImportError, Imported, Parts};
 use crate::app::App;
+use crate::app::installation::entry_before;
 use crate::exchange::csv::{ApplianceRow, BadLine, Kind};
 use crate::ledger::{Appliance, ApplianceFacts, ApplianceId, Cylinder, CylinderId, Dated, Registers, Site, SiteFacts, SiteId, Versions};
 use crate::store::Writing;
@@ -115,7 +116,7 @@ fn appliances<'a>(
 }
 
 fn installed_after_today(app: &App, site: &Site, row: &ApplianceRow, line: &Line<'_, ApplianceFacts>) -> Option<BadLine> {
-    let today = app.moment_in(app.zone_of(site.versions.latest())).date;
+    let today = app.today_there(site);
     let installed = row.facts.installed_on.filter(|installed| *installed > today)?;
     Some(line.fault("installed_on", format!("{installed} is after today, {today}; leave it empty until the appliance stands")))
 }
@@ -132,7 +133,7 @@ fn installed_after_entries(
     let Some((installed, line)) = stated.min_by_key(|(installed, _)| *installed).filter(|_| appliance.there_since().is_none()) else {
         return Ok(());
     };
-    if let Some(first) = tx.lines_of(appliance.id)?.iter().min_by_key(|line| line.at.date).filter(|first| first.at.date < installed) {
+    if let Some(first) = entry_before(installed, appliance, &tx.lines_of(appliance.id)?) {
         let message = format!("{installed} is after {}, when the store has a {}; correct the day", first.at.date, first.act.name());
         bad.push(line.fault("installed_on", message));
     }

@@ -272,7 +272,7 @@ fn unchecked_detection_systems(
     for row in parts.appliances.iter().rev().filter(|row| row.facts.leakage_detection_system) {
         let Some(site) = registers.site_named(&row.site) else { continue };
         let Some(appliance) = registers.appliances_at(site.id).find(|appliance| appliance.name == row.name) else { continue };
-        let today = app.moment_in(app.zone_of(site.versions.latest())).date;
+        let today = app.today_there(site);
         let site_facts = site.versions.on(today).unwrap_or_else(|| site.versions.latest());
         let asked = site_facts
             .rulebooks

@@ -15,7 +15,8 @@ use words::office as say;
 const MOST_OFFERED: usize = 6;
 
 /// The fields of `AppError::Input`, and what the form calls them.
-const FIELDS: [(&str, &str); 4] = [("name", "identification"), ("refrigerant", "gas"), ("gas", "gas"), ("full charge", "full-charge")];
+const FIELDS: [(&str, &str); 5] =
+    [("name", "identification"), ("refrigerant", "gas"), ("gas", "gas"), ("full charge", "full-charge"), ("installed on", "installed-on")];
 
 /// Gases that fit what is typed so far, the shortest name first; none once one is written out.
 pub fn gases_like(typed: &str) -> Vec<Choice> {
@@ -157,6 +158,8 @@ impl Office {
             }
             Err(error) => {
                 self.fault(error, |office| &mut office.plant.appliance_form, &FIELDS);
+                let form = &mut self.plant.appliance_form;
+                form.more |= !form.error("installed-on").is_empty();
                 Vec::new()
             }
         }
