@@ -179,16 +179,17 @@ impl DutySource<'_> {
         }
     }
 
-    /// Mothballing stops an open duty's clock until gas is charged again.
+    /// Mothballing stops an open duty's clock until gas is charged again. What
+    /// is done meanwhile is done in time.
     fn stop_clock(&self, duty: &mut Duty) {
         let history = self.history;
         for &line in history.mothballs() {
             let day = history.date(line);
             let resumed = history.first_after(Some(line), |after| history.is_charge(after));
             let over_before_it_began = resumed.is_some_and(|charge| history.date(charge) <= duty.clock_from);
-            let met_before = duty.met_by.is_some_and(|met| met < line || resumed.is_none_or(|charge| met < charge));
+            let done_before = duty.met_by.is_some_and(|met| met < line) || duty.ended_on.or(duty.rule_ends).is_some_and(|end| end < day);
             let late = duty.due.is_some_and(|due| due < day);
-            if over_before_it_began || met_before || late {
+            if over_before_it_began || done_before || late {
                 continue;
             }
             match resumed {
@@ -210,7 +211,7 @@ impl DutySource<'_> {
         if let Some(retired) = self.history.retired_on().filter(|_| duty.kind != DutyKind::ChronicLeakReport) {
             duty.end(retired);
         }
-        if duty.suspended && duty.met_on.is_none() && duty.ended_on.is_none() {
+        if duty.suspended && duty.ended_on.is_none() {
             duty.due = None;
         }
     }

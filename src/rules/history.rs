@@ -40,8 +40,11 @@ pub struct Work {
     pub first_charge: Option<usize>,
     /// First charge for which a rate is due.
     pub first_counted: Option<usize>,
-    /// The work that this one continues: same leak, one rate.
-    pub continues: Option<usize>,
+    /// The number of the first work of the leak that this one is about: works
+    /// of one leak have one rate.
+    leak: usize,
+    /// Later works of the leak, at its first.
+    joined: Vec<usize>,
 }
 
 impl<'a> History<'a> {
@@ -112,9 +115,15 @@ impl<'a> History<'a> {
         self.lines[index].job.as_deref()
     }
 
-    /// The work of a line and those it continues, latest first.
+    /// The works of one leak: that of a line and all that were joined to it by
+    /// the end of the line's day, whichever of them came first.
     pub fn chain(&self, index: usize) -> impl Iterator<Item = &Work> {
-        std::iter::successors(Some(self.work(index)), |work| work.continues.map(|earlier| &self.works[earlier]))
+        let (work, day) = (self.work_of[index], self.date(index));
+        let first = self.works[work].leak;
+        std::iter::once(first).chain(self.works[first].joined.iter().copied()).filter_map(move |number| {
+            let begun = self.works[number].first_counted.is_some_and(|first| self.date(first) <= day);
+            (number == work || begun).then(|| &self.works[number])
+        })
     }
 
     /// The first charge, of any purpose, of the work or chain of a line.
@@ -193,8 +202,9 @@ impl<'a> History<'a> {
         let mut numbers: HashMap<usize, usize> = HashMap::new();
         for (index, &group) in group_of.iter().enumerate() {
             let number = *numbers.entry(groups.root(group)).or_insert_with(|| {
-                self.works.push(Work::default());
-                self.works.len() - 1
+                let leak = self.works.len();
+                self.works.push(Work { leak, ..Work::default() });
+                leak
             });
             self.work_of[index] = number;
             self.works[number].lines.push(index);
@@ -246,7 +256,9 @@ impl<'a> History<'a> {
                 && let Some(start) = self.works[previous].first_counted
                 && !(start + 1..index).any(|i| self.is_follow_up_that_counts(i))
             {
-                self.works[number].continues = Some(previous);
+                let leak = self.works[previous].leak;
+                self.works[number].leak = leak;
+                self.works[leak].joined.push(number);
             }
             earlier = Some(number);
         }

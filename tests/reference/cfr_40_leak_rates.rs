@@ -143,6 +143,39 @@ fn deadlines_run_from_the_addition() {
     assert!(told(&story.on("2026-05-02")).contains(&"us-82f repair 2026-03-03 due 2026-05-21 open".to_owned()));
 }
 
+/// While an appliance is mothballed no clock runs: what is done then is in time, and what was done or had ended before stays
+/// where it stood (82.157(d)(1), the definition of *mothball* in 82.152).
+#[test]
+fn a_stopped_clock_moves_only_what_was_open() {
+    let log = "2020-11-30 charge 10 lb\n2021-02-27 charge 10 lb\n";
+    let on = |more: &str, day: &str| told(&Story::new("us-82f", ComfortCooling, "R-22", "100 lb").log(&format!("{log}{more}")).on(day));
+    let has = |told: Vec<String>, line: &str| assert!(told.contains(&line.to_owned()), "{line}: {told:#?}");
+
+    let meanwhile = "2021-02-28 mothball\n2021-08-03 repair\n2021-08-04 initial verification test: pass\n";
+    has(on(meanwhile, "2021-08-02"), "us-82f repair 2021-02-27 due none suspended");
+    has(on(meanwhile, "2021-09-01"), "us-82f repair 2021-02-27 due none met 2021-08-03");
+    let resumed = format!("{meanwhile}2021-10-08 charge 2 lb trim");
+    has(on(&resumed, "2021-11-10"), "us-82f repair 2021-02-27 due 2021-11-06 met 2021-08-03");
+
+    let planned = "2021-03-01 plan made\n2021-03-05 mothball\n2021-10-08 charge 2 lb trim";
+    has(on(planned, "2021-11-10"), "us-82f retrofit or retirement plan 2021-02-27 due 2021-03-29 met 2021-03-01");
+
+    let ended = "2022-05-05 mothball\n2022-06-08 charge 2 lb trim";
+    for day in ["2022-06-01", "2022-07-01"] {
+        has(on(ended, day), "us-82f leak inspection 2021-02-27 due 2022-12-31 ended");
+    }
+}
+
+/// *Same leak* joins works whichever comes first: a later day of the earlier job has the joined work's gas in its rate too.
+#[test]
+fn works_of_one_leak_have_one_rate() {
+    let log = "2023-08-27 J1 charge 21.9 lb\n2024-12-31 charge 46 lb same leak\n2026-01-06 J1 charge 21.9 lb";
+    let story = Story::new("us-82f", IndustrialProcessRefrigeration, "R-408A", "73 lb").log(log);
+    for (day, added) in [("2024-12-31", "67.9 lb"), ("2026-01-06", "89.8 lb")] {
+        assert_eq!(rate(&story.on(day), "us-82f").map(|rate| rate.added), Some(mass(added)), "{day}");
+    }
+}
+
 /// 82.157(d)(1), (e)(1), (f)(1)(iii) and 84.106(d), (e), (f), from t0 2026-03-03: 120 days where a process shutdown is
 /// needed; parts that are not to be had, at most 180 and 270. The duty's own day stays.
 #[test]

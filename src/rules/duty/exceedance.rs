@@ -17,6 +17,9 @@ struct Answer {
     repair: Option<usize>,
     initial: Option<usize>,
     follow_up: Option<usize>,
+    /// Last day of the rule that takes the appliance, where it has one: it
+    /// ends all that follows.
+    ends: Option<NaiveDate>,
 }
 
 /// The periods of an inspection series: each from after a day to a day.
@@ -26,25 +29,29 @@ struct Periods {
 }
 
 impl DutySource<'_> {
-    fn answer(&self, rate: &LeakRate) -> Answer {
+    fn answer(&self, rate: &LeakRate, facts: &ApplianceFacts) -> Answer {
         let history = self.history;
         let start = history.first_charge_of_chain(rate.charge).unwrap_or(rate.charge);
         let before = history.last_charge_before(start);
         let jobs: Vec<&str> = history.chain(rate.charge).flat_map(|work| work.lines.iter()).filter_map(|&line| history.job(line)).collect();
-        let earliest = self.earliest_repair(rate);
+        let earliest = self.earliest_repair(rate, facts);
         let repair = history.first_after(before, |line| {
             history.is_lasting_repair(line) && (history.date(line) >= earliest || history.job(line).is_some_and(|job| jobs.contains(&job)))
         });
         let initial = repair.and_then(|repair| history.first_after(Some(repair), |line| history.is_passed_initial_test(line)));
         let follow_up =
             initial.and_then(|initial| history.first_after(Some(initial.max(rate.charge)), |line| history.is_follow_up_that_counts(line)));
-        Answer { repair, initial, follow_up }
+        Answer { repair, initial, follow_up, ends: self.scope_ends(facts, rate.on) }
+    }
+
+    /// A duty that answers a rate over the trigger.
+    fn answering(&self, rate: &LeakRate, answer: &Answer, duty: Duty) -> Duty {
+        Duty { rule_ends: [duty.rule_ends, answer.ends].into_iter().flatten().min(), exceeded_on: Some(rate.on), ..duty }
     }
 
     /// A repair made shortly before the addition answers it too, as far back as the row says.
-    fn earliest_repair(&self, rate: &LeakRate) -> NaiveDate {
-        let facts = self.history.facts_at(rate.charge);
-        let days = facts.and_then(|facts| self.row(DutyKind::Repair, facts, rate.on)).and_then(|row| row.days_before).unwrap_or(0);
+    fn earliest_repair(&self, rate: &LeakRate, facts: &ApplianceFacts) -> NaiveDate {
+        let days = self.row(DutyKind::Repair, facts, rate.on).and_then(|row| row.days_before).unwrap_or(0);
         rate.on.checked_sub_days(Days::new(days.unsigned_abs())).unwrap_or(NaiveDate::MIN)
     }
 
@@ -56,11 +63,11 @@ impl DutySource<'_> {
     pub(super) fn after_exceedance(&self, index: usize, rate: &LeakRate, duties: &mut Vec<Duty>) {
         let history = self.history;
         let Some(facts) = history.facts_at(rate.charge) else { return };
-        let answer = self.answer(rate);
-        let first = duties.len();
+        let answer = self.answer(rate, facts);
         for (kind, met_by) in [(DutyKind::Repair, answer.repair), (DutyKind::InitialVerification, answer.initial)] {
             if let Some(row) = self.row(kind, facts, rate.on) {
-                let mut duty = self.duty(row, rate.on, Some(rate.charge), Some(after_days(rate.on, row.days)));
+                let due = Some(after_days(rate.on, row.days));
+                let mut duty = self.answering(rate, &answer, self.duty(row, rate.on, Some(rate.charge), due));
                 duty.meet(history, met_by);
                 self.stop_clock(&mut duty);
                 duties.push(duty);
@@ -69,7 +76,7 @@ impl DutySource<'_> {
         if let (Some(initial), Some(row)) = (answer.initial, self.row(DutyKind::FollowUpVerification, facts, rate.on)) {
             let latest = self.follow_up_from(rate, initial);
             let due = self.follow_up_runs(rate, initial).then(|| after_days(latest, row.days));
-            let mut duty = self.duty(row, history.date(initial), Some(initial), due);
+            let mut duty = self.answering(rate, &answer, self.duty(row, history.date(initial), Some(initial), due));
             duty.clock_from = latest;
             duty.meet(history, answer.follow_up);
             self.stop_clock(&mut duty);
@@ -77,12 +84,6 @@ impl DutySource<'_> {
         }
         self.plan(index, rate, &answer, facts, duties);
         self.inspections(rate, &answer, facts, duties);
-        // A rule's end ends all that followed from an exceedance under it.
-        let scope_ends = self.scope_ends(facts, rate.on);
-        for duty in &mut duties[first..] {
-            duty.rule_ends = [duty.rule_ends, scope_ends].into_iter().flatten().min();
-            duty.exceeded_on = Some(rate.on);
-        }
     }
 
     /// The latest of the test, the rate's day, the return to normal operation
@@ -124,13 +125,12 @@ impl DutySource<'_> {
         let Some(row) = self.row(DutyKind::LeakInspection, facts, rate.on) else { return };
         let periods = self.inspection_periods(row, from);
         let series_ends = periods.ends;
-        let scope_ends = self.scope_ends(facts, rate.on);
         for (number, (after, end)) in periods.days.into_iter().enumerate() {
             let begins = if number == 0 { from } else { after_days(after, Some(1)) };
-            if begins > self.on || scope_ends.is_some_and(|last| begins > last) {
+            if begins > self.on || answer.ends.is_some_and(|last| begins > last) {
                 break;
             }
-            let mut duty = self.duty(row, from, Some(start), Some(end));
+            let mut duty = self.answering(rate, answer, self.duty(row, from, Some(start), Some(end)));
             duty.period = u32::try_from(number + 1).unwrap_or(u32::MAX);
             // A calendar year's clock starts with the year.
             duty.clock_from = if row.calendar_year { begins } else { from };
@@ -139,10 +139,10 @@ impl DutySource<'_> {
                 is_inspection(history, line) && day <= end && (number == 0 || day > after)
             });
             duty.meet(history, inspected);
-            self.stop_clock(&mut duty);
             if series_ends <= self.on {
                 duty.end(series_ends);
             }
+            self.stop_clock(&mut duty);
             duties.push(duty);
         }
     }
@@ -193,22 +193,21 @@ impl DutySource<'_> {
     fn plan(&self, index: usize, rate: &LeakRate, answer: &Answer, facts: &ApplianceFacts, duties: &mut Vec<Duty>) {
         let history = self.history;
         let Some(row) = self.row(DutyKind::Plan, facts, rate.on) else { return };
-        let mut duty = self.duty(row, rate.on, Some(rate.charge), Some(after_days(rate.on, row.days)));
+        let due = Some(after_days(rate.on, row.days));
+        let mut duty = self.answering(rate, answer, self.duty(row, rate.on, Some(rate.charge), due));
         let made = history.first_after(Some(rate.charge), |line| matches!(history.lines[line].act, Act::PlanMade));
+        duty.meet(history, made);
+        self.stop_clock(&mut duty);
         if self.over_again(rate, row) {
-            duty.meet(history, made);
-            self.stop_clock(&mut duty);
             duties.push(duty);
             return;
         }
         // Not over again: asked for only where nothing was repaired in time.
-        self.stop_clock(&mut duty);
         let Some(shown_from) = duty.due.filter(|_| !duty.suspended) else { return };
         let repaired = answer.repair.is_some_and(|line| history.date(line) <= shown_from);
         if repaired || self.on < shown_from {
             return;
         }
-        duty.meet(history, made);
         if let Some(under) = self.rates[index + 1..].iter().find(|later| later.verdict == Verdict::Under) {
             duty.end(under.on);
         }
@@ -253,8 +252,8 @@ impl DutySource<'_> {
                 let due = row.due_in_next_year.and_then(|(month, of_month)| NaiveDate::from_ymd_opt(day.year() + 1, month, of_month));
                 let mut duty = self.duty(row, day, Some(line), due);
                 duty.meet(history, history.first_after(Some(line), |later| matches!(history.lines[later].act, Act::ReportSent)));
-                self.stop_clock(&mut duty);
                 duty.rule_ends = [duty.rule_ends, self.scope_ends(facts, day)].into_iter().flatten().min();
+                self.stop_clock(&mut duty);
                 duties.push(duty);
             }
         }
