@@ -5,6 +5,7 @@
 //! cannot be read; what the law forbade is taken and remarked on.
 
 mod columns;
+mod doubles;
 mod history;
 mod log;
 mod people;

@@ -337,6 +337,23 @@ fn what_exceeds_a_charge_or_a_content_is_remarked_on() {
 }
 
 #[test]
+fn gas_that_is_told_twice_is_remarked_on() {
+    let app = stocked();
+    let first = log("2026-05-01,,R-1,charge,1,lb,,,,\n2026-05-01,,R-1,charge,1,lb,,,,\n2026-05-02,,R-1,note,,,,,,\n");
+    assert_eq!(take(&app, &[("l.csv", &first)]), [""; 0], "two lines of one file are two charges");
+    let longer = format!("{first}2026-05-03,,R-1,charge,1,lb,,,,\n2026-05-01,,R-1,recover,1,lb,,,,\n");
+    let other = log("2026-05-03,,R-1,charge,1.0,lb,,,,\n");
+    starts(
+        &take(&app, &[("a.csv", &longer), ("b.csv", &other)]),
+        &[
+            "line 2: the store has the same charge already; if it happened once, it now counts twice",
+            "line 3: the store has the same charge already",
+            "line 2: a.csv has the same charge already",
+        ],
+    );
+}
+
+#[test]
 fn tests_without_their_repair_and_cylinders_without_their_line_are_remarked_on() {
     let told = take(
         &stocked(),

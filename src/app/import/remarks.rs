@@ -1,6 +1,7 @@
 //! What is worth a look in history that was taken all the same. What the law
 //! forbade is found by the rules for new entries.
 
+use super::doubles::told_twice;
 use super::log::{Taken, remark};
 use super::{ImportError, Imported, Parts, Remark};
 use crate::app::App;
@@ -36,6 +37,7 @@ pub(super) fn look(tx: &Writing<'_>, app: &App, parts: &Parts, entries: &[Taken]
         let lines = tx.lines_of(id)?;
         let history = History::new(appliance, &lines, NaiveDate::MAX);
         odd(&history, &rows, &mut taken.remarks);
+        told_twice(&history, &rows, &mut taken.remarks);
         forbidden(site, &history, &rows, &mut cylinders, &mut taken.remarks);
     }
     for Taken { row, entry, .. } in entries {
