@@ -2,6 +2,7 @@
 
 use super::entries::{allowed, open_visit};
 use super::inputs::NewEntry;
+use super::visits::{Unsaved, unsaved};
 use super::{App, AppError, PROGRAM, service_record};
 use crate::ledger::{Act, Closing, Counterpart, Detail, Entry, EntryId, Line, PersonId, Signature, Visit, VisitId, VisitState};
 use crate::record::{Closed, ClosedEntry, ClosedVisit, VisitFacts, close};
@@ -20,15 +21,26 @@ pub struct Correction {
     pub counterpart: Counterpart,
 }
 
+/// What closing a visit came to.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Ended {
+    pub record: Closed,
+    /// What was begun and never saved; it is dropped, and whoever closes is told so.
+    pub unsaved: Vec<Unsaved>,
+}
+
 impl App {
     /// Closes a visit. From here on nothing in it changes; its record is kept
     /// as the bytes that were signed.
     ///
     /// # Errors
     /// A signature or reason is missing; nothing was entered; the visit is closed already.
-    pub fn close_visit(&self, visit: VisitId, technician: Signature, counterpart: Counterpart) -> Result<Closed, AppError> {
+    pub fn close_visit(&self, visit: VisitId, technician: Signature, counterpart: Counterpart) -> Result<Ended, AppError> {
         self.flush_drafts()?;
-        self.store.write(self.now(), |tx| self.close_in(tx, visit, technician, counterpart))
+        self.store.write(self.now(), |tx| {
+            let unsaved = unsaved(tx, visit)?;
+            Ok(Ended { record: self.close_in(tx, visit, technician, counterpart)?, unsaved })
+        })
     }
 
     fn close_in(&self, tx: &Writing<'_>, visit: VisitId, technician: Signature, counterpart: Counterpart) -> Result<Closed, AppError> {
@@ -67,14 +79,16 @@ impl App {
         for id in in_order_of_use(entries.iter().filter_map(|entry| entry.line.act.cylinder())) {
             cylinders.extend(store.cylinder(id)?);
         }
+        let cautions = store.cautions_seen(visit.id)?;
         let mut people = Vec::new();
-        for id in in_order_of_use(visit.people.iter().copied().chain(entries.iter().filter_map(|entry| entry.detail.person))) {
+        let at_work = visit.people.iter().copied().chain(entries.iter().filter_map(|entry| entry.detail.person));
+        for id in in_order_of_use(at_work.chain(cautions.iter().filter_map(|seen| seen.person))) {
             people.extend(store.person(id)?);
         }
         Ok(ClosedVisit {
             visit: VisitFacts::from(visit),
             entries: entries.iter().map(ClosedEntry::from).collect(),
-            cautions: store.cautions_seen(visit.id)?,
+            cautions,
             closing: closing.clone(),
             site: store.site(visit.site)?.ok_or(AppError::Unknown { what: "site" })?,
             appliances,
@@ -173,7 +187,7 @@ impl App {
     }
 }
 
-fn closed_visit(store: &Store, visit: VisitId) -> Result<Visit, AppError> {
+pub(super) fn closed_visit(store: &Store, visit: VisitId) -> Result<Visit, AppError> {
     let visit = store.visit(visit)?.ok_or(AppError::Unknown { what: "visit" })?;
     if visit.state == VisitState::Closed { Ok(visit) } else { Err(AppError::input("visit", "This visit is not closed yet.")) }
 }

@@ -50,7 +50,7 @@ impl From<StoreError> for DemonstrationError {
 /// # Errors
 /// [`DemonstrationError`]; any other store at `path` is left as it is.
 pub fn build_demonstration(path: &Path, today: NaiveDate, zone: Tz) -> Result<(), DemonstrationError> {
-    may_be_written(path)?;
+    may_become_demonstration(path)?;
     let cannot = |detail: String| DemonstrationError::CannotWrite { path: path.to_owned(), detail };
     let folder = match path.parent() {
         Some(folder) if !folder.as_os_str().is_empty() => folder,
@@ -83,8 +83,12 @@ fn build(store: Store, today: NaiveDate, zone: Tz) -> Result<App, DemonstrationE
     Ok(app)
 }
 
-/// A missing file, an empty one, or an earlier demonstration that nobody has open.
-fn may_be_written(path: &Path) -> Result<(), DemonstrationError> {
+/// Whether a demonstration may be built at `path`: where there is no file yet,
+/// or an earlier demonstration that nobody has open. Nothing is changed.
+///
+/// # Errors
+/// [`DemonstrationError`]: any other file, also an empty one.
+pub fn may_become_demonstration(path: &Path) -> Result<(), DemonstrationError> {
     if !path.exists() {
         return Ok(());
     }

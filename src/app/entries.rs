@@ -430,7 +430,7 @@ fn simple(act: SimpleAct, common: &Common) -> Result<Work, AppError> {
 }
 
 impl App {
-    /// Days between which a person may enter something at this site: never after today there.
+    /// Today on the clock of the visit's site: nothing is entered for a day after it.
     pub fn today_at(&self, visit: VisitId) -> Result<NaiveDate, AppError> {
         let visit = self.store.visit(visit)?.ok_or(AppError::Unknown { what: "visit" })?;
         Ok(self.moment_of(&visit).date)

@@ -11,6 +11,7 @@ mod demonstration;
 mod edits;
 mod entries;
 mod error;
+mod file;
 mod import;
 mod inputs;
 mod installation;
@@ -26,20 +27,21 @@ mod weighing;
 
 pub use assessed::{assess_all, duty_calendar};
 pub use clock::{Clock, FreshIds, IdSource, SystemClock};
-pub use closing::Correction;
-pub use demonstration::{DemonstrationError, build_demonstration, demonstration_in_memory};
+pub use closing::{Correction, Ended};
+pub use demonstration::{DemonstrationError, build_demonstration, demonstration_in_memory, may_become_demonstration};
 pub use edits::{NewAppliance, NewSite};
 pub use entries::Prepared;
 pub use error::AppError;
+pub use file::{file_away, write_whole};
 pub use import::{ImportError, Imported, Remark};
 pub use inputs::{
     ChargeInput, Common, NewEntry, PressureInput, RecoverInput, RecycleInput, RepairInput, RetrofitInput, SimpleAct, TestInput,
 };
 pub use limits::LimitRules;
-pub use paper::{Printed, Recognised, fit};
+pub use paper::{KnownPrint, Printed, Recognised, fit};
 pub use refusals::{Kind, Refusal};
 pub use standing::{ApplianceStanding, CylinderStanding, WeighingGap};
-pub use visits::OpenVisit;
+pub use visits::{OpenVisit, Unsaved};
 
 use crate::ledger::{Moment, SiteFacts};
 use crate::store::{DraftWriter, OpenMode, Store};

@@ -1,16 +1,19 @@
 //! Records on paper, and telling a saved one by what the store holds.
 
+use super::service_record::later;
 use super::{App, AppError};
 use crate::ledger::{Visit, VisitId, VisitState};
 use crate::print::{self, Paper};
 use crate::record::{Fingerprint, ServiceRecord, fingerprint, read_closed};
-use crate::store::VisitFilter;
+use crate::store::{FurtherCopy, Since, VisitFilter};
+use chrono::Datelike;
 use sha2::{Digest, Sha256};
+use std::path::PathBuf;
 
 /// A PDF with the name it is kept under.
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub struct Printed {
-    /// `<date> <appliance> <fingerprint>.pdf`, fit for any file system.
+    /// `<date> <appliance> <fingerprint>.pdf`, fit for any file system; a further copy is named as one.
     pub file_name: String,
     pub bytes: Vec<u8>,
 }
@@ -18,9 +21,9 @@ pub struct Printed {
 /// What a saved file turned out to be.
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub enum Recognised {
-    /// Byte for byte what this store prints for the visit's closed record.
-    Print(VisitId, Paper),
-    /// It carries the mark of this visit's record but has other bytes than a print of today.
+    /// Byte for byte what this store prints, or printed earlier, for a closed record.
+    Print(KnownPrint),
+    /// It carries the mark of this visit's record but has other bytes than any print of it.
     OtherPrint(VisitId),
     /// The bytes that were signed, as the store holds them.
     Closed(VisitId),
@@ -32,7 +35,40 @@ pub enum Recognised {
     Unknown,
 }
 
+/// A print that this store makes.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct KnownPrint {
+    pub visit: VisitId,
+    pub paper: Paper,
+    /// 1 is the filed original.
+    pub copy: u32,
+    /// What had come after closing when it was printed.
+    pub then: Since,
+    /// What has come by now.
+    pub now: Since,
+}
+
 impl App {
+    /// The paper set on this device; `None` where none was.
+    pub fn paper_set(&self) -> Option<Paper> {
+        match self.store().setting("paper").ok().flatten().as_deref() {
+            Some("letter") => Some(Paper::Letter),
+            Some("a4") => Some(Paper::A4),
+            _ => None,
+        }
+    }
+
+    /// The folder of a visit's record among the documents: year, then site.
+    ///
+    /// # Errors
+    /// Unknown visit; the store's own.
+    pub fn filed_in(&self, visit: VisitId) -> Result<PathBuf, AppError> {
+        let visit = self.store().visit(visit)?.ok_or(AppError::Unknown { what: "visit" })?;
+        let site = self.store().site(visit.site)?.ok_or(AppError::Unknown { what: "site" })?;
+        let date = visit.closing.as_ref().map_or(visit.date, |closing| closing.date);
+        Ok(PathBuf::from(date.year().to_string()).join(fit(&site.name)))
+    }
+
     /// Prints a visit's service record: a closed one as it was signed, an open
     /// one as a draft, imported history marked as such. Without `paper` it is
     /// Letter at a site under United States rules, else A4.
@@ -42,6 +78,39 @@ impl App {
     pub fn print_record(&self, visit: VisitId, paper: Option<Paper>) -> Result<Printed, AppError> {
         let found = self.store().visit(visit)?.ok_or(AppError::Unknown { what: "visit" })?;
         let record = self.service_record(visit)?;
+        let bytes = print::service_record(&record, paper.unwrap_or_else(|| paper_of(&record)))?;
+        Ok(Printed { file_name: file_name(&found, &record), bytes })
+    }
+
+    /// Counts a further copy of a closed record, to be handed out, and says which it is: 2 and up.
+    ///
+    /// # Errors
+    /// The visit is not closed; the store's own.
+    pub fn further_copy(&self, visit: VisitId) -> Result<u32, AppError> {
+        self.store.write(self.now(), |tx| {
+            let visit = super::closing::closed_visit(tx, visit)?;
+            let at = self.moment_of(&visit);
+            let number = tx.copies(visit.id)?.last().map_or(2, |last| last.number + 1);
+            let since = later::of(tx, visit.id)?.all();
+            let copy = FurtherCopy { number, made: self.now(), date: at.date, minute: at.minute.unwrap_or(0), since };
+            tx.add_copy(visit.id, &copy)?;
+            Ok(number)
+        })
+    }
+
+    /// Prints a copy that was counted, with the same bytes each time: as the
+    /// record stood when it was made. Copy 1 is [`App::print_record`].
+    ///
+    /// # Errors
+    /// As there; [`AppError::Input`] where no such copy was made.
+    pub fn print_copy(&self, visit: VisitId, number: u32, paper: Option<Paper>) -> Result<Printed, AppError> {
+        if number == 1 {
+            return self.print_record(visit, paper);
+        }
+        let found = self.store().visit(visit)?.ok_or(AppError::Unknown { what: "visit" })?;
+        let made = self.store().copies(visit)?.into_iter().find(|copy| copy.number == number);
+        let made = made.ok_or_else(|| AppError::input("copy", format!("No copy {number} of this record was made.")))?;
+        let record = later::of(self.store(), visit)?.on(later::original(self.store(), visit)?, made.since, number);
         let bytes = print::service_record(&record, paper.unwrap_or_else(|| paper_of(&record)))?;
         Ok(Printed { file_name: file_name(&found, &record), bytes })
     }
@@ -77,10 +146,18 @@ impl App {
         if fingerprint(&kept.bytes) != kept.fingerprint {
             return Ok(Recognised::Broken(visit.id));
         }
-        let record = self.service_record(visit.id)?;
-        for paper in [Paper::A4, Paper::Letter] {
-            if print::service_record(&record, paper)? == saved {
-                return Ok(Recognised::Print(visit.id, paper));
+        let original = later::original(self.store(), visit.id)?;
+        let later = later::of(self.store(), visit.id)?;
+        let copies = self.store().copies(visit.id)?;
+        // The original in every state in which it can have been printed, each copy in its own.
+        let original_states = later.states().into_iter().map(|since| (1, since));
+        for (copy, since) in original_states.chain(copies.iter().map(|copy| (copy.number, copy.since))) {
+            let record = later.on(original.clone(), since, copy);
+            for paper in [Paper::A4, Paper::Letter] {
+                let named = holds(saved, hex(&print::print_id(&record, paper)?).as_bytes());
+                if named && print::service_record(&record, paper)? == saved {
+                    return Ok(Recognised::Print(KnownPrint { visit: visit.id, paper, copy, then: since, now: later.all() }));
+                }
             }
         }
         Ok(Recognised::OtherPrint(visit.id))
@@ -94,7 +171,11 @@ fn paper_of(record: &ServiceRecord) -> Paper {
 /// The id that every print of one closed record carries in its trailer: the
 /// first 16 bytes of the SHA-256 of the record's fingerprint, in hex.
 fn print_mark(fingerprint: &str) -> String {
-    Sha256::digest(fingerprint.as_bytes()).iter().take(16).map(|byte| format!("{byte:02x}")).collect()
+    hex(&Sha256::digest(fingerprint.as_bytes())[..16])
+}
+
+fn hex(bytes: &[u8]) -> String {
+    bytes.iter().map(|byte| format!("{byte:02x}")).collect()
 }
 
 fn holds(bytes: &[u8], mark: &[u8]) -> bool {
@@ -116,7 +197,8 @@ fn file_name(visit: &Visit, record: &ServiceRecord) -> String {
         [one] => one.appliance.name.clone(),
         [first, rest @ ..] => format!("{} and {} more", first.appliance.name, rest.len()),
     };
-    fit(&format!("{} {appliances} {mark}.pdf", record.first_day))
+    let copy = if record.copy > 1 { format!(" copy {}", record.copy) } else { String::new() };
+    fit(&format!("{} {appliances} {mark}{copy}.pdf", record.first_day))
 }
 
 /// A file name that every system takes: what one of them forbids becomes a hyphen.

@@ -2,8 +2,8 @@
 
 use super::entries::open_visit;
 use super::{App, AppError};
-use crate::ledger::{CautionSeen, Entry, PersonId, SiteId, Visit, VisitId, VisitState};
-use crate::store::{Draft, VisitFilter};
+use crate::ledger::{ApplianceId, CautionSeen, Entry, PersonId, SiteId, Visit, VisitId, VisitState};
+use crate::store::{Draft, Store, VisitFilter};
 
 /// A visit that is not closed, with what was being typed in it.
 #[derive(Debug, Clone)]
@@ -12,6 +12,16 @@ pub struct OpenVisit {
     pub entries: Vec<Entry>,
     pub drafts: Vec<Draft>,
     pub cautions: Vec<CautionSeen>,
+}
+
+/// Work that was begun on a page of a visit and never saved.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Unsaved {
+    /// The action: `charge`, `leak test`, …
+    pub action: String,
+    pub appliance: ApplianceId,
+    /// Its identification.
+    pub name: String,
 }
 
 impl App {
@@ -82,18 +92,21 @@ impl App {
         Ok(OpenVisit { cautions: self.store.cautions_seen(visit.id)?, visit, entries, drafts })
     }
 
-    /// Keeps that a caution was acknowledged, once per visit and kind.
-    pub fn acknowledge(&self, visit: VisitId, caution: &str) -> Result<(), AppError> {
+    /// Keeps that a caution was acknowledged, once per visit and kind, with
+    /// day, minute and `person`; `None` is the one who began the visit.
+    pub fn acknowledge(&self, visit: VisitId, caution: &str, person: Option<PersonId>) -> Result<(), AppError> {
         self.store.write(self.now(), |tx| {
             let visit = open_visit(tx, visit)?;
-            let at_minute = self.moment_of(&visit).minute.unwrap_or(0);
-            Ok(tx.acknowledge(visit.id, &CautionSeen { caution: caution.to_owned(), at_minute })?)
+            let at = self.moment_of(&visit);
+            let person = person.or(visit.people.first().copied());
+            let seen = CautionSeen { caution: caution.to_owned(), on: Some(at.date), at_minute: at.minute.unwrap_or(0), person };
+            Ok(tx.acknowledge(visit.id, &seen)?)
         })
     }
 
-    /// Keeps what is being typed; never waits for the disk.
-    pub fn save_draft(&self, visit: VisitId, action: &str, body: &str) -> Result<(), AppError> {
-        let draft = Draft { visit, action: action.to_owned(), body: body.to_owned(), saved: self.now() };
+    /// Keeps what is being typed, about an appliance or none; never waits for the disk.
+    pub fn save_draft(&self, visit: VisitId, appliance: Option<ApplianceId>, action: &str, body: &str) -> Result<(), AppError> {
+        let draft = Draft { visit, appliance, action: action.to_owned(), body: body.to_owned(), saved: self.now() };
         match &self.drafts {
             Some(writer) => writer.put(draft),
             None => self.store.write(self.now(), |tx| tx.put_draft(&draft))?,
@@ -104,6 +117,11 @@ impl App {
     /// What was being typed, as far as it is on disk.
     pub fn draft(&self, visit: VisitId, action: &str) -> Result<Option<Draft>, AppError> {
         Ok(self.store.draft(visit, action)?)
+    }
+
+    /// What was begun in a visit and not saved, as far as it is on disk: closing drops it.
+    pub fn unsaved(&self, visit: VisitId) -> Result<Vec<Unsaved>, AppError> {
+        unsaved(&self.store, visit)
     }
 
     pub fn clear_draft(&self, visit: VisitId, action: &str) -> Result<(), AppError> {
@@ -121,4 +139,15 @@ impl App {
     pub fn flush_drafts(&self) -> Result<(), AppError> {
         self.drafts.as_ref().map_or(Ok(()), |writer| Ok(writer.flush()?))
     }
+}
+
+/// Drafts about an appliance; a signature being drawn is no work.
+pub(super) fn unsaved(store: &Store, visit: VisitId) -> Result<Vec<Unsaved>, AppError> {
+    let mut unsaved = Vec::new();
+    for draft in store.drafts_of(visit)? {
+        let Some(appliance) = draft.appliance else { continue };
+        let name = store.appliance(appliance)?.map(|appliance| appliance.name).unwrap_or_default();
+        unsaved.push(Unsaved { action: draft.action, appliance, name });
+    }
+    Ok(unsaved)
 }

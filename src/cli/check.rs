@@ -1,7 +1,7 @@
 //! `check` and `backup`.
 
 use super::{Answer, open, open_store};
-use crate::app::{App, Recognised};
+use crate::app::{App, KnownPrint, Recognised};
 use crate::ledger::VisitId;
 use crate::store::OpenMode;
 use anyhow::Context;
@@ -41,30 +41,35 @@ pub fn check(store: Option<&Path>, args: &CheckArgs) -> anyhow::Result<Answer> {
     }
     let verdict = if report.sound() { "sound" } else { "NOT sound; keep this file, and go back to a backup" };
     text.push_str(&format!("{} closed records, {} with a fault; the store is {verdict}\n", report.records.len(), bad.len()));
-    Ok(Answer { text, well: report.sound() })
+    Ok(Answer { text, failures: Vec::new(), well: report.sound() })
 }
 
 /// Each file compared with what the store holds and prints.
 fn saved(app: &App, files: &[PathBuf]) -> anyhow::Result<Answer> {
-    let (mut text, mut well) = (String::new(), true);
+    let (mut text, mut failures, mut well) = (String::new(), Vec::new(), true);
     for file in files {
-        let bytes = std::fs::read(file).with_context(|| format!("{} cannot be read", file.display()))?;
+        let bytes = match std::fs::read(file) {
+            Ok(bytes) => bytes,
+            Err(why) => {
+                failures.push(format!("{} cannot be read: {why}", file.display()));
+                continue;
+            }
+        };
         let (verdict, sound) = judged(app, app.recognise(&bytes)?)?;
         text.push_str(&format!("{}: {verdict}\n", file.display()));
         well &= sound;
     }
-    Ok(Answer { text, well })
+    Ok(Answer { text, failures, well })
 }
 
 fn judged(app: &App, found: Recognised) -> anyhow::Result<(String, bool)> {
     Ok(match found {
-        Recognised::Print(visit, _) => (format!("sound; byte for byte what this store prints for {}", named(app, visit)?), true),
+        Recognised::Print(print) => (told(&print, &named(app, print.visit)?), true),
         Recognised::Closed(visit) => (format!("sound; the very bytes that were signed for {}", named(app, visit)?), true),
         Recognised::OtherPrint(visit) => (
             format!(
-                "NOT verified; it bears the mark of {} but differs from a print of today. The file was changed, or since it was printed \
-                 the record was signed later, handed over or corrected, or another version of the program printed it. Print it again with \
-                 bubblepoint record {visit} and compare",
+                "NOT verified; it bears the mark of {} but is no print of it, neither of today nor of an earlier state. The file was \
+                 changed, or another version of the program printed it. Print it again with bubblepoint record {visit} and compare",
                 named(app, visit)?
             ),
             false,
@@ -77,6 +82,27 @@ fn judged(app: &App, found: Recognised) -> anyhow::Result<(String, bool)> {
         }
         Recognised::Unknown => ("NOT verified; no closed record of this store is in it".to_owned(), false),
     })
+}
+
+/// What a print that is known turned out to be: which copy, and what came since.
+fn told(print: &KnownPrint, record: &str) -> String {
+    let copy = if print.copy > 1 { format!(" as copy {}", print.copy) } else { String::new() };
+    let (then, now) = (print.then, print.now);
+    let mut since = Vec::new();
+    if now.countersigned && !then.countersigned {
+        since.push("signed by the representative");
+    }
+    if now.hand_overs > then.hand_overs {
+        since.push("handed over");
+    }
+    if now.corrections > then.corrections {
+        since.push("corrected by another record");
+    }
+    if since.is_empty() {
+        format!("sound; byte for byte what this store prints for {record}{copy}")
+    } else {
+        format!("sound; byte for byte what this store printed earlier for {record}{copy}; since then it was {}", since.join(", "))
+    }
 }
 
 /// `record 3f9ac1d2 of 2026-03-03, Fish market`.

@@ -3,7 +3,7 @@
 use super::account::{self, AccountFormat};
 use super::file::{make_folder, write_whole};
 use super::{Answer, today, window};
-use crate::app::{App, Clock, SystemClock, build_demonstration};
+use crate::app::{App, Clock, SystemClock, build_demonstration, may_become_demonstration};
 use crate::ledger::VisitState;
 use crate::store::{OpenMode, VisitFilter};
 use anyhow::Context;
@@ -29,9 +29,18 @@ pub fn run(store: Option<&Path>, args: &DemoArgs) -> anyhow::Result<Answer> {
         Some(folder) => folder.clone(),
         None => new_folder()?,
     };
-    make_folder(&folder)?;
     let path = store.map_or_else(|| folder.join("demonstration.db"), Path::to_path_buf);
-    build_demonstration(&path, today(), SystemClock.zone())?;
+    // Asked first: what is refused leaves no empty folder behind.
+    may_become_demonstration(&path)?;
+    let made = !folder.exists();
+    make_folder(&folder)?;
+    if let Err(why) = build_demonstration(&path, today(), SystemClock.zone()) {
+        if made {
+            // Only where nothing is in it.
+            let _ = std::fs::remove_dir(&folder);
+        }
+        return Err(why.into());
+    }
     let app = App::open(&path, OpenMode::MustExist)?;
     let records = print_records(&app, &folder.join("service records"))?;
     let accounts = print_accounts(&app, &folder, today())?;

@@ -68,13 +68,15 @@ pub enum Format {
 pub struct Answer {
     /// For standard output.
     pub text: String,
+    /// For standard error: what could not be done, one line each.
+    pub failures: Vec<String>,
     /// Whether all was well; `check` can answer that it was not.
     pub well: bool,
 }
 
 impl Answer {
     fn well(text: String) -> Self {
-        Self { text, well: true }
+        Self { text, failures: Vec::new(), well: true }
     }
 }
 
@@ -83,11 +85,11 @@ pub fn main() -> ExitCode {
     let arguments = Arguments::parse();
     match run(&arguments) {
         Ok(answer) => {
-            if print(&answer.text).is_err() || !answer.well {
-                ExitCode::from(1)
-            } else {
-                ExitCode::SUCCESS
+            let printed = print(&answer.text);
+            for failure in &answer.failures {
+                eprintln!("bubblepoint: {failure}");
             }
+            if printed.is_err() || !answer.well || !answer.failures.is_empty() { ExitCode::from(1) } else { ExitCode::SUCCESS }
         }
         Err(sentence) => {
             eprintln!("bubblepoint: {sentence:#}");

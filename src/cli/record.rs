@@ -32,6 +32,12 @@ pub struct RecordArgs {
     /// The folder for the files, made where it is missing; without it, this one
     #[arg(long, value_name = "DIR")]
     into: Option<PathBuf>,
+    /// Print a further copy of each closed record, to be handed out: it is counted and says which it is
+    #[arg(long, conflicts_with = "all")]
+    new_copy: bool,
+    /// Print again a copy that was made; without it the filed original, which is copy 1
+    #[arg(long, value_name = "NUMBER", conflicts_with_all = ["all", "new_copy"], value_parser = clap::value_parser!(u32).range(1..))]
+    copy: Option<u32>,
     /// Without it, letter at a site under United States rules, else A4
     #[arg(long, value_enum)]
     paper: Option<PaperSize>,
@@ -60,19 +66,27 @@ pub fn run(store: Option<&Path>, args: &RecordArgs) -> anyhow::Result<Answer> {
     }
     let folder = args.into.as_deref().unwrap_or(Path::new("."));
     make_folder(folder)?;
-    let (mut text, mut failed) = (String::new(), String::new());
+    let mut answer = Answer::well(String::new());
     for visit in visits {
-        match app.print_record(visit, args.paper.map(Paper::from)) {
-            Ok(printed) => {
-                let path = folder.join(&printed.file_name);
-                write_whole(&path, &printed.bytes)?;
-                text.push_str(&format!("{}\n", path.display()));
-            }
-            Err(why) => failed.push_str(&format!("visit {visit} was not printed: {why}\n")),
+        // One that cannot be printed or written does not keep the others from it.
+        match filed(&app, visit, args, folder) {
+            Ok(path) => answer.text.push_str(&format!("{}\n", path.display())),
+            Err(why) => answer.failures.push(format!("visit {visit} was not printed: {why:#}")),
         }
     }
-    let well = failed.is_empty();
-    Ok(Answer { text: text + &failed, well })
+    Ok(answer)
+}
+
+fn filed(app: &App, visit: VisitId, args: &RecordArgs, folder: &Path) -> anyhow::Result<PathBuf> {
+    let paper = args.paper.map(Paper::from);
+    let printed = match args.copy {
+        Some(number) => app.print_copy(visit, number, paper)?,
+        None if args.new_copy => app.print_copy(visit, app.further_copy(visit)?, paper)?,
+        None => app.print_record(visit, paper)?,
+    };
+    let path = folder.join(&printed.file_name);
+    write_whole(&path, &printed.bytes)?;
+    Ok(path)
 }
 
 fn wanted(app: &App, args: &RecordArgs) -> anyhow::Result<Vec<VisitId>> {

@@ -3,7 +3,7 @@
 use super::blend::Gas;
 use super::source::float;
 use super::table::{self, Row};
-use crate::quantity::parse_decimal;
+use crate::quantity::{AbsolutePressure, Ratio, parse_decimal};
 use std::sync::LazyLock;
 
 /// Kelvin at 0 °C.
@@ -121,6 +121,13 @@ impl Gas {
     /// `None` outside the table.
     pub fn bubble_pressure(&self, celsius: f64) -> Option<f64> {
         self.saturation.bubble.pressure(celsius)
+    }
+
+    /// The bubble pressure at 104 °F to the pascal, by which the law parts gases into classes (40 CFR 82.152).
+    pub fn bubble_pressure_at_40c(&self) -> Option<AbsolutePressure> {
+        let pascal = (self.bubble_pressure(40.0)? * 100_000.0).round();
+        // Table pressures are far below 2^53 pascal.
+        (pascal.is_finite() && pascal >= 0.0).then(|| AbsolutePressure::from_pascal(Ratio::from_integer(pascal as i128)))
     }
 
     /// Pressure at which the first drop forms at `celsius`, bar absolute.

@@ -1,7 +1,7 @@
 //! The fold from entries to what a cylinder holds and what an appliance took:
 //! the only place where masses are added up for a balance.
 
-use super::{Act, ApplianceId, Cylinder, CylinderFacts, CylinderId, EntryId, GasStatus, Line, Moment, Position, ReadAt};
+use super::{ApplianceId, Cylinder, CylinderFacts, CylinderId, EntryId, GasStatus, Moment, Position, ReadAt};
 use crate::quantity::{Mass, Weighing};
 use chrono::{DateTime, NaiveDate, Utc};
 
@@ -335,26 +335,6 @@ impl CylinderBalance {
             }
         }
     }
-}
-
-/// What an appliance took and gave, whatever the purpose.
-#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
-pub struct ApplianceTotals {
-    pub charged: Mass,
-    pub recovered: Mass,
-}
-
-/// Adds up the transfers of one appliance from `from` to `to`, both included.
-pub fn appliance_totals<'a>(lines: impl IntoIterator<Item = &'a Line>, from: NaiveDate, to: NaiveDate) -> ApplianceTotals {
-    let mut totals = ApplianceTotals::default();
-    for line in lines.into_iter().filter(|line| (from..=to).contains(&line.at.date)) {
-        match &line.act {
-            Act::Charge { transfer, .. } => totals.charged += transfer.mass,
-            Act::Recover { transfer, .. } => totals.recovered += transfer.mass,
-            _ => {}
-        }
-    }
-    totals
 }
 
 #[cfg(test)]

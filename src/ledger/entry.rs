@@ -156,7 +156,13 @@ pub struct LeakPlace {
 pub struct CautionSeen {
     /// Which caution, as numbered in the catalogue of cautions.
     pub caution: String,
+    /// Site's local date; `None` in visits of earlier programs: the visit's first day.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub on: Option<NaiveDate>,
     pub at_minute: u16,
+    /// Who acknowledged it; `None` in visits of earlier programs: who began the visit.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub person: Option<PersonId>,
 }
 
 /// All that was written down beside the lean part. Absent fields are left out

@@ -9,9 +9,7 @@ mod registers;
 mod visit;
 mod words;
 
-pub use balance::{
-    ApplianceTotals, Content, CylinderBalance, KnownGross, Movement, MovementKind, appliance_totals, cylinder_balance, follow_cylinder,
-};
+pub use balance::{Content, CylinderBalance, KnownGross, Movement, MovementKind, cylinder_balance, follow_cylinder};
 pub use entry::{Act, CautionSeen, Detail, Entry, LeakPlace, Line, Moment, Position, Reading, Transfer, WeighingMode, by_appliance};
 pub use leaks::{OpenLeak, open_leaks};
 pub use register::{

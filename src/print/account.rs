@@ -307,12 +307,8 @@ fn losses(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
             block
         })
         .collect();
-    let mut bars = bars.into_iter();
-    let head = heading(fonts, inner, "Losses by appliance", words::unit(account.unit));
-    flow.put_together(std::iter::once(head).chain(bars.next()).collect());
-    for bar in bars {
-        flow.put(bar);
-    }
+    // A few bars are compared on one page; of many the heading goes with them over each page.
+    flow.put_table(None, heading(fonts, inner, "Losses by appliance", words::unit(account.unit)), bars);
 }
 
 fn duties(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
@@ -324,8 +320,8 @@ fn duties(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
         return;
     }
     let heads = [
-        Column::left("duty", 3.0),
-        Column::left("rulebook", 1.4),
+        Column::left("duty", 2.4),
+        Column::left("law", 2.4),
         Column::right("in time", 0.8),
         Column::right("late", 0.8),
         Column::right("not done", 0.8),
@@ -337,7 +333,7 @@ fn duties(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
         row
     };
     let mut rows: Vec<Vec<Cell>> =
-        account.duties.iter().map(|tally| counted(Cell::plain(&tally.duty), tally.rulebook.clone(), tally.counts)).collect();
+        account.duties.iter().map(|tally| counted(Cell::plain(&tally.duty), law(&tally.rulebook), tally.counts)).collect();
     let mut all = counted(Cell::strong("all"), String::new(), account.duty_counts());
     all = all.into_iter().map(Cell::bold).collect();
     rows.push(all);
@@ -346,6 +342,11 @@ fn duties(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
     flow.open_plate("Duties that fell due", "", (set.head.height + height).min(250.0));
     flow.put_table(None, set.head, set.rows);
     flow.close_plate();
+}
+
+/// The name of a legal text; a book that this program does not have keeps its id.
+fn law(rulebook: &str) -> String {
+    crate::rules::rulebook(rulebook).map_or_else(|| rulebook.to_owned(), |book| book.title.clone())
 }
 
 fn foot(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {

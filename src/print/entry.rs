@@ -12,7 +12,8 @@ use crate::record::{AppliancePart, EntryFacts, TestFacts, TransferFacts, Work};
 const MARGIN: f32 = 66.0;
 const COLUMNS: usize = 5;
 
-pub(super) fn entries(flow: &mut Flow, fonts: &Fonts, part: &AppliancePart) {
+/// `jobs` are those of the record: one alone stands in its title and is not said again.
+pub(super) fn entries(flow: &mut Flow, fonts: &Fonts, part: &AppliancePart, jobs: &[String]) {
     let inner = flow.inner();
     let head = heading(fonts, inner, "Work done", "");
     if part.entries.is_empty() {
@@ -20,7 +21,7 @@ pub(super) fn entries(flow: &mut Flow, fonts: &Fonts, part: &AppliancePart) {
         return;
     }
     for (index, facts) in part.entries.iter().enumerate() {
-        let block = one(fonts, inner, facts);
+        let block = one(fonts, inner, facts, jobs);
         if index == 0 {
             flow.put_together(vec![head.clone(), block]);
         } else {
@@ -40,8 +41,8 @@ struct Said {
     lines: Vec<String>,
 }
 
-fn one(fonts: &Fonts, width: f32, facts: &EntryFacts) -> Block {
-    let said = say(facts);
+fn one(fonts: &Fonts, width: f32, facts: &EntryFacts, jobs: &[String]) -> Block {
+    let said = say(facts, jobs);
     let mut margin = Block::default();
     let time = if facts.at.is_empty() { words::day(facts.on) } else { facts.at.clone() };
     margin.text(0.0, Style::STRONG.ascent(), &fonts.visible(&time), Style::STRONG);
@@ -118,9 +119,9 @@ fn figure(fonts: &Fonts, width: f32, facts: &EntryFacts, said: &Said, block: &mu
     width
 }
 
-fn say(facts: &EntryFacts) -> Said {
+fn say(facts: &EntryFacts, jobs: &[String]) -> Said {
     let mut said = match &facts.work {
-        Work::Transfer(transfer) => say_transfer(transfer),
+        Work::Transfer(transfer) => say_transfer(transfer, facts),
         Work::Test(test) => say_test(test),
         Work::Repair(repair) => Said {
             headline: "repair".into(),
@@ -130,17 +131,19 @@ fn say(facts: &EntryFacts) -> Said {
             fields: Field::known("place", &repair.place).into_iter().collect(),
             lines: Vec::new(),
         },
-        Work::Other { name, text, figure } => Said {
+        Work::Other { name, text, figure, fields } => Said {
             headline: name.clone(),
             after: text.clone(),
             figure: figure.clone(),
             beside_figure: String::new(),
-            fields: Vec::new(),
+            fields: fields.iter().map(|named| Field::required(&named.caption, &named.value)).collect(),
             lines: Vec::new(),
         },
     };
     said.fields.extend(Field::known("parts", &facts.parts));
-    said.fields.extend(Field::known("job", &facts.job));
+    if !matches!(jobs, [only] if *only == facts.job) {
+        said.fields.extend(Field::known("job", &facts.job));
+    }
     said.fields.extend(Field::known("reason", &facts.reason));
     said.fields.extend(Field::known("note", &facts.note));
     said.fields.extend(Field::known("corrects", &facts.corrects));
@@ -148,7 +151,20 @@ fn say(facts: &EntryFacts) -> Said {
     said
 }
 
-fn say_transfer(transfer: &TransferFacts) -> Said {
+/// Why a transfer is known by its net alone.
+fn net_only(transfer: &TransferFacts, facts: &EntryFacts) -> &'static str {
+    if !facts.imported_from.is_empty() {
+        words::NET_AS_IMPORTED
+    } else if !facts.corrects.is_empty() {
+        words::NET_AS_CORRECTED
+    } else if transfer.cylinder.is_empty() {
+        words::NET_FROM_THE_MAKER
+    } else {
+        words::NET_AS_STATED
+    }
+}
+
+fn say_transfer(transfer: &TransferFacts, facts: &EntryFacts) -> Said {
     let (before, after) = match transfer.weighing {
         WeighingMode::Gross => ("gross before", "gross after"),
         WeighingMode::Zeroed => ("zeroed: at start", "at end"),
@@ -175,7 +191,7 @@ fn say_transfer(transfer: &TransferFacts) -> Said {
         after: [&transfer.refrigerant, &transfer.purpose].into_iter().filter(|t| !t.is_empty()).cloned().collect::<Vec<_>>().join(", "),
         figure: transfer.net.clone(),
         beside_figure: match transfer.weighing {
-            WeighingMode::NetOnly => format!("{}; {error}", words::NET_AS_IMPORTED),
+            WeighingMode::NetOnly => format!("{}; {error}", net_only(transfer, facts)),
             WeighingMode::Gross | WeighingMode::Zeroed => error,
         },
         fields,

@@ -18,7 +18,7 @@ mod signing;
 mod words;
 
 pub use account::annual_account;
-pub use service::service_record;
+pub use service::{print_id, service_record};
 pub use sheet::Paper;
 
 /// Why nothing could be printed.

@@ -27,7 +27,7 @@ pub fn service_record(record: &ServiceRecord, paper: Paper) -> Result<Vec<u8>, P
     }
     for part in &record.appliances {
         flow.space(GAP);
-        appliance(&mut flow, fonts, part);
+        appliance(&mut flow, fonts, record, part);
     }
     flow.space(GAP);
     cautions(&mut flow, fonts, record);
@@ -38,6 +38,15 @@ pub fn service_record(record: &ServiceRecord, paper: Paper) -> Result<Vec<u8>, P
     flow.put_together(last);
     let pages = flow.finish();
     pdf::write(fonts, &pages, &about(record, paper)?)
+}
+
+/// The second id in the trailer of this record's print on this paper: its own
+/// among all prints, known without laying it out.
+///
+/// # Errors
+/// As [`service_record`].
+pub fn print_id(record: &ServiceRecord, paper: Paper) -> Result<[u8; 16], PrintError> {
+    Ok(about(record, paper)?.print_id)
 }
 
 /// Between two plates.
@@ -198,7 +207,7 @@ fn people(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord) {
     }
 }
 
-fn appliance(flow: &mut Flow, fonts: &Fonts, part: &AppliancePart) {
+fn appliance(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord, part: &AppliancePart) {
     let facts = &part.appliance;
     let strip: Vec<&str> =
         [&facts.name, &facts.refrigerant, &facts.full_charge].into_iter().map(String::as_str).filter(|text| !text.is_empty()).collect();
@@ -220,7 +229,8 @@ fn appliance(flow: &mut Flow, fonts: &Fonts, part: &AppliancePart) {
     fields.extend(Field::known("equipment", &facts.equipment));
     fields.extend(Field::known("serial", &facts.serial));
     fields.extend(Field::known("assembly", &facts.assembly));
-    fields.extend(Field::known("installed", &facts.installed_on.map(words::day).unwrap_or_default()));
+    // 84.106(l)(2)(ii).
+    fields.push(Field::required("installed", &facts.installed_on.map(words::day).unwrap_or_default()));
     fields.extend(Field::known("charged at installation", &facts.charged_at_installation));
     fields.extend(Field::known("description", &facts.description));
     fields.extend(Field::known("refrigerant facts", &facts.refrigerant_facts));
@@ -232,24 +242,26 @@ fn appliance(flow: &mut Flow, fonts: &Fonts, part: &AppliancePart) {
     }
     // What came out first, then what was done: as on the screens.
     for rate in &part.leak_rates {
-        leak_rate(flow, fonts, rate);
+        leak_rate(flow, fonts, rate, record.first_day);
     }
     no_rates(flow, fonts, part);
     open_leaks(flow, fonts, part);
     duties(flow, fonts, part);
     amounts(flow, fonts, part);
-    entry::entries(flow, fonts, part);
+    entry::entries(flow, fonts, part, &record.jobs);
     readings(flow, fonts, part);
     flow.close_plate();
 }
 
-fn leak_rate(flow: &mut Flow, fonts: &Fonts, rate: &LeakRate) {
+/// A rate of an addition before `first_day` is the latest there is, and not of this visit.
+fn leak_rate(flow: &mut Flow, fonts: &Fonts, rate: &LeakRate, first_day: chrono::NaiveDate) {
     let inner = flow.inner();
-    let mut head = heading(fonts, inner, "Leak rate", &format!("{}, {} method", rate.source, rate.method));
+    let name = if rate.on < first_day { words::LATEST_LEAK_RATE } else { words::LEAK_RATE };
+    let mut head = heading(fonts, inner, name, &format!("{}, {} method", rate.source, rate.method));
     let mut figures = Block::empty(34.0);
     let half = inner / COLUMNS as f32;
     let top = Style::CAPTION.ascent();
-    figures.text(0.0, top, "% of full charge a year", Style::CAPTION);
+    figures.text(0.0, top, words::rate_caption(rate.method), Style::CAPTION);
     figures.text(0.0, 28.0, &words::percent(rate.percent), Style::FIGURE);
     let at = half * 2.0;
     figures.text(at, top, "trigger", Style::CAPTION);
@@ -346,6 +358,8 @@ fn duties(flow: &mut Flow, fonts: &Fonts, part: &AppliancePart) {
         .iter()
         .map(|duty| {
             let due = duty.due.map_or_else(|| duty.due_words.clone(), words::day);
+            // The next column but one says it.
+            let due = if due == duty.state { String::new() } else { due };
             let state = duty.met_on.map_or_else(|| duty.state.clone(), |day| format!("{} {}", duty.state, words::day(day)));
             vec![
                 Cell::strong(&duty.duty),

@@ -1,5 +1,6 @@
 //! Every fixed word and sentence on paper, and how days and numbers are written.
 
+use crate::ledger::RateMethod;
 use crate::quantity::{Mass, MassUnit, Ratio, rounded_text};
 use crate::record::{DutyStep, Finding, Way};
 use chrono::{Datelike, NaiveDate};
@@ -13,7 +14,13 @@ pub(super) const DRAFT_BELOW: &str = "visit still open, not signed";
 pub(super) const IMPORTED: &str = "imported history";
 pub(super) const IMPORTED_BELOW: &str = "read from a file, never signed here";
 pub(super) const NET_AS_IMPORTED: &str = "net as imported";
+pub(super) const NET_AS_CORRECTED: &str = "net as corrected";
+/// A factory charge: the maker's figure, by plate or papers.
+pub(super) const NET_FROM_THE_MAKER: &str = "net as the maker states it";
+pub(super) const NET_AS_STATED: &str = "net as stated";
 pub(super) const UNKNOWN_ERROR: &str = "weighing error unknown";
+pub(super) const LEAK_RATE: &str = "Leak rate";
+pub(super) const LATEST_LEAK_RATE: &str = "Latest leak rate; no addition of this visit asked for one";
 pub(super) const DEMONSTRATION: &str = "Demonstration: people, companies, places and figures are invented.";
 pub(super) const OVER_WITHIN_ERROR: &str = "Over trigger by less than the weighing error. The duty stands.";
 pub(super) const AT_WITHIN_ERROR: &str = "At trigger; the weighing error reaches to both sides of it.";
@@ -64,6 +71,15 @@ pub(super) fn copy(number: u32) -> String {
 /// Percent with two decimals, rounded half up here and nowhere else.
 pub(super) fn percent(value: Ratio) -> String {
     format!("{} %", rounded_text(value, 2))
+}
+
+/// What the figure of a leak rate is a percentage of: one method reckons to a
+/// year, the other counts what was added in its window.
+pub(super) const fn rate_caption(method: RateMethod) -> &'static str {
+    match method {
+        RateMethod::Annualizing => "% of full charge a year",
+        RateMethod::RollingAverage => "% of full charge in the period",
+    }
 }
 
 /// A trigger: its decimals only where it has some.

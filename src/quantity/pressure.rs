@@ -103,6 +103,11 @@ impl WrittenPressure {
 }
 
 impl AbsolutePressure {
+    /// Pounds-force per square inch against vacuum, as the law writes `45 psia`.
+    pub fn from_psia(psia: Ratio) -> Self {
+        Self(psia * PSI)
+    }
+
     pub fn from_pascal(pascal: Ratio) -> Self {
         Self(pascal)
     }

@@ -257,7 +257,7 @@ mod tests {
                 begun: "2026-03-03T13:12:00Z".parse().unwrap(),
             },
             entries: entries(),
-            cautions: vec![CautionSeen { caution: "1".to_owned(), at_minute: 493 }],
+            cautions: vec![CautionSeen { caution: "1".to_owned(), on: None, at_minute: 493, person: None }],
             closing: Closing { closed, date: day, minute: 680, technician: signature, counterpart, handed_over: String::new() },
             site: site(),
             appliances: vec![appliance()],

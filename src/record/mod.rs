@@ -14,7 +14,7 @@ pub use canonical::{NotCanonical, canonical_json};
 pub use cautions::{CATALOGUE, CautionText, CautiousAct, Circumstances, caution, fitting, glides};
 pub use closed::{Closed, ClosedEntry, ClosedVisit, FORMAT, NotClosed, VisitFacts, close, fingerprint, read_closed};
 pub use service::{
-    AppliancePart, ApplianceText, Caution, Counterparty, DutyFacts, DutyStep, EntryFacts, Finding, Fingerprint, LeakRate, NoRate, Notice,
-    OpenLeak, Party, PersonAtWork, RateInput, RecordState, RepairFacts, Rulebook, ServiceRecord, SignedBy, SiteText, TestFacts,
+    AppliancePart, ApplianceText, Caution, Counterparty, DutyFacts, DutyStep, EntryFacts, Finding, Fingerprint, LeakRate, Named, NoRate,
+    Notice, OpenLeak, Party, PersonAtWork, RateInput, RecordState, RepairFacts, Rulebook, ServiceRecord, SignedBy, SiteText, TestFacts,
     TransferFacts, Verdict, Way, WeightedAmount, Work,
 };

@@ -9,9 +9,13 @@
 //! asks for it and leaves out the rest. Numbers are kept only where something
 //! is drawn or compared.
 
-use super::exact;
-use crate::ledger::{Ink, RateMethod, WeighingMode};
-use crate::quantity::{Mass, Ratio};
+mod entry;
+mod judged;
+
+pub use entry::{EntryFacts, Named, RepairFacts, TestFacts, TransferFacts, Way, Work};
+pub use judged::{DutyFacts, DutyStep, LeakRate, NoRate, Notice, OpenLeak, RateInput, Verdict, WeightedAmount};
+
+use crate::ledger::Ink;
 use chrono::NaiveDate;
 use serde::{Deserialize, Serialize};
 
@@ -21,7 +25,7 @@ pub struct ServiceRecord {
     pub state: RecordState,
     /// `None` for an open visit and for imported history: neither was closed here.
     pub fingerprint: Option<Fingerprint>,
-    /// Which copy this paper is; 1 is the first print.
+    /// Which copy this paper is; 1 is the filed original.
     pub copy: u32,
     /// Made by the demonstration: said on every page.
     pub demonstration: bool,
@@ -188,270 +192,6 @@ pub enum Finding {
     LeaksOpen,
 }
 
-/// One entry.
-#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
-pub struct EntryFacts {
-    /// The site's date.
-    pub on: NaiveDate,
-    /// As `09:40`; empty where history does not say.
-    pub at: String,
-    pub person: String,
-    pub job: String,
-    pub work: Work,
-    /// Parts looked at or worked on (82.157(l)(2)(iii)).
-    pub parts: String,
-    pub note: String,
-    /// The reason given where the law leaves room for judgement.
-    pub reason: String,
-    /// What this entry corrects: the earlier record, its entry, and why. Empty for others.
-    pub corrects: String,
-    /// Struck by a later entry: shown struck through, left out of sums.
-    pub struck: bool,
-    /// When and why it was struck, as `struck 09:52: wrong cylinder`.
-    pub struck_because: String,
-    /// History: file and line, as `log.csv, line 14`; empty for entries made here.
-    pub imported_from: String,
-}
-
-/// What was done (82.157(l)(2)(iv)).
-#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
-#[serde(tag = "work", rename_all = "kebab-case")]
-pub enum Work {
-    Transfer(Box<TransferFacts>),
-    Test(Box<TestFacts>),
-    Repair(RepairFacts),
-    /// Any other entry, under its own word: `mothball`, `note`, `recycle`.
-    /// `text` is one finished sentence, which may be empty; `figure` stands at the right.
-    Other {
-        name: String,
-        text: String,
-        figure: String,
-    },
-}
-
-/// Which way gas went.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
-#[serde(rename_all = "kebab-case")]
-pub enum Way {
-    Charge,
-    Recover,
-}
-
-/// Gas moved, known by weighing (82.157(l)(2)(vi); 573 Art. 7(1)(b)–(d)).
-#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
-pub struct TransferFacts {
-    pub way: Way,
-    pub refrigerant: String,
-    /// The trade's word, as `leak`, `seasonal`.
-    pub purpose: String,
-    /// Empty where no cylinder was named (history, factory charge).
-    pub cylinder: String,
-    /// As `virgin`; empty where unknown.
-    pub gas_status: String,
-    /// Reclaimed or recycled gas: facility, address, batch, certificate (573 Art. 7(1)(d)).
-    pub gas_source: String,
-    /// `liquid` or `vapour`.
-    pub phase: String,
-    pub weighing: WeighingMode,
-    /// Reading as typed, with its unit; empty in net-only history.
-    pub before: String,
-    pub after: String,
-    /// Scale, serial and division, as `Scale 2, K-114, division 0.005 kg`.
-    pub scale: String,
-    /// The net, with its unit, as `4.540 kg`.
-    pub net: String,
-    /// The net exactly.
-    pub net_mass: Mass,
-    /// Weighing error, as `± 0.008 kg`; empty: unknown.
-    pub error: String,
-    /// What the hoses can hide, as `hoses emptied`, `hoses up to 0.05 kg`; empty where nothing was said.
-    pub hoses: String,
-    /// `to full charge`, or `short by about 1 lb`; empty for recoveries and history.
-    pub fill: String,
-    /// Recovery or evacuation level that had to be reached, with its article.
-    pub level_required: String,
-    pub level_reached: String,
-    /// Why the first gross differs from the last one known.
-    pub weighing_gap: String,
-}
-
-/// A leak test, leak inspection, verification test or re-check
-/// (82.157(l)(3), (5); 573 Art. 7(1)(f)).
-#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
-pub struct TestFacts {
-    /// The trade's word, as `leak inspection`.
-    pub kind: String,
-    pub method: String,
-    /// Direct and indirect methods are told apart; `None` where unknown.
-    pub direct: Option<bool>,
-    /// `whole appliance`, `part`; empty where unknown.
-    pub scope: String,
-    /// Detector or gauge, serial and the day of its last check.
-    pub instrument: String,
-    pub place: String,
-    /// `pass`, `fail`, `leak found`, `no leak`; empty where not said.
-    pub result: String,
-    /// Each leak place found, as `flare at liquid line drier: isolated`.
-    pub leaks: Vec<String>,
-    /// Running hours since the repair, with their unit.
-    pub running_hours: String,
-    /// The repair tested, as `repair of 3 Mar 2026, 10:05`.
-    pub of_repair: String,
-    /// The certification of a leak inspection that all visible and accessible
-    /// parts were inspected (82.157(l)(3)); a sentence, or empty.
-    pub certification: String,
-    /// Why this test does not count as what it is named, as `does not count: no initial test stands before it`; or empty.
-    pub does_not_count: String,
-}
-
-#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
-pub struct RepairFacts {
-    /// The open leak or place.
-    pub place: String,
-    /// What was done.
-    pub done: String,
-    /// Not for good: meets no duty.
-    pub temporary: bool,
-}
-
-/// Verdict of a leak rate; mirrors the words on the screens.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
-pub enum Verdict {
-    #[serde(rename = "under trigger")]
-    Under,
-    #[serde(rename = "at trigger")]
-    At,
-    #[serde(rename = "over trigger")]
-    Over,
-}
-
-impl Verdict {
-    pub const fn words(self) -> &'static str {
-        match self {
-            Self::Under => "under trigger",
-            Self::At => "at trigger",
-            Self::Over => "over trigger",
-        }
-    }
-}
-
-/// A leak rate by one rulebook, with everything it came from.
-#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
-pub struct LeakRate {
-    /// Legal text and article, as `40 CFR 82.157(b)`.
-    pub source: String,
-    /// Why the rulebook applies.
-    pub applies_because: String,
-    /// Day of the addition that asked for it.
-    pub on: NaiveDate,
-    pub method: RateMethod,
-    /// Percent of full charge a year, exactly.
-    #[serde(with = "exact")]
-    pub percent: Ratio,
-    /// Trigger rate in percent.
-    #[serde(with = "exact")]
-    pub trigger: Ratio,
-    /// Article of the trigger, as `40 CFR 82.157(c)(2)`.
-    pub trigger_source: String,
-    /// Weighing error in percent points; `None`: unknown.
-    #[serde(with = "exact::option")]
-    pub band: Option<Ratio>,
-    pub verdict: Verdict,
-    /// The weighing error could turn the verdict over. The verdict stands.
-    pub within_weighing_error: bool,
-    /// What went into it, each spelled out.
-    pub inputs: Vec<RateInput>,
-    /// The sum written out, as `10 lb ÷ 100 lb × 365 ÷ 180 × 100 % = 365/18 % = 20.28 %`.
-    pub working: String,
-}
-
-/// One figure that a leak rate came from.
-#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
-pub struct RateInput {
-    /// As `added`, `full charge`, `days`.
-    pub caption: String,
-    /// As `10 lb`, `180`.
-    pub value: String,
-    /// Where it comes from, as `since the charge of 4 Sep 2025`; or empty.
-    pub from: String,
-}
-
-/// An addition that asked for no leak rate.
-#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
-pub struct NoRate {
-    pub on: NaiveDate,
-    /// As `3.20 kg`.
-    pub amount: String,
-    pub because: String,
-    pub source: String,
-}
-
-/// A leak found and not yet repaired for good.
-#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
-pub struct OpenLeak {
-    pub place: String,
-    pub since: NaiveDate,
-    /// `isolated`, `section shut`, `repaired temporarily` or empty.
-    pub state: String,
-}
-
-/// What this visit did to a duty.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
-#[serde(rename_all = "kebab-case")]
-pub enum DutyStep {
-    /// An entry of this visit started it.
-    Started,
-    /// An entry of this visit met it.
-    Met,
-    /// It was there before and still is.
-    StillOpen,
-    /// An entry of this visit suspended or ended it.
-    Ended,
-}
-
-#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
-pub struct DutyFacts {
-    /// As `initial verification test`.
-    pub duty: String,
-    /// Article, as `40 CFR 82.157(e)(1)`.
-    pub source: String,
-    pub step: DutyStep,
-    pub from: NaiveDate,
-    /// `None`: no day yet, or without undue delay; `due_words` says which.
-    pub due: Option<NaiveDate>,
-    pub due_words: String,
-    pub met_on: Option<NaiveDate>,
-    /// `open`, `late`, `met`, `met late`, `suspended`, `ended`.
-    pub state: String,
-}
-
-/// A mass with its two weights.
-#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
-pub struct WeightedAmount {
-    /// As `charged`, `recovered`, `lost this year`.
-    pub what: String,
-    pub mass: Mass,
-    /// The mass in the unit of the record, as `10.00 lb`.
-    pub mass_written: String,
-    /// ODP-weighted, in kg; `None`: the table lacks a part.
-    #[serde(with = "exact::option")]
-    pub odp_kg: Option<Ratio>,
-    /// CO₂ equivalent, in t; `None`: the table lacks a part.
-    #[serde(with = "exact::option")]
-    pub co2e_t: Option<Ratio>,
-    /// As `40 CFR 82 subpart A, appendices A and B`.
-    pub odp_table: String,
-    /// As `40 CFR 84.64, else IPCC AR4`.
-    pub gwp_table: String,
-}
-
-/// A finished sentence with its article or basis.
-#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
-pub struct Notice {
-    pub text: String,
-    pub source: String,
-}
-
 /// A caution that was acknowledged before the act.
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
 pub struct Caution {
@@ -489,26 +229,5 @@ mod tests {
     #[test]
     fn a_fingerprint_is_shown_in_two_groups() {
         assert_eq!(Fingerprint { full: "3f9ac1d2e4".into() }.short(), "3f9a c1d2");
-    }
-
-    #[test]
-    fn rates_keep_their_fraction_in_files() {
-        let rate = LeakRate {
-            source: "40 CFR 82.157(b)".into(),
-            applies_because: String::new(),
-            on: NaiveDate::from_ymd_opt(2026, 3, 3).unwrap(),
-            method: RateMethod::Annualizing,
-            percent: Ratio::new(365, 18),
-            trigger: Ratio::from_integer(20),
-            trigger_source: String::new(),
-            band: None,
-            verdict: Verdict::Over,
-            within_weighing_error: false,
-            inputs: vec![],
-            working: String::new(),
-        };
-        let text = serde_json::to_string(&rate).unwrap();
-        assert!(text.contains(r#""percent":"365/18","trigger":"20""#), "{text}");
-        assert_eq!(serde_json::from_str::<LeakRate>(&text).unwrap(), rate);
     }
 }

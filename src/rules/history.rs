@@ -1,7 +1,6 @@
 //! How a log is read: order, works, chains, and what of each charge is *added*.
 //!
-//! The readings are those of the program's contract; `README.md` beside this
-//! file lists them with the articles they read.
+//! Where the law allows two readings, `DEVELOPERS.md` says which was taken.
 
 use super::book::season_months;
 use crate::ledger::{Act, Appliance, ApplianceFacts, ChargePurpose, Line, RecoveryPurpose, TestKind, TestResult, Transfer};

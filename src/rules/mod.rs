@@ -8,6 +8,7 @@ mod history;
 mod loss;
 mod own;
 mod rate;
+mod recovery_level;
 mod scope;
 mod why;
 
@@ -19,5 +20,6 @@ pub use history::{History, Work};
 pub use loss::{Loss, LossEntry, loss_between, loss_entries};
 pub use own::{Adopted, BookFault, OwnBook, adopt, known, read_own, rulebook};
 pub use rate::{LeakRate, Verdict, WeighingBand, annualized, leak_rates, trigger};
+pub use recovery_level::{RecoveryLevel, pressure_class, recovery_level};
 pub use scope::{Applicability, applicability, months, strictest_band};
 pub use why::{MonthlyDisposal, Point, alert_mass, monthly_disposals, points, release_row};

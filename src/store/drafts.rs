@@ -4,7 +4,7 @@
 
 use super::sql_types::Instant;
 use super::{Store, StoreError, Writing};
-use crate::ledger::VisitId;
+use crate::ledger::{ApplianceId, VisitId};
 use chrono::{DateTime, Utc};
 use rusqlite::{OptionalExtension, params};
 use std::collections::BTreeMap;
@@ -16,6 +16,8 @@ use std::time::{Duration, Instant as Tick};
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub struct Draft {
     pub visit: VisitId,
+    /// The appliance that it is about; `None` where it is about none, and in drafts of earlier programs.
+    pub appliance: Option<ApplianceId>,
     /// Which action of the visit: `charge`, `close`, …
     pub action: String,
     pub body: String,
@@ -27,10 +29,10 @@ impl Store {
     /// The store's own, as for all below.
     pub fn draft(&self, visit: VisitId, action: &str) -> Result<Option<Draft>, StoreError> {
         self.read(|c| {
-            c.prepare_cached("SELECT body, saved FROM drafts WHERE visit = ?1 AND action = ?2")?
+            c.prepare_cached("SELECT appliance, body, saved FROM drafts WHERE visit = ?1 AND action = ?2")?
                 .query_row(params![visit, action], |row| {
-                    let Instant(saved) = row.get(1)?;
-                    Ok(Draft { visit, action: action.to_owned(), body: row.get(0)?, saved })
+                    let Instant(saved) = row.get(2)?;
+                    Ok(Draft { visit, appliance: row.get(0)?, action: action.to_owned(), body: row.get(1)?, saved })
                 })
                 .optional()
         })
@@ -38,10 +40,10 @@ impl Store {
 
     pub fn drafts_of(&self, visit: VisitId) -> Result<Vec<Draft>, StoreError> {
         self.read(|c| {
-            let mut statement = c.prepare_cached("SELECT action, body, saved FROM drafts WHERE visit = ?1 ORDER BY action")?;
+            let mut statement = c.prepare_cached("SELECT appliance, action, body, saved FROM drafts WHERE visit = ?1 ORDER BY action")?;
             let drafts = statement.query_map([visit], |row| {
-                let Instant(saved) = row.get(2)?;
-                Ok(Draft { visit, action: row.get(0)?, body: row.get(1)?, saved })
+                let Instant(saved) = row.get(3)?;
+                Ok(Draft { visit, appliance: row.get(0)?, action: row.get(1)?, body: row.get(2)?, saved })
             })?;
             drafts.collect()
         })
@@ -65,10 +67,11 @@ impl Writing<'_> {
 fn put(c: &rusqlite::Connection, draft: &Draft) -> rusqlite::Result<()> {
     // A draft that comes late, after its visit was closed, is of no use.
     c.prepare_cached(
-        "INSERT INTO drafts (visit, action, body, saved) SELECT ?1, ?2, ?3, ?4 FROM visits WHERE id = ?1 AND state = 'open' \
-         ON CONFLICT (visit, action) DO UPDATE SET body = excluded.body, saved = excluded.saved",
+        "INSERT INTO drafts (visit, appliance, action, body, saved) \
+         SELECT ?1, ?2, ?3, ?4, ?5 FROM visits WHERE id = ?1 AND state = 'open' \
+         ON CONFLICT (visit, action) DO UPDATE SET appliance = excluded.appliance, body = excluded.body, saved = excluded.saved",
     )?
-    .execute(params![draft.visit, draft.action, draft.body, Instant(draft.saved)])
+    .execute(params![draft.visit, draft.appliance, draft.action, draft.body, Instant(draft.saved)])
     .map(drop)
 }
 
@@ -121,7 +124,7 @@ impl DraftWriter {
     /// Waits until all is written that was put before.
     ///
     /// # Errors
-    /// The last error of writing since the last flush.
+    /// Why not: of the last try to write. What could not be written is held and tried again.
     pub fn flush(&self) -> Result<(), StoreError> {
         let (answer, done) = channel();
         self.order(Order::Flush(answer));
@@ -151,7 +154,6 @@ impl Drop for DraftWriter {
 type Held = BTreeMap<(VisitId, String), Option<Draft>>;
 
 fn keep(store: &Store, orders: &Receiver<Order>) {
-    let mut failed: Option<StoreError> = None;
     let mut held = Held::new();
     while let Ok(first) = orders.recv() {
         let until = Tick::now() + WAIT;
@@ -169,10 +171,11 @@ fn keep(store: &Store, orders: &Receiver<Order>) {
                 }
             }
         }
-        // What could not be written is held for the next time.
-        match write(store, &held) {
-            Ok(()) => held.clear(),
-            Err(error) => failed = Some(error),
+        // What could not be written is held for the next time; once that is
+        // written too, nothing has failed any more.
+        let mut failed = write(store, &held).err();
+        if failed.is_none() {
+            held.clear();
         }
         for answer in waiting {
             // Whoever asked may have gone.
@@ -213,7 +216,7 @@ mod tests {
     use super::*;
 
     fn draft(body: &str) -> Draft {
-        Draft { visit: ids::VISIT, action: "charge".to_owned(), body: body.to_owned(), saved: now() }
+        Draft { visit: ids::VISIT, appliance: Some(ids::APPLIANCE), action: "charge".to_owned(), body: body.to_owned(), saved: now() }
     }
 
     #[test]
@@ -236,5 +239,22 @@ mod tests {
         writer.put(draft("14"));
         drop(writer);
         assert_eq!(store.draft(ids::VISIT, "charge").unwrap(), Some(draft("14")));
+    }
+    #[test]
+    fn a_failure_that_was_made_good_is_no_failure_any_more() {
+        let folder = tempfile::tempdir().unwrap();
+        let store = Store::open(&folder.path().join("a.store"), OpenMode::Create).unwrap();
+        fill(&store);
+        let writer = DraftWriter::open(&store).unwrap();
+        let refuse = "CREATE TRIGGER full BEFORE INSERT ON drafts BEGIN SELECT RAISE(ABORT, 'no room'); END;";
+        store.read(|c| c.execute_batch(refuse)).unwrap();
+        writer.put(draft("1"));
+        std::thread::sleep(Duration::from_millis(400));
+        assert_eq!(store.draft(ids::VISIT, "charge").unwrap(), None);
+        store.read(|c| c.execute_batch("DROP TRIGGER full;")).unwrap();
+        writer.put(Draft { action: "note".to_owned(), ..draft("2") });
+        std::thread::sleep(Duration::from_millis(400));
+        assert_eq!(store.drafts_of(ids::VISIT).unwrap().len(), 2, "what was held is written with the next");
+        writer.flush().unwrap();
     }
 }

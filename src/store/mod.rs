@@ -22,7 +22,7 @@ mod writing;
 pub use drafts::{Draft, DraftWriter};
 pub use error::StoreError;
 pub use opening::OpenMode;
-pub use records::{ClosedRecord, Countersignature, HandOver};
+pub use records::{ClosedRecord, Countersignature, FurtherCopy, HandOver, Since};
 pub use settings::{Import, fingerprint_of};
 pub use upkeep::{RecordCheck, Report};
 pub use visits::VisitFilter;
@@ -198,7 +198,7 @@ mod tests {
         }
         let late = store.write(now(), |tx| tx.add_entry(&entry(2, Act::Note)));
         assert!(matches!(late, Err(StoreError::Refused { .. })), "{late:?}");
-        let seen = CautionSeen { caution: "1".to_owned(), at_minute: 5 };
+        let seen = CautionSeen { caution: "1".to_owned(), on: None, at_minute: 5, person: None };
         assert!(store.write(now(), |tx| tx.acknowledge(ids::VISIT, &seen)).is_err());
         let twice = store.write(now(), |tx| tx.close_visit(ids::VISIT, &closing(), &record(b"1 something else")));
         assert!(matches!(twice, Err(StoreError::Refused { .. })), "{twice:?}");

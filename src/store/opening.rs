@@ -226,6 +226,10 @@ mod tests {
 
     const LATER: &str = "CREATE TABLE later (id INTEGER PRIMARY KEY) STRICT;";
 
+    fn known() -> i64 {
+        i64::try_from(MIGRATIONS.len()).unwrap()
+    }
+
     fn folder() -> tempfile::TempDir {
         tempfile::tempdir().unwrap()
     }
@@ -268,30 +272,31 @@ mod tests {
 
         let newer = [MIGRATIONS, &[LATER]].concat();
         let store = Store::open_with(&path, OpenMode::MustExist, &newer).unwrap();
-        let schema = i64::try_from(MIGRATIONS.len()).unwrap();
-        assert_eq!(store.read(version).unwrap(), schema + 1);
+        assert_eq!(store.read(version).unwrap(), known() + 1);
         assert_eq!(store.registers().unwrap().sites, [samples::site()]);
         drop(store);
-        let copy = Store::open(&folder.path().join(format!("a.store.schema-{schema}")), OpenMode::MustExist).unwrap();
+        let copy = Store::open(&folder.path().join(format!("a.store.schema-{}", known())), OpenMode::MustExist).unwrap();
         assert_eq!(copy.registers().unwrap().sites, [samples::site()]);
 
         // And back: what is newer than the program is left alone, byte by byte.
         let before = std::fs::read(&path).unwrap();
-        let refused = Store::open(&path, OpenMode::Create);
-        assert!(matches!(refused, Err(StoreError::Newer { found, known, .. }) if (found, known) == (schema + 1, schema)));
+        assert!(
+            matches!(Store::open(&path, OpenMode::Create), Err(StoreError::Newer { found, known: of, .. }) if found == of + 1 && of == known())
+        );
         assert_eq!(std::fs::read(&path).unwrap(), before);
     }
 
     /// One store of each schema that was ever released, opened by this program.
     #[test]
     fn a_store_of_every_schema_opens() {
-        for (schema, bytes) in [(1, include_bytes!("../../tests/fixtures/schema-1.store").as_slice())] {
+        assert_eq!(EARLIER.len() + 1, MIGRATIONS.len(), "a fixture for each schema but the present one");
+        for (schema, bytes, entries) in EARLIER {
             let folder = folder();
             let path = folder.path().join("a.store");
             std::fs::write(&path, bytes).unwrap();
             let store = Store::open(&path, OpenMode::MustExist).unwrap();
-            assert_eq!(store.read(version).unwrap(), i64::try_from(MIGRATIONS.len()).unwrap(), "schema {schema}");
-            assert_eq!(store.lines().unwrap().len(), 5);
+            assert_eq!(store.read(version).unwrap(), known(), "schema {schema}");
+            assert_eq!(store.lines().unwrap().len(), entries);
             assert!(store.check().unwrap().sound());
             assert_eq!(std::fs::read(folder.path().join(format!("a.store.schema-{schema}"))).unwrap()[..16], bytes[..16]);
         }
@@ -327,7 +332,7 @@ mod tests {
         let failing = [MIGRATIONS, &[LATER, "CREATE TABLE later (again INTEGER) STRICT;"]].concat();
         assert!(Store::open_with(&path, OpenMode::MustExist, &failing).is_err());
         let store = Store::open(&path, OpenMode::MustExist).unwrap();
-        assert_eq!(store.read(version).unwrap(), i64::try_from(MIGRATIONS.len()).unwrap());
+        assert_eq!(store.read(version).unwrap(), known());
         let tables: i64 =
             store.read(|c| c.query_row("SELECT count(*) FROM sqlite_schema WHERE name = 'later'", [], |row| row.get(0))).unwrap();
         assert_eq!(tables, 0);
@@ -343,5 +348,31 @@ mod tests {
         let breaking = [MIGRATIONS, &["DELETE FROM people;"]].concat();
         assert!(matches!(Store::open_with(&path, OpenMode::MustExist, &breaking), Err(StoreError::Damaged { .. })));
         assert_eq!(Store::open(&path, OpenMode::MustExist).unwrap().registers().unwrap().people, [samples::person()]);
+    }
+    /// A store of each earlier schema, as it was written then, with the number of its entries.
+    const EARLIER: [(i64, &[u8], usize); 2] =
+        [(1, include_bytes!("../../tests/fixtures/schema-1.store"), 5), (2, include_bytes!("../../tests/fixtures/schema-2.store"), 1)];
+
+    /// Closed records, hand-overs, cautions and drafts of schema 2.
+    #[test]
+    fn what_stands_beside_the_entries_of_schema_2_is_kept() {
+        use crate::ledger::{ApplianceId, CautionSeen, VisitId, VisitState};
+        let folder = folder();
+        let path = folder.path().join("a.store");
+        std::fs::write(&path, EARLIER[1].1).unwrap();
+        let store = Store::open(&path, OpenMode::MustExist).unwrap();
+        let visit = |number: u128| VisitId(uuid::Uuid::from_u128(number));
+        let closed = store.visit(visit(5)).unwrap().unwrap();
+        assert_eq!(closed.state, VisitState::Closed);
+        assert_eq!(closed.closing.unwrap().handed_over, "Mara Brandeis, on paper");
+        let record = crate::record::read_closed(&store.closed_record(visit(5)).unwrap().unwrap().bytes).unwrap();
+        assert_eq!(record.site, store.site(record.site.id).unwrap().unwrap());
+        assert_eq!(record.entries[0].detail, store.entries_of_visit(visit(5)).unwrap()[0].detail);
+        assert_eq!(store.copies(visit(5)).unwrap(), []);
+        let seen = CautionSeen { caution: "1".to_owned(), on: None, at_minute: 493, person: None };
+        assert_eq!(store.cautions_seen(visit(6)).unwrap(), [seen]);
+        let drafts = store.drafts_of(visit(6)).unwrap();
+        assert_eq!(drafts[0].appliance, None);
+        assert!(drafts[0].body.contains(&ApplianceId(uuid::Uuid::from_u128(2)).to_string()));
     }
 }

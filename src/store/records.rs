@@ -39,6 +39,30 @@ pub struct HandOver {
     pub told: String,
 }
 
+/// How much of what came after closing stands on a paper.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub struct Since {
+    /// The representative's later signature.
+    pub countersigned: bool,
+    /// How many of the hand-overs, the first ones.
+    pub hand_overs: u32,
+    /// How many of the corrections, the first ones.
+    pub corrections: u32,
+}
+
+/// A further copy of a closed record, handed out after the filed original, which is copy 1.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct FurtherCopy {
+    /// 2 and up, without gaps.
+    pub number: u32,
+    pub made: DateTime<Utc>,
+    /// Site's local date and minute.
+    pub date: NaiveDate,
+    pub minute: u16,
+    /// What had come when it was made: it prints the same for ever.
+    pub since: Since,
+}
+
 impl Store {
     /// The record of a closed visit; `None` while it is open, or of imported history.
     ///
@@ -75,6 +99,22 @@ impl Store {
                 Ok(HandOver { handed, date, minute: row.get(2)?, told: row.get(3)? })
             })?;
             hand_overs.collect()
+        })
+    }
+
+    /// The further copies of a visit's record, copy 2 first.
+    pub fn copies(&self, visit: VisitId) -> Result<Vec<FurtherCopy>, StoreError> {
+        self.read(|c| {
+            let mut statement = c.prepare_cached(
+                "SELECT number, made, local_date, minute, countersigned, hand_overs, corrections FROM copies WHERE visit = ?1 \
+                 ORDER BY number",
+            )?;
+            let copies = statement.query_map([visit], |row| {
+                let (Instant(made), Day(date)) = (row.get(1)?, row.get(2)?);
+                let since = Since { countersigned: row.get(4)?, hand_overs: row.get(5)?, corrections: row.get(6)? };
+                Ok(FurtherCopy { number: row.get(0)?, made, date, minute: row.get(3)?, since })
+            })?;
+            copies.collect()
         })
     }
 }
@@ -138,5 +178,32 @@ impl Writing<'_> {
             )
             .map(drop)
         })
+    }
+    /// Keeps that a further copy was made.
+    ///
+    /// # Errors
+    /// [`StoreError::Refused`] when there is no closed record or this number was given already.
+    pub fn add_copy(&self, visit: VisitId, copy: &FurtherCopy) -> Result<(), StoreError> {
+        let added = self.run(|c| {
+            c.execute(
+                "INSERT INTO copies (visit, number, made, local_date, minute, countersigned, hand_overs, corrections) \
+                 SELECT visit, ?2, ?3, ?4, ?5, ?6, ?7, ?8 FROM closed_records WHERE visit = ?1 ON CONFLICT DO NOTHING",
+                params![
+                    visit,
+                    copy.number,
+                    Instant(copy.made),
+                    Day(copy.date),
+                    copy.minute,
+                    copy.since.countersigned,
+                    copy.since.hand_overs,
+                    copy.since.corrections
+                ],
+            )
+        })?;
+        if added == 1 {
+            Ok(())
+        } else {
+            Err(StoreError::Refused { sentence: "This copy has been counted already, or there is no closed record.".to_owned() })
+        }
     }
 }

@@ -64,9 +64,14 @@ impl Store {
     /// Cautions acknowledged in a visit, in order of time.
     pub fn cautions_seen(&self, visit: VisitId) -> Result<Vec<CautionSeen>, StoreError> {
         self.read(|c| {
-            let mut statement =
-                c.prepare_cached("SELECT caution, minute FROM cautions_seen WHERE visit = ?1 ORDER BY acknowledged, caution")?;
-            statement.query_map([visit], |row| Ok(CautionSeen { caution: row.get(0)?, at_minute: row.get(1)? }))?.collect()
+            let mut statement = c.prepare_cached(
+                "SELECT caution, local_date, minute, person FROM cautions_seen WHERE visit = ?1 ORDER BY acknowledged, caution",
+            )?;
+            let seen = statement.query_map([visit], |row| {
+                let on = row.get::<_, Option<Day>>(1)?.map(|Day(date)| date);
+                Ok(CautionSeen { caution: row.get(0)?, on, at_minute: row.get(2)?, person: row.get(3)? })
+            })?;
+            seen.collect()
         })
     }
 }
@@ -114,9 +119,10 @@ impl Writing<'_> {
     pub fn acknowledge(&self, visit: VisitId, seen: &CautionSeen) -> Result<(), StoreError> {
         self.run(|c| {
             c.prepare_cached(
-                "INSERT INTO cautions_seen (visit, caution, minute, acknowledged) VALUES (?1, ?2, ?3, ?4) ON CONFLICT DO NOTHING",
+                "INSERT INTO cautions_seen (visit, caution, local_date, minute, person, acknowledged) VALUES (?1, ?2, ?3, ?4, ?5, ?6) \
+                 ON CONFLICT DO NOTHING",
             )?
-            .execute(params![visit, seen.caution, seen.at_minute, Instant(self.now())])
+            .execute(params![visit, seen.caution, seen.on.map(Day), seen.at_minute, seen.person, Instant(self.now())])
             .map(drop)
         })
     }

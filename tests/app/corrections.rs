@@ -34,7 +34,7 @@ fn a_closed_entry_is_corrected_by_a_record_that_names_it() {
     let visit = plant.begin();
     let wrong = app.charge(visit.id, plant.appliance, charge(plant.supply, gross("70", "55"))).unwrap();
     let (technician, counterpart) = signed_by_both();
-    let first = app.close_visit(visit.id, technician, counterpart).unwrap();
+    let first = app.close_visit(visit.id, technician, counterpart).unwrap().record;
     assert!(app.strike(wrong.line.entry, "wrong").is_err(), "the visit is closed");
 
     plant.clock.set("2026-03-10T15:00:00Z".parse().unwrap());

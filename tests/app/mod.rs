@@ -4,5 +4,6 @@ mod corrections;
 mod cylinders;
 mod import;
 mod installation;
+mod paper;
 mod refusals;
 mod visits;

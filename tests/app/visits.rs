@@ -32,7 +32,7 @@ fn a_visit_from_leak_to_closed_record() {
     let app = &plant.app;
     let visit = plant.begin();
     assert_eq!((visit.date.to_string().as_str(), visit.minute), ("2026-03-03", Some(8 * 60 + 12)));
-    app.acknowledge(visit.id, "1").unwrap();
+    app.acknowledge(visit.id, "1", None).unwrap();
 
     app.test(visit.id, plant.appliance, found_a_leak()).unwrap();
     plant.clock.forward(Duration::minutes(20));
@@ -60,7 +60,7 @@ fn a_visit_from_leak_to_closed_record() {
     assert_eq!(draft.state, RecordState::Open);
 
     let (technician, counterpart) = signed_by_both();
-    let closed = app.close_visit(visit.id, technician, counterpart).unwrap();
+    let closed = app.close_visit(visit.id, technician, counterpart).unwrap().record;
     assert_eq!(fingerprint(&closed.bytes), closed.fingerprint);
     let kept = app.store().closed_record(visit.id).unwrap().unwrap();
     assert_eq!((kept.bytes.as_slice(), &kept.fingerprint), (closed.bytes.as_slice(), &closed.fingerprint));
@@ -163,14 +163,14 @@ fn what_comes_after_closing_is_kept_beside_the_record() {
     app.simple(visit.id, plant.appliance, SimpleAct::Note, Common { note: "looked".to_owned(), ..Common::default() }).unwrap();
     assert!(app.hand_over(visit.id, "by mail").is_err(), "not closed yet");
     let later = Counterpart::SignsLater { name: "Mara Brandeis".to_owned() };
-    let closed = app.close_visit(visit.id, signature("Ada Quill"), later).unwrap();
+    let closed = app.close_visit(visit.id, signature("Ada Quill"), later).unwrap().record;
     app.countersign(visit.id, signature("Mara Brandeis")).unwrap();
     assert!(app.countersign(visit.id, signature("Mara Brandeis")).is_err(), "once");
     app.hand_over(visit.id, "Mara Brandeis, on paper").unwrap();
 
     let record = app.service_record(visit.id).unwrap();
     assert!(matches!(&record.counterparty, Some(Counterparty::Signed { signed }) if signed.name == "Mara Brandeis"));
-    assert_eq!(record.handed_over, "Mara Brandeis, on paper");
+    assert_eq!(record.handed_over, "Mara Brandeis, on paper, 3 Mar 2026, 08:12");
     assert_eq!(app.store().closed_record(visit.id).unwrap().unwrap().bytes, closed.bytes);
 }
 
@@ -180,11 +180,11 @@ fn a_draft_is_there_until_its_entry_is_saved() {
     let plant = plant_at(&folder.path().join("a.store"));
     let app = &plant.app;
     let visit = plant.begin();
-    app.save_draft(visit.id, "charge", "before=70").unwrap();
+    app.save_draft(visit.id, Some(plant.appliance), "charge", "before=70").unwrap();
     app.flush_drafts().unwrap();
     assert_eq!(app.open_visits().unwrap()[0].drafts[0].body, "before=70");
     // Still held by the drafts' thread when the entry is saved.
-    app.save_draft(visit.id, "charge", "before=70 after=60").unwrap();
+    app.save_draft(visit.id, Some(plant.appliance), "charge", "before=70 after=60").unwrap();
     app.charge(visit.id, plant.appliance, charge(plant.supply, gross("70", "60"))).unwrap();
     app.flush_drafts().unwrap();
     assert_eq!(app.draft(visit.id, "charge").unwrap(), None);

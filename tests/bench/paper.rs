@@ -1,7 +1,7 @@
 //! How long a service record takes and how large it is. `--quick` for a smoke
 //! run; `--into DIR` also writes every invented paper there, to be looked at.
 
-#[path = "../print/fixtures.rs"]
+#[path = "../print/fixtures/mod.rs"]
 mod fixtures;
 
 use bubblepoint::print::{Paper, annual_account, service_record};

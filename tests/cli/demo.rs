@@ -35,6 +35,12 @@ fn an_earlier_demonstration_is_replaced_and_no_other_store() {
     let error = desk.on_store(&["demo", "--no-window", "--into", "out"]).refused();
     assert!(error.contains("is a store that is no demonstration. It was not touched"), "{error}");
     assert_eq!(std::fs::read(desk.path("store.db")).unwrap(), bytes);
+    // What is refused leaves no folder behind; a file without content is no demonstration either.
+    desk.write("empty.db", "");
+    for store in ["store.db", "empty.db", "no/such/folder/new.db"] {
+        desk.run(&["--store", store, "demo", "--no-window", "--into", "refused"]).refused();
+        assert!(!desk.path("refused").exists(), "{store}");
+    }
     desk.run(&["--store", "new.db", "demo", "--no-window", "--into", "out"]).done();
     desk.run(&["--store", "new.db", "check"]).done();
 }

@@ -80,3 +80,49 @@ fn a_saved_record_is_checked_against_the_store() {
     assert_eq!(foreign.status, 1);
     assert!(foreign.out.contains("no closed record of this store"), "{}", foreign.out);
 }
+
+#[test]
+fn a_further_copy_is_counted_and_the_original_stays() {
+    let desk = demonstration();
+    let visits: serde_json::Value = serde_json::from_str(&desk.on_store(&["visits", "--format", "json"]).done()).unwrap();
+    let of = |state: &str| {
+        let visit = visits.as_array().unwrap().iter().find(|visit| visit["state"] == state).unwrap();
+        visit["visit"].as_str().unwrap().to_owned()
+    };
+    let id = of("closed");
+    let original = desk.on_store(&["record", &id]).done();
+    let bytes = std::fs::read(desk.path(original.trim_end())).unwrap();
+    let second = desk.on_store(&["record", &id, "--new-copy"]).done();
+    assert!(second.ends_with(" copy 2.pdf\n"), "{second}");
+    assert!(desk.on_store(&["record", &id, "--new-copy"]).done().ends_with(" copy 3.pdf\n"));
+    let copy = std::fs::read(desk.path(second.trim_end())).unwrap();
+    assert_eq!(desk.on_store(&["record", &id, "--copy", "2"]).done(), second);
+    assert_eq!(std::fs::read(desk.path(second.trim_end())).unwrap(), copy);
+    assert_eq!(desk.on_store(&["record", &id]).done(), original);
+    assert_eq!(std::fs::read(desk.path(original.trim_end())).unwrap(), bytes);
+    let verdict = desk.on_store(&["check", second.trim_end()]).done();
+    assert!(verdict.contains(" as copy 2"), "{verdict}");
+
+    // What fails is told on standard error; what could be printed is there.
+    let came = desk.on_store(&["record", &id, &of("open"), "--new-copy"]);
+    assert_eq!(came.status, 1);
+    assert!(came.out.ends_with(" copy 4.pdf\n") && came.out.lines().count() == 1, "{}", came.out);
+    assert!(came.err.contains(&of("open")) && came.err.contains("was not printed: "), "{}", came.err);
+}
+
+#[test]
+fn a_file_that_cannot_be_written_or_read_is_told_on_standard_error() {
+    let desk = demonstration();
+    let told = desk.on_store(&["record", "--all", "--into", "papers"]).done();
+    let first = told.lines().next().unwrap();
+    std::fs::remove_file(desk.path(first)).unwrap();
+    // A folder stands where the first file belongs.
+    std::fs::create_dir(desk.path(first)).unwrap();
+    let came = desk.on_store(&["record", "--all", "--into", "papers"]);
+    assert_eq!((came.status, came.out.lines().count()), (1, told.lines().count() - 1), "{}", came.err);
+    assert!(came.err.contains("was not printed: ") && came.err.contains("could not be written"), "{}", came.err);
+
+    let came = desk.on_store(&["check", "missing.pdf", told.lines().last().unwrap()]);
+    assert_eq!(came.status, 1);
+    assert!(came.err.contains("missing.pdf cannot be read") && came.out.lines().count() == 1, "{}{}", came.out, came.err);
+}

@@ -24,7 +24,7 @@ fn a_child_that_writes() {
         // From 70 lb down in steps of 0.01 lb.
         let weight = |hundredths: u32| format!("{}.{:02}", hundredths / 100, hundredths % 100);
         let (before, after) = (weight(7000 - number), weight(7000 - number - 1));
-        plant.app.save_draft(visit.id, "note", &number.to_string()).unwrap();
+        plant.app.save_draft(visit.id, None, "note", &number.to_string()).unwrap();
         writeln!(out, "draft {number}").unwrap();
         plant.app.charge(visit.id, plant.appliance, charge(plant.supply, gross(&before, &after))).unwrap();
         writeln!(out, "saved {number}").unwrap();

@@ -2,8 +2,9 @@
 
 use super::fixtures;
 use super::read_back::Paper as Read;
+use bubblepoint::ledger::RateMethod;
 use bubblepoint::print::{Paper, PrintError, missing_characters, service_record};
-use bubblepoint::record::{Counterparty, Finding, ServiceRecord, Work};
+use bubblepoint::record::{Counterparty, Finding, Named, ServiceRecord, Way, Work};
 
 fn read(record: &ServiceRecord) -> Read {
     Read::read(&service_record(record, Paper::A4).unwrap())
@@ -203,6 +204,90 @@ fn imported_nets_are_marked() {
     assert_all(&record, &["net as imported", "weighing error unknown", "log.csv, line 14", "imported history"]);
     let text = read(&record).text();
     assert!(!text.contains("gross before"), "there were no readings to print");
+}
+
+#[test]
+fn a_rate_says_whether_it_is_of_this_visit_and_what_it_is_a_share_of() {
+    let mut record = fixtures::over_trigger();
+    let text = read(&record).text();
+    assert!(text.contains("% of full charge a year") && !text.contains("Latest leak rate"), "{text}");
+    record.appliances[0].leak_rates[0].on = fixtures::day("2026-02-11");
+    record.appliances[0].leak_rates[0].method = RateMethod::RollingAverage;
+    let text = read(&record).text();
+    assert!(text.contains("% of full charge in the period") && !text.contains("a year"), "{text}");
+    assert!(text.contains("Latest leak rate; no addition of this visit asked for one"), "{text}");
+}
+
+#[test]
+fn the_one_job_of_a_record_is_said_once() {
+    let mut record = fixtures::clean();
+    record.jobs = vec!["W-1187".into()];
+    record.appliances[0].entries[0].job = "W-1187".into();
+    assert_eq!(read(&record).text().matches("W-1187").count(), 1);
+    record.jobs.push("W-1188".into());
+    assert_eq!(read(&record).text().matches("W-1187").count(), 2, "of two jobs each entry says its own");
+}
+
+/// What is known by its net alone says why.
+#[test]
+fn nets_say_where_they_come_from() {
+    let mut record = fixtures::imported();
+    let charge = record.appliances[0].entries[0].clone();
+    let with = |cylinder: &str, corrects: &str| {
+        let mut entry = charge.clone();
+        entry.imported_from.clear();
+        entry.corrects = corrects.to_owned();
+        if let Work::Transfer(transfer) = &mut entry.work {
+            cylinder.clone_into(&mut transfer.cylinder);
+        }
+        entry
+    };
+    let told = |entry| {
+        record.appliances[0].entries = vec![entry];
+        read(&record).text()
+    };
+    let mut told = told;
+    for (entry, words) in [
+        (with("S-204", "charge of 3 Mar 2026, record 3f9a c1d2: misread"), "net as corrected; weighing error unknown"),
+        (with("", ""), "net as the maker states it; weighing error unknown"),
+        (with("S-204", ""), "net as stated; weighing error unknown"),
+    ] {
+        let text = told(entry);
+        assert!(text.contains(words) && !text.contains("as imported"), "{words}: {text}");
+    }
+}
+
+#[test]
+fn levels_and_readings_are_on_paper() {
+    let mut record = fixtures::clean();
+    let mut recovery = fixtures::charge("10:00", "10.0", "43.1 lb", "53.1 lb");
+    if let Work::Transfer(transfer) = &mut recovery.work {
+        transfer.way = Way::Recover;
+        "10 in Hg vacuum (40 CFR 82.156, Table 1: high-pressure, 200 lb or more)".clone_into(&mut transfer.level_required);
+        "12 in Hg vacuum".clone_into(&mut transfer.level_reached);
+    }
+    let named = |caption: &str, value: &str| Named { caption: caption.into(), value: value.into() };
+    let hold = Work::Other {
+        name: "pressure hold".into(),
+        text: "kept as read, not judged".into(),
+        figure: String::new(),
+        fields: vec![named("readings, gauge pressure", "10:12 10.45 bar; 10:42 10.40 bar"), named("gauge", "Gauge 1, G-17")],
+    };
+    record.appliances[0].entries = vec![recovery, fixtures::entry("10:12", hold)];
+    assert_all(
+        &record,
+        &[
+            "level to reach",
+            "10 in Hg vacuum (40 CFR 82.156, Table 1: high-pressure, 200 lb or more)",
+            "level reached",
+            "12 in Hg vacuum",
+            "Pressure hold",
+            "kept as read, not judged",
+            "readings, gauge pressure",
+            "10:12 10.45 bar; 10:42 10.40 bar",
+            "Gauge 1, G-17",
+        ],
+    );
 }
 
 #[test]

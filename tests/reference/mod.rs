@@ -3,6 +3,7 @@
 mod ahri_guideline_k;
 mod ashrae_handbook;
 mod blends;
+mod cfr_40_82_156;
 mod cfr_40_leak_rates;
 mod cfr_49_173;
 mod co2_equivalent_tables;

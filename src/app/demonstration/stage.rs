@@ -130,7 +130,7 @@ impl Scene<'_> {
     }
 
     pub fn cautions(&self, numbers: &[&str]) -> Result<(), AppError> {
-        numbers.iter().try_for_each(|number| self.stage.app.acknowledge(self.visit, number))
+        numbers.iter().try_for_each(|number| self.stage.app.acknowledge(self.visit, number, None))
     }
 
     /// The readings of a weighing that begins where the cylinder was left.

@@ -2,20 +2,36 @@
 
 use super::{instrument_text, wording};
 use crate::app::methods::is_direct;
-use crate::ledger::{Act, ApplianceFacts, Detail, Entry, EntryId, LeakPlace, Registers, Scope, TestKind, Transfer, WeighingMode};
-use crate::measure::Uncertainty;
-use crate::quantity::{Mass, Weighing};
-use crate::record::{EntryFacts, Fingerprint, RepairFacts, TestFacts, TransferFacts, Way, Work};
+use crate::ledger::{
+    Act, ApplianceFacts, Detail, Entry, EntryId, Instrument, LeakPlace, RecoveryPurpose, Registers, Scope, Site, TestKind, Transfer,
+    WeighingMode,
+};
+use crate::quantity::Weighing;
+use crate::record::{self, EntryFacts, Fingerprint, RepairFacts, TestFacts, TransferFacts, Way, Work};
+use crate::rules::{History, recovery_level};
+use chrono::NaiveDate;
 use std::collections::HashMap;
 
 /// Where names are looked up.
 pub struct Names<'a> {
     pub registers: &'a Registers,
+    pub site: &'a Site,
     /// All entries on the appliance.
     pub all: &'a [Entry],
+    /// In force on the visit's last day.
     pub facts: &'a ApplianceFacts,
+    /// The facts in force at each entry, within the day too.
+    pub history: &'a History<'a>,
     /// Tests that do not count as what they are named, and why.
-    pub history: &'a HashMap<EntryId, String>,
+    pub does_not_count: &'a HashMap<EntryId, String>,
+}
+
+impl Names<'_> {
+    /// What the appliance was when this was done: a retrofit changes gas and charge between two entries of one day.
+    fn facts_at(&self, entry: &Entry) -> &ApplianceFacts {
+        let line = self.history.lines.iter().position(|line| line.entry == entry.line.entry);
+        line.and_then(|line| self.history.facts_at(line)).unwrap_or(self.facts)
+    }
 }
 
 /// `struck_by` is the entry that strikes this one, `mends` the closed one
@@ -61,8 +77,13 @@ fn note(entry: &Entry) -> String {
 fn work(entry: &Entry, names: &Names<'_>) -> Work {
     let detail = &entry.detail;
     match &entry.line.act {
-        Act::Charge { purpose, transfer } => Work::Transfer(Box::new(moved(entry, Way::Charge, purpose.name(), transfer, names))),
-        Act::Recover { purpose, transfer } => Work::Transfer(Box::new(moved(entry, Way::Recover, purpose.name(), transfer, names))),
+        Act::Charge { purpose, transfer } => {
+            Work::Transfer(Box::new(moved(entry, Way::Charge, purpose.name(), transfer, String::new(), names)))
+        }
+        Act::Recover { purpose, transfer } => {
+            let level = level_to_reach(entry, *purpose, names);
+            Work::Transfer(Box::new(moved(entry, Way::Recover, purpose.name(), transfer, level, names)))
+        }
         Act::Test { kind, result, scope, .. } => Work::Test(Box::new(TestFacts {
             kind: kind.name().to_owned(),
             method: detail.method.clone(),
@@ -72,7 +93,7 @@ fn work(entry: &Entry, names: &Names<'_>) -> Work {
                 Some(Scope::Part) => "part".to_owned(),
                 None => String::new(),
             },
-            instrument: instrument(detail, names),
+            instrument: instrument(detail, entry.line.at.date, names),
             place: detail.place.clone(),
             result: result.map(|result| result.name().to_owned()).unwrap_or_default(),
             leaks: detail.leaks.iter().map(leak).collect(),
@@ -83,7 +104,7 @@ fn work(entry: &Entry, names: &Names<'_>) -> Work {
                 .map(wording::entry_name)
                 .unwrap_or_default(),
             certification: certification(*kind, *scope),
-            does_not_count: names.history.get(&entry.line.entry).cloned().unwrap_or_default(),
+            does_not_count: names.does_not_count.get(&entry.line.entry).cloned().unwrap_or_default(),
         })),
         Act::Repair { temporary } => {
             Work::Repair(RepairFacts { place: detail.place.clone(), done: detail.note.clone(), temporary: *temporary })
@@ -99,19 +120,51 @@ fn work(entry: &Entry, names: &Names<'_>) -> Work {
         }
         Act::Recycle { cylinder } => {
             let cylinder = cylinder.and_then(|id| names.registers.cylinder(id)).map(|cylinder| format!("Cylinder {}", cylinder.name));
-            let text = [cylinder, Some(detail.method.clone()), Some(instrument(detail, names))];
+            let text = [cylinder, Some(detail.method.clone()), Some(instrument(detail, entry.line.at.date, names))];
             let text = text.into_iter().flatten().filter(|text| !text.is_empty()).collect::<Vec<_>>().join(", ");
             other(entry, text, String::new())
         }
+        Act::Note if !detail.level_reached.is_empty() => readings(entry, names),
         _ => other(entry, detail.method.clone(), detail.level_reached.clone()),
     }
 }
 
 fn other(entry: &Entry, text: String, figure: String) -> Work {
-    Work::Other { name: entry.line.act.name().to_owned(), text, figure }
+    Work::Other { name: entry.line.act.name().to_owned(), text, figure, fields: Vec::new() }
 }
 
-fn moved(entry: &Entry, way: Way, purpose: &str, transfer: &Transfer, names: &Names<'_>) -> TransferFacts {
+/// A pressure hold or a vacuum rise: a series of readings. Pressure is read
+/// against the air, vacuum against nothing, as their page asks for them.
+fn readings(entry: &Entry, names: &Names<'_>) -> Work {
+    let detail = &entry.detail;
+    let field = |caption: &str, value: String| record::Named { caption: caption.to_owned(), value };
+    let caption = match detail.method.as_str() {
+        "pressure hold" => "readings, gauge pressure",
+        "vacuum rise" => "readings, absolute pressure",
+        _ => "readings",
+    };
+    let fields = [
+        field(caption, detail.level_reached.clone()),
+        field("gauge", instrument(detail, entry.line.at.date, names)),
+        field("place", detail.place.clone()),
+    ];
+    Work::Other {
+        name: if detail.method.is_empty() { "readings".to_owned() } else { detail.method.clone() },
+        text: "kept as read, not judged".to_owned(),
+        figure: String::new(),
+        fields: fields.into_iter().filter(|field| !field.value.is_empty()).collect(),
+    }
+}
+
+/// The level that the site's law of that day asks for, with its article.
+fn level_to_reach(entry: &Entry, purpose: RecoveryPurpose, names: &Names<'_>) -> String {
+    let day = entry.line.at.date;
+    let Some(site) = names.site.versions.on(day) else { return String::new() };
+    let level = recovery_level(&site.rulebooks, names.facts_at(entry), purpose, day);
+    level.map(|level| format!("{} ({})", level.level, level.source)).unwrap_or_default()
+}
+
+fn moved(entry: &Entry, way: Way, purpose: &str, transfer: &Transfer, level_required: String, names: &Names<'_>) -> TransferFacts {
     let detail = &entry.detail;
     let unit = wording::unit_of(entry);
     let reading = detail.reading.as_ref();
@@ -132,7 +185,7 @@ fn moved(entry: &Entry, way: Way, purpose: &str, transfer: &Transfer, names: &Na
     };
     TransferFacts {
         way,
-        refrigerant: names.facts.refrigerant.clone(),
+        refrigerant: names.facts_at(entry).refrigerant.clone(),
         purpose: purpose.to_owned(),
         cylinder: cylinder.map(|cylinder| cylinder.name.clone()).unwrap_or_default(),
         gas_status: detail.gas_status.map(|status| status.name().to_owned()).unwrap_or_default(),
@@ -144,24 +197,26 @@ fn moved(entry: &Entry, way: Way, purpose: &str, transfer: &Transfer, names: &Na
         scale,
         net: wording::mass(transfer.mass, unit),
         net_mass: transfer.mass,
-        error: transfer.division.map(|division| error(division, transfer.hoses)).unwrap_or_default(),
+        error: transfer.division.map(|division| wording::error(division, transfer.hoses, unit)).unwrap_or_default(),
         hoses,
         fill,
-        level_required: String::new(),
+        level_required,
         level_reached: detail.level_reached.clone(),
         weighing_gap: detail.weighing_gap.clone(),
     }
 }
 
-/// `± 0.008 kg`, k = 2.
-fn error(division: Mass, hoses: Mass) -> String {
-    format!("± {} kg", Uncertainty::of_net(division, hoses).expanded_kg_text(3))
+/// With its last check, and that the next was overdue on the day of use.
+fn instrument(detail: &Detail, on: NaiveDate, names: &Names<'_>) -> String {
+    let found = detail.instrument.and_then(|id| names.registers.instrument(id));
+    found.map(|instrument| instrument_text(instrument, check_of(instrument, on))).unwrap_or_default()
 }
 
-fn instrument(detail: &Detail, names: &Names<'_>) -> String {
-    let found = detail.instrument.and_then(|id| names.registers.instrument(id));
-    let checked = |checked: chrono::NaiveDate| format!("checked {}", wording::day(checked));
-    found.map(|instrument| instrument_text(instrument, instrument.checked_on.map(checked))).unwrap_or_default()
+fn check_of(instrument: &Instrument, on: NaiveDate) -> Option<String> {
+    let checked = instrument.checked_on.map(|checked| format!("checked {}", wording::day(checked)));
+    let overdue = instrument.check_due.filter(|due| *due < on).map(|due| format!("check overdue since {}", wording::day(due)));
+    let told: Vec<String> = [checked, overdue].into_iter().flatten().collect();
+    (!told.is_empty()).then(|| told.join(", "))
 }
 
 fn leak(leak: &LeakPlace) -> String {

@@ -2,21 +2,22 @@
 //! and what the rules make of them, as finished strings.
 
 mod entry;
+pub(super) mod later;
 mod verdict;
 mod wording;
 
 pub(super) use verdict::ODP_TABLE;
 
 use super::{App, AppError, PROGRAM};
+use crate::gas::Weighting;
 use crate::ledger::{
-    Appliance, ApplianceFacts, CautionSeen, Closing, Counterpart, Entry, Instrument, Person, PersonId, Registers, Signature, Visit,
-    VisitId, VisitState,
+    Act, Appliance, ApplianceFacts, CautionSeen, ChargePurpose, Closing, Counterpart, Entry, Instrument, Line, Person, PersonId, Registers,
+    Signature, Site, Visit, VisitId, VisitState,
 };
 use crate::record::{
-    self, AppliancePart, ApplianceText, Caution, Counterparty, Finding, Fingerprint, Party, PersonAtWork, RecordState, ServiceRecord,
-    SignedBy, SiteText, read_closed,
+    self, AppliancePart, ApplianceText, Caution, Counterparty, Finding, Party, PersonAtWork, RecordState, ServiceRecord, SignedBy, SiteText,
 };
-use crate::rules::rulebook;
+use crate::rules::{History, rulebook, weights};
 use crate::store::Store;
 use chrono::NaiveDate;
 use std::collections::BTreeSet;
@@ -31,40 +32,12 @@ impl App {
     pub fn service_record(&self, visit: VisitId) -> Result<ServiceRecord, AppError> {
         let visit = self.store().visit(visit)?.ok_or(AppError::Unknown { what: "visit" })?;
         if visit.state == VisitState::Closed {
-            return self.closed_service_record(&visit);
+            let later = later::of(self.store(), visit.id)?;
+            return Ok(later.on(later::original(self.store(), visit.id)?, later.all(), 1));
         }
         let entries = self.store().entries_of_visit(visit.id)?;
         of_visit(self.store(), &visit, &entries)
     }
-
-    fn closed_service_record(&self, visit: &Visit) -> Result<ServiceRecord, AppError> {
-        let store = self.store();
-        let kept = store.closed_record(visit.id)?.ok_or(AppError::Unknown { what: "closed record" })?;
-        let mut paper = read_closed(&kept.bytes).map_err(|e| AppError::Record(e.to_string()))?.paper;
-        paper.fingerprint = Some(Fingerprint { full: kept.fingerprint });
-        paper.handed_over = visit.closing.as_ref().map(|closing| closing.handed_over.clone()).unwrap_or_default();
-        if let Some(later) = store.countersignature(visit.id)? {
-            let at = wording::at(later.date, Some(later.minute));
-            paper.remarks.push(format!("Signed later, on {at}, by {}.", later.signature.name));
-            paper.counterparty = Some(Counterparty::Signed { signed: signed_by(&later.signature) });
-        }
-        paper.remarks.extend(corrections(store, visit.id)?);
-        Ok(paper)
-    }
-}
-
-/// One remark for each later record that corrects an entry of this one.
-fn corrections(store: &Store, visit: VisitId) -> Result<Vec<String>, AppError> {
-    let mut remarks = Vec::new();
-    for entry in store.entries_of_visit(visit)? {
-        let Some(by) = entry.struck_by else { continue };
-        let Some(correction) = store.entry(by)?.filter(|by| by.visit != visit) else { continue };
-        let record = store.visit(correction.visit)?.and_then(|visit| visit.fingerprint);
-        let record = record.map_or("an open record".to_owned(), |full| format!("record {}", Fingerprint { full }.short()));
-        let what = wording::entry_name(&entry);
-        remarks.push(format!("The {what} is corrected by {record}: {}.", correction.detail.reason.trim_end_matches('.')));
-    }
-    Ok(remarks)
 }
 
 /// The record of a visit as its entries and the rules make it today.
@@ -74,7 +47,8 @@ pub(super) fn of_visit(store: &Store, visit: &Visit, entries: &[Entry]) -> Resul
     let last_day = days.clone().max().unwrap_or(visit.date);
     let first_day = days.min().unwrap_or(visit.date).min(visit.date);
     let site_facts = site.versions.on(last_day).unwrap_or_else(|| site.versions.latest());
-    let registers = spoken_of(store, visit, entries)?;
+    let seen = store.cautions_seen(visit.id)?;
+    let registers = spoken_of(store, visit, entries, &seen)?;
     let mut jobs: Vec<String> = Vec::new();
     for job in entries.iter().filter_map(|entry| entry.line.job.as_deref()) {
         if !jobs.iter().any(|known| known == job) {
@@ -107,7 +81,7 @@ pub(super) fn of_visit(store: &Store, visit: &Visit, entries: &[Entry]) -> Resul
         last_day,
         people: visit.people.iter().filter_map(|id| registers.person(*id)).map(person_at_work).collect(),
         appliances,
-        cautions: cautions(&store.cautions_seen(visit.id)?, visit, &registers),
+        cautions: cautions(&seen, visit, &registers),
         technician: visit.closing.as_ref().map(|closing| signed_by(&closing.technician)),
         counterparty: visit.closing.as_ref().map(counterparty),
         handed_over: String::new(),
@@ -143,11 +117,11 @@ fn state(visit: &Visit, entries: &[Entry]) -> RecordState {
 }
 
 /// Only what the visit speaks of is read, appliances in the order in which they were taken up.
-fn spoken_of(store: &Store, visit: &Visit, entries: &[Entry]) -> Result<Registers, AppError> {
+fn spoken_of(store: &Store, visit: &Visit, entries: &[Entry], seen: &[CautionSeen]) -> Result<Registers, AppError> {
     let mut found = Registers { company: store.company_versions()?, ..Registers::default() };
     let mut appliances = BTreeSet::new();
     let mut cylinders = BTreeSet::new();
-    let mut people: BTreeSet<PersonId> = visit.people.iter().copied().collect();
+    let mut people: BTreeSet<PersonId> = visit.people.iter().copied().chain(seen.iter().filter_map(|seen| seen.person)).collect();
     let mut instruments = BTreeSet::new();
     for entry in entries {
         if appliances.insert(entry.line.appliance) {
@@ -172,7 +146,7 @@ fn spoken_of(store: &Store, visit: &Visit, entries: &[Entry]) -> Result<Register
 
 fn part(
     store: &Store,
-    site: &crate::ledger::Site,
+    site: &Site,
     appliance: &Appliance,
     entries: &[Entry],
     registers: &Registers,
@@ -185,7 +159,12 @@ fn part(
     let open_leaks = crate::ledger::open_leaks(&all, last_day);
     let judged = verdict::judge(site, appliance, &lines, &own, last_day);
     let facts = judged.facts.clone().unwrap_or_else(|| appliance.versions.latest().clone());
-    let names = entry::Names { registers, all: &all, facts: &facts, history: &judged.does_not_count };
+    let site_facts = site.versions.on(last_day).unwrap_or_else(|| site.versions.latest());
+    // Struck transfers are printed too, with the gas of their place; a struck retrofit changed nothing.
+    let counts_here = |entry: &&Entry| entry.struck_by.is_none() || !matches!(entry.line.act, Act::Retrofit { .. });
+    let in_place: Vec<Line> = all.iter().filter(counts_here).map(|entry| entry.line.clone()).collect();
+    let history = History::new(appliance, &in_place, last_day);
+    let names = entry::Names { registers, site, all: &all, facts: &facts, history: &history, does_not_count: &judged.does_not_count };
     let mut facts_of_entries = Vec::new();
     for entry in &own {
         let struck_by = entry.struck_by.map(|by| store.entry(by)).transpose()?.flatten();
@@ -201,7 +180,7 @@ fn part(
         facts_of_entries.push(entry::facts(entry, struck_by.as_ref(), mends.as_ref(), mended_record, &names));
     }
     Ok(AppliancePart {
-        appliance: appliance_text(appliance, &facts, &all),
+        appliance: appliance_text(appliance, &facts, weights(site_facts), &all),
         entries: facts_of_entries,
         finding: finding(&own, &open_leaks),
         leak_rates: judged.leak_rates,
@@ -217,7 +196,7 @@ fn part(
 }
 
 fn finding(own: &[&Entry], open: &[crate::ledger::OpenLeak]) -> Finding {
-    use crate::ledger::{Act, TestResult};
+    use crate::ledger::TestResult;
     let results: Vec<Option<TestResult>> = own
         .iter()
         .filter(|entry| entry.struck_by.is_none())
@@ -234,7 +213,7 @@ fn finding(own: &[&Entry], open: &[crate::ledger::OpenLeak]) -> Finding {
     }
 }
 
-fn appliance_text(appliance: &Appliance, facts: &ApplianceFacts, all: &[Entry]) -> ApplianceText {
+fn appliance_text(appliance: &Appliance, facts: &ApplianceFacts, weights: Weighting, all: &[Entry]) -> ApplianceText {
     let declared = [
         (facts.labelled_hermetically_sealed, "labelled hermetically sealed"),
         (facts.residential, "residential"),
@@ -244,9 +223,7 @@ fn appliance_text(appliance: &Appliance, facts: &ApplianceFacts, all: &[Entry]) 
         (facts.military, "military"),
     ];
     let at_installation = all.iter().filter(|entry| entry.struck_by.is_none()).find_map(|entry| match &entry.line.act {
-        crate::ledger::Act::Charge { purpose: crate::ledger::ChargePurpose::Installation, transfer } => {
-            Some(wording::mass(transfer.mass, wording::unit_of(entry)))
-        }
+        Act::Charge { purpose: ChargePurpose::Installation, transfer } => Some(wording::mass(transfer.mass, wording::unit_of(entry))),
         _ => None,
     });
     ApplianceText {
@@ -258,7 +235,7 @@ fn appliance_text(appliance: &Appliance, facts: &ApplianceFacts, all: &[Entry]) 
         category: facts.category.name().to_owned(),
         equipment: facts.equipment.map(|equipment| equipment.name().to_owned()).unwrap_or_default(),
         refrigerant: facts.refrigerant.clone(),
-        refrigerant_facts: wording::gas_facts(&facts.refrigerant),
+        refrigerant_facts: wording::gas_facts(&facts.refrigerant, weights),
         full_charge: wording::full_charge(facts),
         full_charge_method: facts.charge_method.map(|method| method.name().to_owned()).unwrap_or_default(),
         charged_at_installation: at_installation.unwrap_or_default(),
@@ -284,13 +261,14 @@ fn instrument_text(instrument: &Instrument, more: Option<String>) -> String {
     parts.into_iter().flatten().filter(|part| !part.is_empty()).collect::<Vec<_>>().join(", ")
 }
 
+/// Each with the day, the minute and the person it was acknowledged by.
 fn cautions(seen: &[CautionSeen], visit: &Visit, registers: &Registers) -> Vec<Caution> {
-    let person = visit.people.first().and_then(|id| registers.person(*id)).map(|person| person.name.clone()).unwrap_or_default();
+    let name = |id: PersonId| registers.person(id).map(|person| person.name.clone());
     let caution = |seen: &CautionSeen| Caution {
         text: record::caution(&seen.caution).map_or(&*seen.caution, |known| known.text).to_owned(),
         basis: record::caution(&seen.caution).map_or("", |known| known.basis).to_owned(),
-        at: wording::at(visit.date, Some(seen.at_minute)),
-        person: person.clone(),
+        at: wording::at(seen.on.unwrap_or(visit.date), Some(seen.at_minute)),
+        person: seen.person.or(visit.people.first().copied()).and_then(name).unwrap_or_default(),
     };
     seen.iter().map(caution).collect()
 }

@@ -6,7 +6,7 @@ use crate::ledger::{Act, Appliance, ApplianceFacts, ChargePurpose, Entry, EntryI
 use crate::quantity::{Mass, MassUnit, Ratio, decimal_text, parse_decimal, rounded_text};
 use crate::record::{DutyFacts, DutyStep, LeakRate, NoRate, Notice, RateInput, Verdict, WeightedAmount};
 use crate::rules::{self, Assessment, Duty, DutyState, Judgement, assess, loss_entries};
-use chrono::NaiveDate;
+use chrono::{Days, NaiveDate};
 use std::collections::{HashMap, HashSet};
 
 /// What [`judge`] finds.
@@ -80,7 +80,8 @@ impl Sight<'_> {
             RateInput { caption: "full charge".to_owned(), value: self.mass(rate.full_charge), from: String::new() },
         ];
         if let Some(days) = rate.days {
-            inputs.push(RateInput { caption: "days".to_owned(), value: days.to_string(), from: rate.notes.join("; ") });
+            let from = if rate.notes.is_empty() { since_day(rate.on, days, rate.longest_days) } else { rate.notes.join("; ") };
+            inputs.push(RateInput { caption: "days".to_owned(), value: days.to_string(), from });
         }
         LeakRate {
             source: rate.source.clone(),
@@ -185,6 +186,10 @@ impl Sight<'_> {
         let year = &self.assessment.this_year;
         let year_name = format!("lost in {}", self.assessment.on.format("%Y"));
         amounts.push(self.amount(&year_name, year.lost, year.odp_kg, year.co2e_t));
+        // What the law's bands and thresholds measure (2024/573 Art. 5, 82.157(a)).
+        if let Some(charge) = self.assessment.facts.full_charge {
+            amounts.push(self.weighted("full charge", &[(self.assessment.facts.refrigerant.clone(), charge)]));
+        }
         amounts
     }
 
@@ -267,6 +272,12 @@ impl Sight<'_> {
             })
             .collect()
     }
+}
+
+/// `since 4 Sep 2025`: from when the days of a rate run; empty where they are cut to the most that count.
+fn since_day(on: NaiveDate, days: i64, longest: i64) -> String {
+    let since = u64::try_from(days).ok().filter(|_| days < longest).and_then(|days| on.checked_sub_days(Days::new(days)));
+    since.map(|since| format!("since {}", wording::day(since))).unwrap_or_default()
 }
 
 fn why_no_rate(purpose: ChargePurpose) -> (&'static str, &'static str) {

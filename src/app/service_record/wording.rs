@@ -1,7 +1,8 @@
 //! Days, times and masses as a record writes them.
 
-use crate::gas;
+use crate::gas::{self, Weighting};
 use crate::ledger::{ApplianceFacts, Entry};
+use crate::measure::Uncertainty;
 use crate::quantity::{Mass, MassUnit, Ratio, decimal_text, rounded_text};
 use chrono::NaiveDate;
 
@@ -48,6 +49,19 @@ pub fn mass(mass: Mass, unit: MassUnit) -> String {
     format!("{} {unit}", short(mass.in_unit(unit)))
 }
 
+/// The weighing error (k = 2) of a net in its own unit, as `± 0.008 kg`.
+pub fn error(division: Mass, hoses: Mass, unit: MassUnit) -> String {
+    let (unit, places) = match unit {
+        MassUnit::Kilogram => (unit, 3),
+        MassUnit::Gram => (unit, 1),
+        MassUnit::Pound => (unit, 2),
+        MassUnit::PoundOunce | MassUnit::Ounce => (MassUnit::Ounce, 1),
+    };
+    // Per 10⁻¹⁴ kg.
+    let factor = Mass::from_units(1).in_unit(unit);
+    format!("\u{b1} {} {unit}", Uncertainty::of_net(division, hoses).expanded_text(factor, places))
+}
+
 fn short(value: Ratio) -> String {
     let exact = decimal_text(value).filter(|text| text.split_once('.').is_none_or(|(_, part)| part.len() <= PLACES as usize));
     exact.unwrap_or_else(|| rounded_text(value, 3))
@@ -62,12 +76,14 @@ pub fn full_charge(facts: &ApplianceFacts) -> String {
     }
 }
 
-/// `class A1, ODP 0.055`; empty for a gas that the catalogue does not know.
-pub fn gas_facts(refrigerant: &str) -> String {
+/// `class A1, ODP 0.055, GWP 1810 (40 CFR 84.64, else IPCC AR4)`, by the
+/// site's own tables; empty for a gas that the catalogue does not know.
+pub fn gas_facts(refrigerant: &str, weights: Weighting) -> String {
     let Some(gas) = gas::find(refrigerant) else { return String::new() };
     let class = gas.safety_class().map(|class| format!("class {}", class.name()));
     let odp = decimal_text(gas.odp()).map(|odp| format!("ODP {odp}"));
-    [class, odp].into_iter().flatten().collect::<Vec<_>>().join(", ")
+    let gwp = gas.weight(weights).and_then(decimal_text).map(|gwp| format!("GWP {gwp} ({})", weights.name()));
+    [class, odp, gwp].into_iter().flatten().collect::<Vec<_>>().join(", ")
 }
 
 #[cfg(test)]
@@ -81,6 +97,14 @@ mod tests {
         assert_eq!(mass(ten_pounds, MassUnit::Kilogram), "4.536 kg");
         assert_eq!(mass(Mass::parse("12 4.5", MassUnit::PoundOunce).unwrap(), MassUnit::PoundOunce), "12 lb 4.5 oz");
         assert_eq!(mass(Mass::parse("4.54", MassUnit::Kilogram).unwrap(), MassUnit::Kilogram), "4.54 kg");
+    }
+
+    #[test]
+    fn errors_speak_in_the_unit_of_the_weighing() {
+        let (tenth, none) = (Mass::parse("0.1", MassUnit::Pound).unwrap(), Mass::ZERO);
+        assert_eq!(error(tenth, none, MassUnit::Pound), "\u{b1} 0.08 lb");
+        assert_eq!(error(tenth, none, MassUnit::Kilogram), "\u{b1} 0.037 kg");
+        assert_eq!(error(tenth, none, MassUnit::PoundOunce), "\u{b1} 1.3 oz");
     }
 
     #[test]

@@ -3,7 +3,7 @@
 use super::plant;
 use super::rates::number;
 use super::{Go, Office, Place};
-use crate::app::App;
+use crate::app::{App, file_away};
 use crate::ledger::VisitState;
 use crate::quantity::{Mass, MassUnit, Ratio, rounded_text};
 use crate::record::{AccountLine, AnnualAccount, GasAccount, account_csv, account_json};
@@ -13,7 +13,6 @@ use crate::view::shown::{Choice, Fact};
 use crate::view::{format, words};
 use chrono::{Datelike, NaiveDate};
 use std::collections::BTreeSet;
-use std::path::Path;
 use words::office as say;
 
 #[derive(Debug, Default)]
@@ -165,7 +164,7 @@ impl Office {
             "csv" => Ok(account_csv(account).into_bytes()),
             _ => account_json(account).map(String::into_bytes).map_err(|error| error.to_string()),
         };
-        let done = bytes.and_then(|bytes| write_whole(&path, &bytes).map_err(|error| error.to_string()));
+        let done = bytes.and_then(|bytes| file_away(&path, &bytes).map_err(|error| error.to_string()));
         let shown = path.display().to_string();
         (self.account.export, self.account.export_grave) = match done {
             Ok(()) => (say::written_to(&shown), false),
@@ -297,15 +296,4 @@ fn tally(tally: &crate::record::DutyTally) -> Option<Tally> {
         not_done: told(counts.not_done, "not done"),
         shares: [part(counts.in_time), part(counts.late), part(counts.not_done)],
     })
-}
-
-/// Writes a file whole or not at all: a temporary one beside it, synced, then named.
-pub(super) fn write_whole(path: &Path, bytes: &[u8]) -> std::io::Result<()> {
-    use std::io::Write;
-    let folder = path.parent().unwrap_or(Path::new("."));
-    std::fs::create_dir_all(folder)?;
-    let mut temporary = tempfile::Builder::new().prefix(".bubblepoint-").tempfile_in(folder)?;
-    temporary.write_all(bytes)?;
-    temporary.as_file().sync_all()?;
-    temporary.persist(path).map(drop).map_err(|error| error.error)
 }

@@ -1,11 +1,10 @@
 //! A closed or imported visit, seen from one of its appliances.
 
-use super::account::write_whole;
 use super::appliance::{short_print, told};
 use super::plant::Pane;
 use super::row::Row;
 use super::{Go, Office};
-use crate::app::{App, AppError};
+use crate::app::{App, AppError, file_away};
 use crate::ledger::{Act, ApplianceId, Counterpart, VisitId};
 use crate::view::format;
 use crate::view::shown::Fact;
@@ -78,7 +77,7 @@ impl Office {
             }
         }
         // Named as its print is; a name that paper cannot show says so instead.
-        let file = match app.print_record(visit.id, None) {
+        let file = match app.print_record(visit.id, app.paper_set()) {
             Ok(printed) => printed.file_name,
             Err(error) => error.to_string(),
         };
@@ -86,26 +85,22 @@ impl Office {
             title: say::visit_of(&format::full_day(visit.date)),
             subject: say::at_site(&appliance.name, &site),
             file,
-            folder: self.record_folder(&visit.date.format("%Y").to_string(), &site).display().to_string(),
+            folder: self.documents.join(app.filed_in(visit.id)?).display().to_string(),
             facts,
             entries: rows,
             corrections,
         }))
     }
 
-    fn record_folder(&self, year: &str, site: &str) -> PathBuf {
-        self.documents.join(year).join(crate::app::fit(site))
-    }
-
-    /// Opens the record, or the folder it is kept in; the file is written first where it is not there.
+    /// Opens the record, or the folder it is kept in; the file is written first.
     pub(super) fn record_file(&mut self, app: &App, itself: bool) -> Vec<Go> {
         let (Some(page), Pane::Record(visit, _)) = (&self.plant.record, self.plant.pane) else { return Vec::new() };
         let folder = PathBuf::from(&page.folder);
         let file = folder.join(&page.file);
-        let written = match app.print_record(visit, None) {
-            Ok(_) if file.exists() => Ok(()),
+        let written = match app.print_record(visit, app.paper_set()) {
+            // The same bytes where nothing came since; else with what came.
             Ok(printed) => {
-                write_whole(&file, &printed.bytes).map_err(|error| say::cannot_write(&file.display().to_string(), &error.to_string()))
+                file_away(&file, &printed.bytes).map_err(|error| say::cannot_write(&file.display().to_string(), &error.to_string()))
             }
             Err(error) => Err(error.to_string()),
         };

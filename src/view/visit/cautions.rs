@@ -47,7 +47,7 @@ impl Desk {
         match msg {
             Msg::Acknowledge(number) => {
                 if !self.is_acknowledged(&number) {
-                    self.app.acknowledge(self.work()?.visit.id, &number)?;
+                    self.app.acknowledge(self.work()?.visit.id, &number, None)?;
                 }
                 self.reload_visit()
             }

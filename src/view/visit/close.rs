@@ -8,7 +8,7 @@ use crate::ledger::{Act, Category, Counterpart, Entry, Ink, Signature, TestKind,
 use crate::quantity::MassUnit;
 use crate::record::{CautiousAct, Circumstances, caution, fitting};
 use crate::store::VisitFilter;
-use crate::view::desk::Desk;
+use crate::view::desk::{Desk, Message};
 use crate::view::shown::{Caution, Fact, Ready};
 use crate::view::{format, words};
 use serde::{Deserialize, Serialize};
@@ -193,11 +193,17 @@ impl Desk {
         let work = self.work()?;
         let (visit, form) = (work.visit.id, work.close.clone());
         let signature = Signature { name: self.technician(), ink: form.technician_ink.clone() };
-        self.app.close_visit(visit, signature, form.counterpart())?;
+        let ended = self.app.close_visit(visit, signature, form.counterpart())?;
         self.work = None;
         self.panel = Panel::None;
         self.changed();
-        self.show_closed(visit)
+        self.show_closed(visit)?;
+        // A paper that could not be printed is the graver news.
+        if !ended.unsaved.is_empty() && self.message().is_none_or(|message| !message.grave) {
+            let begun: Vec<String> = ended.unsaved.iter().map(|one| words::begun_on(&one.action, &one.name)).collect();
+            self.say(Message::told(words::dropped(&begun)));
+        }
+        Ok(())
     }
 
     /// Whoever began the visit signs it.
@@ -244,6 +250,9 @@ impl Desk {
                 state: judging.state,
                 facts,
             });
+        }
+        for one in self.app.unsaved(work.visit.id)? {
+            missing.push(words::not_saved(&words::begun_on(&one.action, &one.name)));
         }
         for person in work.visit.people.iter().filter_map(|id| self.registers.person(*id)) {
             if person.certificate.is_empty() {

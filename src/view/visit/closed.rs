@@ -1,17 +1,15 @@
 //! The visit is closed: its service record, opened and handed over.
 
-use crate::app::{AppError, fit};
+use crate::app::{AppError, Printed, file_away};
 use crate::ledger::{Counterpart, Moment, VisitId};
-use crate::print::Paper;
 use crate::record::Fingerprint;
 use crate::view::desk::{Desk, Message, Page};
 use crate::view::shown::{Choice, Fact, Ready};
 use crate::view::{format, words};
-use chrono::Datelike;
-use std::io::Write;
 use std::path::{Path, PathBuf};
 
-const WAYS: [&str; 4] = ["printed", "as a file", "by mail", "read on screen"];
+const READ_ON_SCREEN: &str = "read on screen";
+const WAYS: [&str; 4] = ["printed", "as a file", "by mail", READ_ON_SCREEN];
 
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub struct State {
@@ -73,19 +71,14 @@ impl Desk {
     /// # Errors
     /// A sentence that says what could not be done and where.
     pub fn print(&self, visit: VisitId) -> Result<PathBuf, String> {
-        let store = self.app.store();
-        // As it was set on this device, else as the site's law has it.
-        let paper = match store.setting("paper").ok().flatten().as_deref() {
-            Some("Letter") => Some(Paper::Letter),
-            Some("A4") => Some(Paper::A4),
-            _ => None,
-        };
-        let printed = self.app.print_record(visit, paper).map_err(|e| e.to_string())?;
-        let visit = store.visit(visit).map_err(|e| e.to_string())?.ok_or_else(words::no_such_visit)?;
-        let date = visit.closing.as_ref().map_or(visit.date, |closing| closing.date);
-        let folder = self.options.documents.join("Bubblepoint").join(date.year().to_string()).join(fit(&self.site_name(visit.site)));
-        let path = folder.join(printed.file_name);
-        write_whole(&path, &printed.bytes).map_err(|e| format!("{}: {e}", path.display()))?;
+        let printed = self.app.print_record(visit, self.app.paper_set()).map_err(|e| e.to_string())?;
+        self.file(visit, &printed)
+    }
+
+    fn file(&self, visit: VisitId, printed: &Printed) -> Result<PathBuf, String> {
+        let folder = self.documents().join(self.app.filed_in(visit).map_err(|e| e.to_string())?);
+        let path = folder.join(&printed.file_name);
+        file_away(&path, &printed.bytes).map_err(|e| format!("{}: {e}", path.display()))?;
         Ok(path)
     }
 
@@ -100,8 +93,8 @@ impl Desk {
             Msg::OpenRecord => self.open_paper(false),
             Msg::OpenFolder => self.open_paper(true),
             Msg::HandOver => {
-                let (visit, told) = (state.visit, words::handed_over_to(state.to_whom.trim(), &state.way));
-                self.app.hand_over(visit, &told)?;
+                let (visit, way, to_whom) = (state.visit, state.way.clone(), state.to_whom.trim().to_owned());
+                self.hand_over(visit, &to_whom, &way)?;
                 if let Some(state) = &mut self.closed {
                     state.to_whom.clear();
                     state.handing_over = false;
@@ -111,6 +104,29 @@ impl Desk {
                 self.closed = None;
                 self.start_page()?;
             }
+        }
+        Ok(())
+    }
+
+    /// The filed original is what is handed over first; whoever gets the record
+    /// on paper or as a file after that gets a copy of its own, which says so.
+    fn hand_over(&mut self, visit: VisitId, to_whom: &str, way: &str) -> Result<(), AppError> {
+        let again = way != READ_ON_SCREEN && !self.app.store().hand_overs(visit)?.is_empty();
+        self.app.hand_over(visit, &words::handed_over_to(to_whom, way))?;
+        let printed = if again {
+            let copy = self.app.further_copy(visit)?;
+            self.app.print_copy(visit, copy, self.app.paper_set()).map_err(|e| e.to_string()).and_then(|printed| self.file(visit, &printed))
+        } else {
+            // The original says to whom it was handed over.
+            self.print(visit)
+        };
+        match printed {
+            Ok(file) => {
+                if let Some(state) = &mut self.closed {
+                    state.file = Some(file);
+                }
+            }
+            Err(cause) => self.say(Message::grave(words::record_not_printed(&words::sentence(&cause)))),
         }
         Ok(())
     }
@@ -186,31 +202,5 @@ impl Desk {
             way: state.way.clone(),
             ready: if state.to_whom.trim().is_empty() { Ready::not(words::to_whom_missing()) } else { Ready::yes() },
         })
-    }
-}
-
-/// All of it or nothing: a temporary file in the same folder, synced, renamed.
-fn write_whole(path: &Path, bytes: &[u8]) -> std::io::Result<()> {
-    let folder = path.parent().unwrap_or(Path::new("."));
-    std::fs::create_dir_all(folder)?;
-    let mut file = tempfile::NamedTempFile::new_in(folder)?;
-    file.write_all(bytes)?;
-    file.as_file().sync_all()?;
-    file.persist(path).map_err(|e| e.error)?;
-    Ok(())
-}
-
-#[cfg(test)]
-mod tests {
-    use super::*;
-
-    #[test]
-    fn a_file_is_written_whole_and_again() {
-        let folder = tempfile::tempdir().unwrap();
-        let path = folder.path().join("2026/Quay/record.pdf");
-        write_whole(&path, b"one").unwrap();
-        write_whole(&path, b"two").unwrap();
-        assert_eq!(std::fs::read(&path).unwrap(), b"two");
-        assert_eq!(std::fs::read_dir(path.parent().unwrap()).unwrap().count(), 1);
     }
 }

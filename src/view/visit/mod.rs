@@ -249,7 +249,9 @@ impl Desk {
     pub(super) fn keep<T: Serialize>(&self, panel: Panel, form: &T) -> Result<(), AppError> {
         // Forms are plain words and figures: they always can be written.
         let Ok(body) = serde_json::to_string(form) else { return Ok(()) };
-        self.app.save_draft(self.work()?.visit.id, panel.action(), &body)
+        let work = self.work()?;
+        let appliance = work.place.appliance.filter(|_| panel.acts_on_an_appliance());
+        self.app.save_draft(work.visit.id, appliance, panel.action(), &body)
     }
 
     /// Opens an action: first its appliance, then its cautions, then its cylinder.

@@ -224,8 +224,7 @@ impl Desk {
             active: form.active.clone(),
             error: if wrong { words::reading_not_a_number(&form.pressure) } else { String::new() },
             readings: form.taken.iter().enumerate().map(line).collect(),
-            // The series is kept as read; its shape is not judged here.
-            judged: words::cannot_tell_yet(),
+            judged: words::kept_as_read(),
             figures: figures(form),
             can_take: parse_decimal(&form.pressure).is_ok(),
             ready: if form.taken.len() < 2 { Ready::not(words::take_a_reading()) } else { Ready::yes() },

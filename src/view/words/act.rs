@@ -238,8 +238,9 @@ pub fn take_a_reading() -> String {
     "Take at least two readings.".to_owned()
 }
 
-pub fn cannot_tell_yet() -> String {
-    "cannot tell yet".to_owned()
+/// A series of readings is kept; its shape is not judged here.
+pub fn kept_as_read() -> String {
+    "kept as read, not judged".to_owned()
 }
 
 pub fn reading_not_a_number(text: &str) -> String {

@@ -219,6 +219,19 @@ pub fn met(duty: &str) -> String {
     format!("met: {duty}")
 }
 
+/// `charge on R-1`: work that was begun.
+pub fn begun_on(action: &str, appliance: &str) -> String {
+    format!("{action} on {appliance}")
+}
+
+pub fn not_saved(begun: &str) -> String {
+    format!("begun and not saved: {begun}; closing drops it")
+}
+
+pub fn dropped(begun: &[String]) -> String {
+    format!("Not saved, and so not in the record: {}.", begun.join(", "))
+}
+
 pub fn handed_over_to(whom: &str, way: &str) -> String {
     format!("{whom}, {way}")
 }
