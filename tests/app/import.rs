@@ -208,6 +208,12 @@ fn words_and_gases_must_be_known_in_every_column() {
     assert_eq!(columns, ["purpose", "unit", "result", "scope", "new_refrigerant"]);
 }
 
+#[test]
+fn characters_that_nobody_can_see_are_refused() {
+    let told = refused(&stocked(), &[("s.csv", "site,rulebooks,operator\nNorth,us-82f,\u{0}\nSouth,us-82f,\"two\nlines\"\n")]);
+    assert_eq!(told, ["s.csv, line 2, column operator: has a character that nobody can see, U+0000; take it out"]);
+}
+
 // What cannot be true, whatever came first.
 
 #[test]

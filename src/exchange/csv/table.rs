@@ -304,6 +304,12 @@ impl Table {
                     fields.fault(column, EMPTY.to_owned());
                 }
             }
+            for column in self.kind.columns() {
+                // No font has them, and no record could be printed.
+                if let Some(unseen) = fields.text(column).chars().find(|c| c.is_control() && !matches!(c, '\n' | '\r' | '\t')) {
+                    fields.fault(column, format!("has a character that nobody can see, U+{:04X}; take it out", u32::from(unseen)));
+                }
+            }
             rows.push(read(&mut fields));
             bad.append(&mut fields.bad);
         }
