@@ -3,15 +3,16 @@
 mod duties;
 
 use super::service_record::ODP_TABLE;
+use super::standing::held_before_entries;
 use super::{App, AppError, CylinderStanding, PROGRAM};
 use crate::gas::{self, Weighting};
-use crate::ledger::{Act, Appliance, Line, Registers, Site, SiteFacts, Transfer, VisitState, by_appliance};
+use crate::ledger::{Act, Appliance, CylinderAct, CylinderId, Line, Registers, Site, SiteFacts, Transfer, VisitState, by_appliance};
 use crate::quantity::{Mass, MassUnit, Ratio};
 use crate::record::{AccountLine, AnnualAccount, ApplianceAccount, GasAccount, Notice, Party, WeightedLoss};
 use crate::rules::{History, LossEntry, loss_entries, weights};
 use crate::store::VisitFilter;
 use chrono::NaiveDate;
-use std::collections::{BTreeMap, BTreeSet};
+use std::collections::{BTreeMap, BTreeSet, HashSet};
 
 impl App {
     /// The account of a calendar year, of all owners or of one: up to its last
@@ -91,7 +92,9 @@ impl App {
                 "What these cylinders held is not known, so neither is the holding of their gas: {names}. Weigh them and write down the gross."
             )));
         }
-        account.remarks.push(plain("Gas bought and gas sent away are not kept in this store yet."));
+        if !self.books_in(gases, span)? {
+            account.remarks.push(plain("No gas bought, sent away or lost from a cylinder was ever written down in this store."));
+        }
         if !worked_back.is_empty() {
             let names = worked_back.into_iter().collect::<Vec<_>>().join(", ");
             account.remarks.push(plain(&format!(
@@ -100,6 +103,38 @@ impl App {
             )));
         }
         Ok(())
+    }
+
+    /// What was bought, sent away and lost, by the gas that the cylinder held. Says whether anyone ever wrote
+    /// such a thing down; where nobody did, nothing is known of it.
+    fn books_in(&self, gases: &mut BTreeMap<String, GasSum>, span: Span) -> Result<bool, AppError> {
+        let entries = self.store().cylinder_books()?;
+        if entries.iter().all(|entry| entry.act.mass().is_none()) {
+            return Ok(false);
+        }
+        let registers = self.store().registers()?;
+        let cylinders: HashSet<CylinderId> = entries.iter().map(|entry| entry.cylinder).collect();
+        let held = held_before_entries(self.store(), &registers, &cylinders)?;
+        for entry in entries.iter().filter(|entry| span.holds(entry.at.date)) {
+            let before = held.get(&entry.id).map(|held| &held.balance);
+            let inside = before.and_then(|balance| balance.gas.clone());
+            // Gas on top of some is counted with what was there.
+            let on_top = before.is_some_and(|balance| balance.content.mass().is_none_or(Mass::is_positive));
+            let (mass, gas, place): (_, _, fn(&mut GasSum) -> &mut Mass) = match &entry.act {
+                CylinderAct::Bought { refrigerant, mass, .. } => {
+                    (*mass, inside.filter(|_| on_top).or(Some(refrigerant.clone())), |sum| &mut sum.bought)
+                }
+                CylinderAct::SentAway { mass } | CylinderAct::Returned { heel: mass } => (*mass, inside, |sum| &mut sum.sent_away),
+                CylinderAct::Lost { mass } => (*mass, inside, |sum| &mut sum.lost_from_cylinders),
+                CylinderAct::Weighed | CylinderAct::Strike => continue,
+            };
+            // Gas of no name has no line.
+            let Some(gas) = gas else { continue };
+            let zero = || GasSum { opening: Some(Mass::ZERO), closing: Some(Mass::ZERO), ..GasSum::default() };
+            *place(gases.entry(gas).or_insert_with(zero)) += mass;
+        }
+        gases.values_mut().for_each(|sum| sum.with_books = true);
+        Ok(true)
     }
 
     /// Visits of the year that are not closed can still change the account.
@@ -258,10 +293,12 @@ fn moved(history: &History, gas: &str, span: Span, line: &mut AccountLine, unnam
         match entry.act {
             Act::Charge { .. } => {
                 line.charged += transfer.mass;
+                line.past_cylinders += Unnamed::part(transfer);
                 unnamed.charged += Unnamed::part(transfer);
             }
             _ => {
                 line.recovered += transfer.mass;
+                line.past_cylinders -= Unnamed::part(transfer);
                 unnamed.recovered += Unnamed::part(transfer);
             }
         }
@@ -313,6 +350,12 @@ struct GasSum {
     closing: Option<Mass>,
     charged: Mass,
     recovered: Mass,
+    past_cylinders: Mass,
+    /// Cylinders' own books are kept.
+    with_books: bool,
+    bought: Mass,
+    sent_away: Mass,
+    lost_from_cylinders: Mass,
     lost: Mass,
     odp_kg: Weight,
     co2e_t: Weight,
@@ -339,6 +382,7 @@ impl GasSum {
     fn add(&mut self, held: &ApplianceAccount) {
         self.charged += held.line.charged;
         self.recovered += held.line.recovered;
+        self.past_cylinders += held.line.past_cylinders;
         self.lost += held.line.lost;
         self.odp_kg.add(held.loss.odp_kg);
         self.co2e_t.add(held.loss.co2e_t);
@@ -349,7 +393,8 @@ impl GasSum {
     /// A gas that nobody moved and, where cylinders are counted, none held.
     fn is_nothing(&self, with_cylinders: bool) -> bool {
         let nothing = Some(Mass::ZERO);
-        let still = [self.charged, self.recovered, self.lost].iter().all(|mass| mass.is_zero());
+        let moved = [self.charged, self.recovered, self.lost, self.bought, self.sent_away, self.lost_from_cylinders];
+        let still = moved.iter().all(|mass| mass.is_zero());
         still && (!with_cylinders || (self.opening, self.closing) == (nothing, nothing))
     }
 
@@ -359,12 +404,14 @@ impl GasSum {
             refrigerant,
             line: AccountLine {
                 opening: self.opening,
-                bought: None,
+                bought: self.with_books.then_some(self.bought),
                 charged: self.charged,
                 recovered: self.recovered,
-                sent_away: None,
+                sent_away: self.with_books.then_some(self.sent_away),
                 lost: self.lost,
                 closing: self.closing,
+                lost_from_cylinders: self.with_books.then_some(self.lost_from_cylinders),
+                past_cylinders: self.past_cylinders,
             },
             loss: WeightedLoss {
                 odp_kg: self.odp_kg.0,

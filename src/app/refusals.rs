@@ -3,11 +3,12 @@
 //!
 //! History that is imported is taken as it happened and does not pass here.
 
+use super::cylinder_entries::RETURNED;
 use super::limits::LimitRules;
 use super::methods::is_direct;
 use super::standing::{ApplianceStanding, CylinderStanding};
 use crate::gas::{self, Gas};
-use crate::ledger::{Act, ChargePurpose, CylinderKind, GasStatus, Line, Moment, TestKind};
+use crate::ledger::{Act, ChargePurpose, CylinderAct, CylinderKind, GasStatus, Line, Moment, TestKind};
 use crate::measure::{CylinderLimit, Limit, Missing, Rating, is_near_critical};
 use crate::quantity::{GaugePressure, Mass, Ratio, rounded_text};
 use crate::rules::service_bans;
@@ -377,6 +378,81 @@ fn of_rating(name: &str, gas: &Gas, rating: &Rating) -> Option<Refusal> {
             Some(Refusal::judgement(Kind::RatingUnknown, sentence, "49 CFR 173.301(a)(8); ADR 4.1.4.1, P200"))
         }
     }
+}
+
+/// What holds for a cylinder apart from any appliance. What comes from a supplier is taken as it came; what it
+/// breaks asks for a reason.
+pub fn of_cylinder_entry(
+    cylinder: &CylinderStanding,
+    act: &CylinderAct,
+    gross: Option<Mass>,
+    rules: LimitRules,
+    day: NaiveDate,
+    today: NaiveDate,
+) -> Vec<Refusal> {
+    let mut refusals = Vec::new();
+    let name = &cylinder.cylinder.name;
+    if day > today {
+        let sentence = format!("{day} has not come yet; today is {today}. Correct the date.");
+        refusals.push(Refusal::firm(Kind::InTheFuture, sentence, ""));
+    }
+    refusals.extend(below_tare(cylinder, gross));
+    let held = cylinder.balance.content.mass();
+    match act {
+        CylinderAct::Bought { refrigerant, mass, .. } => refusals.extend(of_purchase(cylinder, refrigerant, *mass, gross, rules, day)),
+        CylinderAct::SentAway { mass } | CylinderAct::Lost { mass } => {
+            if let Some(held) = held.filter(|held| gross.is_none() && mass > held) {
+                let sentence = format!("Cylinder {name} held {} kg, {} kg is more.", held.kg_text(), mass.kg_text());
+                refusals.push(Refusal::judgement(Kind::MoreThanHeld, sentence, ""));
+            }
+        }
+        CylinderAct::Returned { .. } if cylinder.facts.scrapped.is_some() => {
+            let sentence = format!("Cylinder {name} is out of use already.");
+            refusals.push(Refusal::firm(Kind::OutOfUse, sentence, ""));
+        }
+        CylinderAct::Returned { .. } | CylinderAct::Weighed | CylinderAct::Strike => {}
+    }
+    refusals
+}
+
+fn of_purchase(
+    cylinder: &CylinderStanding,
+    refrigerant: &str,
+    mass: Mass,
+    gross: Option<Mass>,
+    rules: LimitRules,
+    day: NaiveDate,
+) -> Vec<Refusal> {
+    let mut refusals = Vec::new();
+    let name = &cylinder.cylinder.name;
+    let facts = &cylinder.facts;
+    let balance = &cylinder.balance;
+    let held = balance.content.mass();
+    if let Some(reason) = facts.scrapped.as_ref().filter(|reason| !reason.starts_with(RETURNED)) {
+        let sentence = format!("Cylinder {name} is out of use: {reason}. It may be emptied, not filled.");
+        refusals.push(Refusal::firm(Kind::OutOfUse, sentence, "49 CFR 173.301(a)(2)"));
+    }
+    if facts.kind == CylinderKind::NonRefillable && (held.is_some() || balance.last_gross.is_some()) {
+        let sentence = format!("Cylinder {name} is non-refillable and came filled once. Another of its make is a cylinder of its own.");
+        refusals.push(Refusal::firm(Kind::NotRefillable, sentence, NON_REFILLABLE));
+    }
+    if let Some(due) = facts.requalify_by.filter(|due| day > *due) {
+        let sentence = format!("Cylinder {name} was to be requalified by {due} and is not filled before.");
+        refusals.push(Refusal::judgement(Kind::Overdue, sentence, OVERDUE));
+    }
+    let holds_some = held.is_none_or(Mass::is_positive);
+    if let Some(gas) = balance.gas.as_ref().filter(|gas| holds_some && !same_gas(gas, refrigerant)) {
+        let sentence = format!("Cylinder {name} holds {gas}; {refrigerant} on top makes a mix, which is never charged.");
+        refusals.push(Refusal::judgement(Kind::OtherGas, sentence, "49 CFR 173.301(d); common practice"));
+    }
+    let content = gross.map(|gross| gross - facts.tare).or_else(|| held.map(|held| held + mass));
+    let limit = gas::find(refrigerant).map(|gas| rules.limit_of(gas, cylinder, cylinder.holds_recovered()));
+    if let Some((binding, content)) = limit.and_then(|limit| limit.binding).zip(content)
+        && content > binding.net
+    {
+        refusals.push(over_limit(name, content, &binding));
+    }
+    refusals
 }
 
 /// What holds for making recovered gas fit for use.

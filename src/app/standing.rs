@@ -182,7 +182,7 @@ pub(super) fn held_before_entries(
 type Origins = HashMap<EntryId, (String, String)>;
 
 fn filled_from(movements: &[Movement]) -> HashSet<ApplianceId> {
-    movements.iter().filter(|movement| matches!(movement.kind, MovementKind::Into(_))).map(|movement| movement.appliance).collect()
+    movements.iter().filter(|movement| matches!(movement.kind, MovementKind::Into(_))).filter_map(|movement| movement.appliance).collect()
 }
 
 fn by_cylinder(movements: &[Movement]) -> HashMap<CylinderId, Vec<Movement>> {

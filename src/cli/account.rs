@@ -93,8 +93,12 @@ fn table(account: &AnnualAccount) -> String {
         text.push_str("DEMONSTRATION: every name and figure is invented\n");
     }
     let mut gases = TextTable::new(&["gas", ">opening", ">charged", ">recovered", ">lost", ">closing", ">ODP kg", ">CO\u{2082}e t"]);
+    let mut others = TextTable::new(&["gas", ">bought", ">sent away", ">lost from cylinders", ">without a cylinder", ">not explained"]);
     for gas in &account.gases {
         gases.row(cells(vec![gas.refrigerant.clone()], &gas.line, &gas.loss));
+        let line = &gas.line;
+        let figures = [line.bought, line.sent_away, line.lost_from_cylinders, Some(line.past_cylinders), line.unexplained()];
+        others.row([gas.refrigerant.clone()].into_iter().chain(figures.map(held)));
     }
     let mut appliances = TextTable::new(&[
         "site",
@@ -120,6 +124,7 @@ fn table(account: &AnnualAccount) -> String {
     }
     for (title, table) in [
         ("gas: opening and closing are the cylinders' content", &gases),
+        ("what came and went besides", &others),
         ("appliances: opening and closing are their full charge", &appliances),
         ("duties that fell due, and those open", &duties),
     ] {
@@ -136,9 +141,13 @@ fn table(account: &AnnualAccount) -> String {
     text
 }
 
+fn held(mass: Option<Mass>) -> String {
+    mass.map_or_else(|| "?".to_owned(), |mass| rounded_text(mass.kg(), 3))
+}
+
 fn cells(names: Vec<String>, line: &AccountLine, loss: &WeightedLoss) -> Vec<String> {
     let mass = |mass: Mass| rounded_text(mass.kg(), 3);
-    let maybe = |held: Option<Mass>| held.map_or_else(|| "?".to_owned(), mass);
+    let maybe = held;
     let weighted = |value: Option<Ratio>| value.map_or_else(|| "?".to_owned(), |value| rounded_text(value, 3));
     let figures = [
         maybe(line.opening),

@@ -9,11 +9,12 @@ use chrono::{DateTime, NaiveDate, Utc};
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub struct Movement {
     pub cylinder: CylinderId,
-    pub appliance: ApplianceId,
+    /// `None`: an entry of the cylinder's own book.
+    pub appliance: Option<ApplianceId>,
     pub entry: EntryId,
     pub at: Moment,
-    /// The same in UTC; `None` where history gives no time.
-    pub instant: Option<DateTime<Utc>>,
+    /// The same in UTC; where history gives no time, the start of its day.
+    pub instant: DateTime<Utc>,
     pub position: Position,
     pub kind: MovementKind,
     /// The cylinder with its tare when it was over, where it was weighed so.
@@ -22,7 +23,7 @@ pub struct Movement {
 }
 
 /// What happened, seen from the cylinder.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+#[derive(Debug, Clone, PartialEq, Eq)]
 pub enum MovementKind {
     /// Charged into the appliance.
     Out(Mass),
@@ -30,15 +31,21 @@ pub enum MovementKind {
     Into(Mass),
     /// The content was made recycled gas.
     Recycled,
+    /// Came from a supplier.
+    Bought { refrigerant: String, status: GasStatus, mass: Mass },
+    /// Sent away, returned or lost.
+    Left(Mass),
+    /// Weighed where it stands.
+    Weighed,
 }
 
 impl MovementKind {
     /// What the cylinder holds more afterwards.
-    fn gain(self) -> Mass {
+    fn gain(&self) -> Mass {
         match self {
-            Self::Out(mass) => -mass,
-            Self::Into(mass) => mass,
-            Self::Recycled => Mass::ZERO,
+            Self::Out(mass) | Self::Left(mass) => -*mass,
+            Self::Into(mass) | Self::Bought { mass, .. } => *mass,
+            Self::Recycled | Self::Weighed => Mass::ZERO,
         }
     }
 }
@@ -49,8 +56,8 @@ impl Movement {
     /// happened by the day's readings.
     fn is_before(&self, reading: &ReadAt) -> bool {
         self.position <= reading.after
-            || match self.instant {
-                Some(instant) => instant < reading.instant,
+            || match self.at.minute {
+                Some(_) => self.instant < reading.instant,
                 None => self.at.date <= reading.at.date,
             }
     }
@@ -187,7 +194,8 @@ pub fn follow_cylinder(
 /// All that ever happened to a cylinder, in order.
 fn events<'a>(cylinder: &'a Cylinder, movements: &'a [Movement]) -> Vec<OnDay<'a>> {
     let mut moved: Vec<&Movement> = movements.iter().filter(|movement| movement.cylinder == cylinder.id).collect();
-    moved.sort_by_key(|movement| (movement.at, movement.position));
+    // By the world's clock: sites and the shop may be on different ones.
+    moved.sort_by_key(|movement| (movement.instant, movement.position));
     // Each with the number of movements that come before it.
     let mut read: Vec<(usize, OnDay)> = Vec::new();
     let mut before: Option<&CylinderFacts> = None;
@@ -195,7 +203,7 @@ fn events<'a>(cylinder: &'a Cylinder, movements: &'a [Movement]) -> Vec<OnDay<'a
         let facts = &version.facts;
         let place = |mark: Option<&ReadAt>| match (mark, version.from) {
             (Some(mark), _) => (moved.iter().rposition(|movement| movement.is_before(mark)).map_or(0, |last| last + 1), Some(mark.at.date)),
-            (None, Some(from)) => (moved.partition_point(|movement| movement.at.date < from), Some(from)),
+            (None, Some(from)) => (moved.iter().rposition(|movement| movement.at.date < from).map_or(0, |last| last + 1), Some(from)),
             (None, None) => (0, None),
         };
         let told_anew = before.is_none_or(|before| {
@@ -242,13 +250,13 @@ struct Fold {
 impl Fold {
     fn take(&mut self, event: Event, gas_of: &dyn Fn(&Movement) -> Option<String>) {
         if let Event::Moved { movement, .. } = event {
-            match movement.kind {
-                MovementKind::Into(_) if !self.filling => {
+            match &movement.kind {
+                MovementKind::Into(_) | MovementKind::Bought { .. } if !self.filling => {
                     self.balance.heel = self.balance.content.mass();
                     self.filling = true;
                 }
-                MovementKind::Out(_) => self.filling = false,
-                MovementKind::Into(_) | MovementKind::Recycled => {}
+                MovementKind::Out(_) | MovementKind::Left(_) => self.filling = false,
+                _ => {}
             }
         }
         self.balance.take(event, gas_of);
@@ -278,9 +286,10 @@ impl CylinderBalance {
     }
 
     fn take_movement(&mut self, movement: &Movement, tare: Mass, gas_of: &dyn Fn(&Movement) -> Option<String>) {
-        match movement.kind {
-            MovementKind::Out(_) => {}
-            MovementKind::Into(_) => self.take_in(gas_of(movement)),
+        match &movement.kind {
+            MovementKind::Out(_) | MovementKind::Left(_) | MovementKind::Weighed => {}
+            MovementKind::Into(_) => self.take_in(gas_of(movement), GasStatus::Recovered),
+            MovementKind::Bought { refrigerant, status, .. } => self.take_in(Some(refrigerant.clone()), *status),
             MovementKind::Recycled => {
                 if self.status == Some(GasStatus::Recovered) {
                     self.status = Some(GasStatus::Recycled);
@@ -301,16 +310,17 @@ impl CylinderBalance {
         });
     }
 
-    fn take_in(&mut self, gas: Option<String>) {
+    /// Gas on top of the same gas is no better than the worse of the two.
+    fn take_in(&mut self, gas: Option<String>, status: GasStatus) {
         let was_empty = self.gas.is_none() || self.content.holds_nothing();
         let other = gas.is_some() && self.gas != gas;
         if was_empty {
             self.gas = gas.or_else(|| self.gas.take());
-            self.status = Some(GasStatus::Recovered);
+            self.status = Some(status);
         } else if other || self.is_mixed() {
             self.status = Some(GasStatus::Mixed);
-        } else {
-            self.status = Some(GasStatus::Recovered);
+        } else if self.status.is_none_or(|held| purity(status) < purity(held)) {
+            self.status = Some(status);
         }
     }
 
@@ -334,6 +344,17 @@ impl CylinderBalance {
                 return;
             }
         }
+    }
+}
+
+/// How far gas may be used; less is worse.
+const fn purity(status: GasStatus) -> u8 {
+    match status {
+        GasStatus::Mixed => 0,
+        GasStatus::Recovered => 1,
+        GasStatus::Recycled => 2,
+        GasStatus::Reclaimed => 3,
+        GasStatus::Virgin => 4,
     }
 }
 
@@ -369,10 +390,10 @@ mod tests {
     fn movement(position: Position, date: &str, kind: MovementKind, gross_after: Option<&str>) -> Movement {
         Movement {
             cylinder: CylinderId(Uuid::from_u128(1)),
-            appliance: ApplianceId(Uuid::from_u128(position.unsigned_abs().into())),
+            appliance: Some(ApplianceId(Uuid::from_u128(position.unsigned_abs().into()))),
             entry: EntryId(Uuid::from_u128(7)),
             at: Moment { date: day(date), minute: None },
-            instant: None,
+            instant: day(date).and_hms_opt(0, 0, 0).unwrap().and_utc(),
             position,
             kind,
             gross_after: gross_after.map(kg),
@@ -440,7 +461,7 @@ mod tests {
     /// The same at a time of the day in UTC.
     fn timed(time: &str, movement: Movement) -> Movement {
         let mark = read_at(&movement.at.date.to_string(), time, 0);
-        Movement { at: mark.at, instant: Some(mark.instant), ..movement }
+        Movement { at: mark.at, instant: mark.instant, ..movement }
     }
 
     /// The register came with its history: the gross was read on the day of import.

@@ -2,6 +2,7 @@
 //! the fold from entries to balances. Gas moves only by transfers.
 
 mod balance;
+mod cylinder_entry;
 mod entry;
 mod leaks;
 mod register;
@@ -10,6 +11,7 @@ mod visit;
 mod words;
 
 pub use balance::{Content, CylinderBalance, KnownGross, Movement, MovementKind, cylinder_balance, follow_cylinder};
+pub use cylinder_entry::{CylinderAct, CylinderDetail, CylinderEntry};
 pub use entry::{Act, CautionSeen, Detail, Entry, LeakPlace, Line, Moment, Position, Reading, Transfer, WeighingMode, by_appliance};
 pub use leaks::{OpenLeak, open_leaks};
 pub use register::{
@@ -55,6 +57,6 @@ ids! {
     InstrumentId;
     /// A visit.
     VisitId;
-    /// An entry of a visit.
+    /// An entry of a visit, or of a cylinder's own book.
     EntryId;
 }

@@ -181,6 +181,15 @@ fn gases(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
         inner,
     )];
     for gas in &account.gases {
+        let told = [
+            (gas.line.lost_from_cylinders.unwrap_or_default(), "lost from cylinders, with the reason written down"),
+            (gas.line.past_cylinders, "charged, less recovered, without a cylinder of this store: no holding contains it"),
+        ];
+        for (mass, what) in told.into_iter().filter(|(mass, _)| !mass.is_zero()) {
+            let text = format!("{}: {} {unit} {what}.", gas.refrigerant, words::mass(mass, account.unit));
+            flow.put(paragraph(fonts, &text, Style::BODY, inner));
+            flow.space(3.0);
+        }
         if let Some(gap) = gas.line.unexplained().filter(|gap| !gap.is_zero()) {
             let side = if gap.is_negative() { "less" } else { "more" };
             let text = format!(

@@ -37,8 +37,8 @@ pub struct AnnualAccount {
 /// where the figure is not known; paper prints a dash.
 ///
 /// For a gas the line is that of the cylinders:
-/// opening + bought + recovered − charged − sent away = closing, and `lost` is
-/// what appliances lost. For an appliance opening and closing are the full
+/// opening + bought + recovered − charged + past cylinders − sent away − lost
+/// from cylinders = closing, and `lost` is what appliances lost. For an appliance opening and closing are the full
 /// charge on the first and last day; nothing is bought or sent away.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
 pub struct AccountLine {
@@ -46,16 +46,24 @@ pub struct AccountLine {
     pub bought: Option<Mass>,
     pub charged: Mass,
     pub recovered: Mass,
+    /// To reclaimers and for destruction, and the heels of cylinders that were returned.
     pub sent_away: Option<Mass>,
     pub lost: Mass,
     pub closing: Option<Mass>,
+    /// Leaked or vented from cylinders, as written down.
+    #[serde(default)]
+    pub lost_from_cylinders: Option<Mass>,
+    /// Charged less recovered without a cylinder of this store: factory charges, history.
+    #[serde(default)]
+    pub past_cylinders: Mass,
 }
 
 impl AccountLine {
     /// Of a gas's line, what closing is more than the movements explain;
     /// `None` when a part is not known. Anything but zero is printed.
     pub fn unexplained(&self) -> Option<Mass> {
-        Some(self.closing? - (self.opening? + self.bought? + self.recovered - self.charged - self.sent_away?))
+        let explained = self.opening? + self.bought? + self.recovered - self.charged + self.past_cylinders;
+        Some(self.closing? - (explained - self.sent_away? - self.lost_from_cylinders.unwrap_or_default()))
     }
 
     /// Adds another line column by column; what is not known in one stays not known.
@@ -69,6 +77,8 @@ impl AccountLine {
             sent_away: both(self.sent_away, other.sent_away),
             lost: self.lost + other.lost,
             closing: both(self.closing, other.closing),
+            lost_from_cylinders: both(self.lost_from_cylinders, other.lost_from_cylinders),
+            past_cylinders: self.past_cylinders + other.past_cylinders,
         }
     }
 }
@@ -155,7 +165,7 @@ impl AnnualAccount {
     }
 }
 
-const COLUMNS: [&str; 25] = [
+const COLUMNS: [&str; 28] = [
     "line",
     "year",
     "to",
@@ -181,6 +191,9 @@ const COLUMNS: [&str; 25] = [
     "not_done",
     "open",
     "remark",
+    "lost_from_cylinders_kg",
+    "past_cylinders_kg",
+    "unexplained_kg",
 ];
 
 /// The account as CSV, UTF-8 with commas: one line a gas (`line` is `gas`), an
@@ -247,6 +260,9 @@ fn fill(row: &mut [String; COLUMNS.len()], line: &AccountLine, loss: &WeightedLo
     row[15].clone_from(&loss.odp_table);
     row[16] = loss.co2e_t.map(exact::text).unwrap_or_default();
     row[17].clone_from(&loss.gwp_table);
+    row[25] = maybe(line.lost_from_cylinders);
+    row[26] = line.past_cylinders.kg_text();
+    row[27] = maybe(line.unexplained());
 }
 
 /// RFC 4180, with a plain line feed.
@@ -282,6 +298,8 @@ mod tests {
             sent_away: Some(kg("4")),
             lost: kg("4.5359237"),
             closing: Some(kg("37.4")),
+            lost_from_cylinders: Some(kg("0.25")),
+            past_cylinders: kg("0.5"),
         };
         let loss = WeightedLoss {
             odp_kg: Some(Ratio::new(1, 4)),
@@ -318,7 +336,8 @@ mod tests {
 
     #[test]
     fn what_movements_do_not_explain_is_told() {
-        assert_eq!(account().gases[0].line.unexplained(), Some(kg("-0.1")));
+        // 20 + 30 + 4 − 12.5 + 0.5 − 4 − 0.25 = 37.75.
+        assert_eq!(account().gases[0].line.unexplained(), Some(kg("-0.35")));
         assert_eq!(account().appliances[0].line.unexplained(), None);
     }
 

@@ -7,7 +7,7 @@ use crate::ledger::{
     WeighingMode,
 };
 use crate::quantity::Mass;
-use chrono::{DateTime, NaiveDate, TimeZone, Utc};
+use chrono::{DateTime, NaiveDate, NaiveTime, TimeDelta, TimeZone, Utc};
 use chrono_tz::Tz;
 use rusqlite::types::{FromSqlError, ToSql};
 use rusqlite::{Connection, Row, params};
@@ -84,7 +84,12 @@ impl Store {
     /// Which store this is, in figures that only grow: for telling whether
     /// what was computed from it still holds.
     pub fn last_position(&self) -> Result<Position, StoreError> {
-        self.read(|c| c.prepare_cached("SELECT coalesce(max(position), 0) FROM entries")?.query_row([], |row| row.get(0)))
+        self.read(|c| {
+            c.prepare_cached(
+                "SELECT max(coalesce((SELECT max(position) FROM entries), 0), coalesce((SELECT max(position) FROM cylinder_entries), 0))",
+            )?
+            .query_row([], |row| row.get(0))
+        })
     }
 
     fn entries(&self, condition: &str, value: &dyn ToSql) -> Result<Vec<Entry>, StoreError> {
@@ -110,9 +115,11 @@ impl Writing<'_> {
         let stamp = self.stamp();
         self.run(|c| {
             c.prepare_cached(
-                "INSERT INTO entries (id, visit, appliance, local_date, minute, time_zone, written, device, counter, strikes, job, \
+                // Positions count on over both books.
+                "INSERT INTO entries (position, id, visit, appliance, local_date, minute, time_zone, written, device, counter, strikes, job, \
                  act, purpose, mass, cylinder, gross_after, division, hoses, result, scope, partial, running, temporary, new_refrigerant, \
-                 new_full_charge, detail) VALUES (?1, ?2, ?3, ?4, ?5, \
+                 new_full_charge, detail) VALUES (1 + max(coalesce((SELECT max(position) FROM entries), 0), \
+                 coalesce((SELECT max(position) FROM cylinder_entries), 0)), ?1, ?2, ?3, ?4, ?5, \
                  coalesce((SELECT time_zone FROM visits WHERE id = ?2), ''), \
                  ?6, ?7, ?8, ?9, ?10, ?11, ?12, ?13, ?14, ?15, ?16, ?17, ?18, ?19, ?20, ?21, ?22, ?23, ?24, ?25)",
             )?
@@ -215,11 +222,17 @@ fn gross_after(act: &Act, detail: &Detail) -> Result<Option<Mass>, StoreError> {
     if gross.is_some_and(|gross| gross.to_i64().is_none()) { Err(StoreError::MassTooLarge) } else { Ok(gross) }
 }
 
+/// Both books, in the order in which they were written.
 fn movements_where(condition: &str) -> String {
     format!(
-        "SELECT cylinder, appliance, id, local_date, minute, position, act, mass, gross_after, division, time_zone FROM entries \
+        "SELECT cylinder, appliance, id, local_date, minute, position, act, mass, gross_after, division, time_zone, \
+         NULL AS refrigerant, NULL AS gas_status FROM entries \
          WHERE {condition} AND act IN ('charge', 'recover', 'recycle') \
-         AND NOT EXISTS (SELECT 1 FROM entries s WHERE s.strikes = entries.id) ORDER BY position"
+         AND NOT EXISTS (SELECT 1 FROM entries s WHERE s.strikes = entries.id) \
+         UNION ALL SELECT cylinder, NULL, id, local_date, minute, position, act, mass, gross_after, division, time_zone, \
+         refrigerant, gas_status FROM cylinder_entries \
+         WHERE {condition} AND act <> 'strike' \
+         AND NOT EXISTS (SELECT 1 FROM cylinder_entries s WHERE s.strikes = cylinder_entries.id) ORDER BY position"
     )
 }
 
@@ -232,14 +245,17 @@ fn read_movements(mut rows: rusqlite::Rows<'_>) -> rusqlite::Result<Vec<Movement
         let kind = match row.get_ref(6)?.as_str()? {
             "charge" => MovementKind::Out(row.get(7)?),
             "recover" => MovementKind::Into(row.get(7)?),
-            _ => MovementKind::Recycled,
+            "recycle" => MovementKind::Recycled,
+            "bought" => MovementKind::Bought { refrigerant: row.get(11)?, status: row.get(12)?, mass: row.get(7)? },
+            "weighed" => MovementKind::Weighed,
+            _ => MovementKind::Left(row.get(7)?),
         };
         movements.push(Movement {
             cylinder: row.get(0)?,
             appliance: row.get(1)?,
             entry: row.get(2)?,
             at: Moment { date, minute },
-            instant: minute.and_then(|minute| zones.instant(row.get_ref(10).ok()?.as_str().ok()?, date, minute)),
+            instant: zones.instant(row.get_ref(10)?.as_str()?, date, minute.unwrap_or(0)),
             position: row.get(5)?,
             kind,
             gross_after: row.get(8)?,
@@ -256,15 +272,20 @@ struct Zones {
 }
 
 impl Zones {
-    /// `None` for a zone that nobody knows. Of an hour that comes twice the
-    /// later one: a movement is rather counted than taken as weighed already.
-    fn instant(&mut self, zone: &str, date: NaiveDate, minute: u16) -> Option<DateTime<Utc>> {
-        if self.last.as_ref().is_none_or(|(last, _)| last != zone) {
-            self.last = Some((zone.to_owned(), zone.parse().ok()?));
-        }
-        let (_, tz) = self.last.as_ref()?;
-        let local = date.and_hms_opt(u32::from(minute / 60), u32::from(minute % 60), 0)?;
-        tz.from_local_datetime(&local).latest().map(|instant| instant.with_timezone(&Utc))
+    /// A zone that nobody knows is taken as UTC. Of an hour that comes twice
+    /// the later one: a movement is rather counted than taken as weighed
+    /// already; an hour that is left out is not on any clock.
+    fn instant(&mut self, zone: &str, date: NaiveDate, minute: u16) -> DateTime<Utc> {
+        let tz = match &self.last {
+            Some((last, tz)) if last == zone => *tz,
+            _ => {
+                let tz = zone.parse().unwrap_or(Tz::UTC);
+                self.last = Some((zone.to_owned(), tz));
+                tz
+            }
+        };
+        let local = date.and_time(NaiveTime::MIN) + TimeDelta::minutes(i64::from(minute));
+        tz.from_local_datetime(&local).latest().map_or_else(|| local.and_utc(), |instant| instant.with_timezone(&Utc))
     }
 }
 

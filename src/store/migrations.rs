@@ -5,4 +5,5 @@ pub(super) const MIGRATIONS: &[&str] = &[
     include_str!("../../migrations/0001_beginning.sql"),
     include_str!("../../migrations/0002_weighings.sql"),
     include_str!("../../migrations/0003_cautions_drafts_copies.sql"),
+    include_str!("../../migrations/0004_cylinder_entries.sql"),
 ];

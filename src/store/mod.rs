@@ -4,6 +4,7 @@
 //! frozen by triggers. Nothing here is computed: balances, rates and duties
 //! follow from what is read.
 
+mod cylinder_entries;
 mod drafts;
 mod entries;
 mod error;

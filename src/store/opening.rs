@@ -350,8 +350,11 @@ mod tests {
         assert_eq!(Store::open(&path, OpenMode::MustExist).unwrap().registers().unwrap().people, [samples::person()]);
     }
     /// A store of each earlier schema, as it was written then, with the number of its entries.
-    const EARLIER: [(i64, &[u8], usize); 2] =
-        [(1, include_bytes!("../../tests/fixtures/schema-1.store"), 5), (2, include_bytes!("../../tests/fixtures/schema-2.store"), 1)];
+    const EARLIER: [(i64, &[u8], usize); 3] = [
+        (1, include_bytes!("../../tests/fixtures/schema-1.store"), 5),
+        (2, include_bytes!("../../tests/fixtures/schema-2.store"), 1),
+        (3, include_bytes!("../../tests/fixtures/schema-3.store"), 1),
+    ];
 
     /// Closed records, hand-overs, cautions and drafts of schema 2.
     #[test]

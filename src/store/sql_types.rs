@@ -10,8 +10,8 @@
 //! | a document | TEXT | JSON |
 
 use crate::ledger::{
-    ApplianceId, ChargePurpose, CylinderId, EntryId, InstrumentId, PersonId, RecoveryPurpose, Scope, SiteId, TestKind, TestResult, VisitId,
-    VisitState,
+    ApplianceId, ChargePurpose, CylinderId, EntryId, GasStatus, InstrumentId, PersonId, RecoveryPurpose, Scope, SiteId, TestKind,
+    TestResult, VisitId, VisitState,
 };
 use crate::quantity::Mass;
 use chrono::{DateTime, NaiveDate, Utc};
@@ -55,7 +55,7 @@ macro_rules! words_in_sql {
     )*};
 }
 
-words_in_sql! { ChargePurpose RecoveryPurpose Scope TestKind TestResult }
+words_in_sql! { ChargePurpose GasStatus RecoveryPurpose Scope TestKind TestResult }
 
 impl ToSql for VisitState {
     fn to_sql(&self) -> rusqlite::Result<ToSqlOutput<'_>> {

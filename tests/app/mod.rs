@@ -1,5 +1,6 @@
 //! What a person does, from the first entry to the closed record.
 
+mod books;
 mod corrections;
 mod cylinders;
 mod import;

@@ -1,5 +1,6 @@
 //! What holds for every history, tried on random ones.
 
+mod conservation;
 mod histories;
 mod imports;
 mod quantities;

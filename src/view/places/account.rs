@@ -255,7 +255,12 @@ fn plate(gas: &GasAccount, unit: MassUnit) -> Plate {
         ("recovered".to_owned(), signed(line.recovered, '+', unit), false),
         ("charged".to_owned(), signed(line.charged, '\u{2212}', unit), false),
         ("sent away".to_owned(), known(line.sent_away, Some('\u{2212}')), false),
+        ("lost from cylinders".to_owned(), known(line.lost_from_cylinders.filter(|lost| !lost.is_zero()), Some('\u{2212}')), false),
     ];
+    if !line.past_cylinders.is_zero() {
+        let sign = if line.past_cylinders.is_negative() { '\u{2212}' } else { '+' };
+        figures.push(("without a cylinder".to_owned(), signed(line.past_cylinders.magnitude(), sign, unit), false));
+    }
     // What nobody keeps takes no line.
     figures.retain(|(caption, value, _)| value != "not known" || caption == "opening");
     // Purchases, charges from elsewhere, gaps: told, so that the column adds up.
@@ -280,7 +285,8 @@ fn plate(gas: &GasAccount, unit: MassUnit) -> Plate {
 /// where a holding is not known.
 fn not_explained(line: &AccountLine) -> Option<Mass> {
     let kept = |mass: Option<Mass>| mass.unwrap_or(Mass::ZERO);
-    Some(line.closing? - (line.opening? + kept(line.bought) + line.recovered - line.charged - kept(line.sent_away)))
+    let line = crate::record::AccountLine { bought: Some(kept(line.bought)), sent_away: Some(kept(line.sent_away)), ..*line };
+    line.unexplained()
 }
 
 fn tally(tally: &crate::record::DutyTally) -> Option<Tally> {

@@ -5,7 +5,7 @@ use super::cylinders::{rounded, share, water_mass};
 use super::row::Row;
 use super::{Office, units::Units};
 use crate::app::{App, AppError, CylinderStanding};
-use crate::ledger::{Act, CylinderId, CylinderKind};
+use crate::ledger::{Act, CylinderAct, CylinderId, CylinderKind};
 use crate::measure::{CylinderLimit, LimitKind, Rating};
 use crate::quantity::{Mass, rounded_text};
 use crate::view::format;
@@ -153,6 +153,18 @@ impl Office {
                 ..Row::new(entry.visit.to_string(), name, format::commas([day.trim(), person])).state(state, "")
             };
             rows.push(((Some(entry.line.at.date), entry.line.position), row));
+        }
+        for entry in app.store().book_of_cylinder(cylinder.cylinder.id)?.into_iter().filter(|entry| entry.strikes.is_none()) {
+            let state = match (&entry.act, entry.act.mass()) {
+                (CylinderAct::Bought { .. }, Some(mass)) => format!("+{}", rounded(mass, self.units.mass)),
+                (_, Some(mass)) => rounded(-mass, self.units.mass),
+                (_, None) => entry.gross_after.map(|gross| rounded(gross, self.units.mass)).unwrap_or_default(),
+            };
+            let day = format!("{} {}", format::full_day(entry.at.date), format::clock(entry.at.minute));
+            let detail = &entry.detail;
+            let facts = format::commas([day.trim(), detail.party.as_str(), detail.paper.as_str(), detail.reason.as_str()]);
+            let row = Row { struck: entry.struck_by.is_some(), ..Row::new("", format::capital(entry.act.name()), facts).state(state, "") };
+            rows.push(((Some(entry.at.date), entry.position), row));
         }
         rows.sort_by_key(|(at, _)| std::cmp::Reverse(*at));
         Ok(rows.into_iter().map(|(_, row)| row).collect())
