@@ -32,7 +32,7 @@ impl App {
             to: span.to,
             owner: owner.map(str::to_owned),
             company: company(&registers, span.to),
-            demonstration: self.store().setting("demonstration")?.is_some_and(|value| value == "yes"),
+            demonstration: self.is_demonstration()?,
             program: PROGRAM.to_owned(),
             unit: unit(&plants),
             gases: Vec::new(),

@@ -12,7 +12,7 @@ mod stage;
 mod story;
 
 use super::testing::SetClock;
-use super::{App, AppError, IdSource, ImportError};
+use super::{App, AppError, IdSource, ImportError, Setting};
 use crate::store::{OpenMode, Store, StoreError};
 use chrono::{DateTime, NaiveDate, Utc};
 use chrono_tz::Tz;
@@ -22,7 +22,7 @@ use std::sync::atomic::{AtomicU64, Ordering};
 use uuid::Uuid;
 
 /// Setting that marks a store as a demonstration.
-const MARK: (&str, &str) = ("demonstration", "yes");
+const MARK: &str = "yes";
 
 #[derive(Debug, thiserror::Error)]
 pub enum DemonstrationError {
@@ -76,7 +76,7 @@ fn build(store: Store, today: NaiveDate, zone: Tz) -> Result<App, DemonstrationE
     let app = App::with(store, Box::new(clock.clone()), Box::new(NumberedIds::default()))?;
     let stage = Stage::new(&app, &clock, today, zone);
     stage.at(stage::OPENING_DAY, 7, 30);
-    app.set(MARK.0, MARK.1)?;
+    app.set(Setting::Demonstration, MARK)?;
     story::tell(&stage)?;
     stage.at(0, 0, 0);
     app.flush_drafts()?;
@@ -92,7 +92,7 @@ pub fn may_become_demonstration(path: &Path) -> Result<(), DemonstrationError> {
     if !path.exists() {
         return Ok(());
     }
-    if Store::peek_setting(path, MARK.0)?.as_deref() != Some(MARK.1) {
+    if Store::peek_setting(path, Setting::Demonstration.key())?.as_deref() != Some(MARK) {
         return Err(DemonstrationError::OtherStore { path: path.to_owned() });
     }
     // The last one to close a store clears its log away; one that is still
@@ -239,6 +239,6 @@ mod tests {
         let at_work = Store::open(&path, OpenMode::MustExist).unwrap();
         let refused = build_demonstration(&path, day, chrono_tz::UTC).unwrap_err();
         assert!(matches!(refused, DemonstrationError::InUse { .. }), "{refused}");
-        assert_eq!(at_work.setting("demonstration").unwrap().as_deref(), Some("yes"));
+        assert_eq!(at_work.setting(Setting::Demonstration.key()).unwrap().as_deref(), Some("yes"));
     }
 }

@@ -212,14 +212,6 @@ impl App {
             Ok(tx.add_company_version(&if first { Dated { from: None, ..version } } else { version })?)
         })
     }
-
-    /// A setting of this device.
-    ///
-    /// # Errors
-    /// The store's own.
-    pub fn set(&self, key: &str, value: &str) -> Result<(), AppError> {
-        self.store.write(self.now(), |tx| tx.put_setting(key, value).map_err(AppError::from))
-    }
 }
 
 fn dated<T>(from: NaiveDate, reason: &str, facts: T) -> Dated<T> {

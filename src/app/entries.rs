@@ -7,7 +7,7 @@ use super::inputs::{
 use super::refusals::{self, Refusal};
 use super::standing::{ApplianceStanding, CylinderStanding, WeighingGap, appliance_standing, cylinder_standing};
 use super::weighing::{Weighed, weigh};
-use super::{App, AppError};
+use super::{App, AppError, Setting};
 use crate::gas;
 use crate::ledger::{
     Act, ApplianceId, CylinderId, Detail, Entry, EntryId, GasStatus, InstrumentId, Line, Moment, Reading, Transfer, Visit, VisitId,
@@ -186,7 +186,7 @@ impl App {
     /// # Errors
     /// The store's own.
     pub fn oil_factor(&self) -> Result<Ratio, AppError> {
-        let setting = self.store.setting("oil factor")?;
+        let setting = self.setting(Setting::OilFactor)?;
         Ok(setting
             .and_then(|text| parse_decimal(&text).ok())
             .filter(|factor| crate::measure::oil_factor_is_sound(*factor))

@@ -4,6 +4,7 @@
 //! same code. Clock and ids are passed in.
 
 mod account;
+mod account_file;
 mod assessed;
 mod clock;
 mod closing;
@@ -21,11 +22,13 @@ mod methods;
 mod paper;
 mod refusals;
 mod service_record;
+mod settings;
 mod standing;
 pub mod testing;
 mod visits;
 mod weighing;
 
+pub use account_file::account_file_name;
 pub use assessed::{assess_all, duty_calendar};
 pub use clock::{Clock, FreshIds, IdSource, SystemClock};
 pub use closing::{Correction, Ended};
@@ -42,6 +45,7 @@ pub use inputs::{
 pub use limits::LimitRules;
 pub use paper::{KnownPrint, Printed, Recognised, fit};
 pub use refusals::{Kind, Refusal};
+pub use settings::{Appearance, Look, Setting, Units, paper_name};
 pub use standing::{ApplianceStanding, CylinderStanding, WeighingGap};
 pub use visits::{OpenVisit, Unsaved};
 

@@ -49,15 +49,6 @@ pub struct KnownPrint {
 }
 
 impl App {
-    /// The paper set on this device; `None` where none was.
-    pub fn paper_set(&self) -> Option<Paper> {
-        match self.store().setting("paper").ok().flatten().as_deref() {
-            Some("letter") => Some(Paper::Letter),
-            Some("a4") => Some(Paper::A4),
-            _ => None,
-        }
-    }
-
     /// The folder of a visit's record among the documents: year, then site.
     ///
     /// # Errors
@@ -71,14 +62,14 @@ impl App {
 
     /// Prints a visit's service record: a closed one as it was signed, an open
     /// one as a draft, imported history marked as such. Without `paper` it is
-    /// Letter at a site under United States rules, else A4.
+    /// as set on this device, else Letter at a site under United States rules, else A4.
     ///
     /// # Errors
     /// Unknown visit; [`AppError::Print`] where a name cannot stand on paper as it is.
     pub fn print_record(&self, visit: VisitId, paper: Option<Paper>) -> Result<Printed, AppError> {
         let found = self.store().visit(visit)?.ok_or(AppError::Unknown { what: "visit" })?;
         let record = self.service_record(visit)?;
-        let bytes = print::service_record(&record, paper.unwrap_or_else(|| paper_of(&record)))?;
+        let bytes = print::service_record(&record, paper.or(self.units()?.paper).unwrap_or_else(|| paper_of(&record)))?;
         Ok(Printed { file_name: file_name(&found, &record), bytes })
     }
 
@@ -111,7 +102,7 @@ impl App {
         let made = self.store().copies(visit)?.into_iter().find(|copy| copy.number == number);
         let made = made.ok_or_else(|| AppError::input("copy", format!("No copy {number} of this record was made.")))?;
         let record = later::of(self.store(), visit)?.on(later::original(self.store(), visit)?, made.since, number);
-        let bytes = print::service_record(&record, paper.unwrap_or_else(|| paper_of(&record)))?;
+        let bytes = print::service_record(&record, paper.or(self.units()?.paper).unwrap_or_else(|| paper_of(&record)))?;
         Ok(Printed { file_name: file_name(&found, &record), bytes })
     }
 

@@ -4,9 +4,9 @@ use super::file::write_whole;
 use super::record::PaperSize;
 use super::table::TextTable;
 use super::{Answer, open};
-use crate::app::{App, fit};
-use crate::print::{self, Paper};
-use crate::quantity::{Mass, MassUnit, Ratio, rounded_text};
+use crate::app::{App, account_file_name};
+use crate::print::Paper;
+use crate::quantity::{Mass, Ratio, rounded_text};
 use crate::record::{AccountLine, AnnualAccount, WeightedLoss, account_csv, account_json};
 use crate::store::OpenMode;
 use clap::{Args, ValueEnum};
@@ -25,7 +25,7 @@ pub struct AccountArgs {
     /// Where it is written; without it, a PDF goes into this folder and all else to standard output
     #[arg(long, value_name = "FILE")]
     into: Option<PathBuf>,
-    /// For a PDF; without it, letter where all masses are in pounds, else A4
+    /// For a PDF; without it, as set on this device, else letter where all masses are in pounds, else A4
     #[arg(long, value_enum)]
     paper: Option<PaperSize>,
 }
@@ -55,10 +55,10 @@ impl AccountFormat {
 pub fn run(store: Option<&Path>, args: &AccountArgs) -> anyhow::Result<Answer> {
     let app = open(store, OpenMode::MustExist)?;
     let account = made(&app, args.year, args.owner.as_deref())?;
-    let bytes = written(&account, args.format, args.paper.map(Paper::from))?;
+    let bytes = written(&app, &account, args.format, args.paper.map(Paper::from))?;
     let path = match (&args.into, args.format) {
         (Some(path), _) => path.clone(),
-        (None, AccountFormat::Pdf) => PathBuf::from(file_name(&account, args.format)),
+        (None, AccountFormat::Pdf) => PathBuf::from(account_file_name(&account, args.format.extension())),
         (None, _) => return Ok(Answer::well(String::from_utf8(bytes)?)),
     };
     write_whole(&path, &bytes)?;
@@ -70,20 +70,13 @@ pub fn made(app: &App, year: i32, owner: Option<&str>) -> anyhow::Result<AnnualA
 }
 
 /// The account in a format, as bytes.
-pub fn written(account: &AnnualAccount, format: AccountFormat, paper: Option<Paper>) -> anyhow::Result<Vec<u8>> {
-    let usual = if account.unit == MassUnit::Pound { Paper::Letter } else { Paper::A4 };
+pub fn written(app: &App, account: &AnnualAccount, format: AccountFormat, paper: Option<Paper>) -> anyhow::Result<Vec<u8>> {
     Ok(match format {
-        AccountFormat::Pdf => print::annual_account(account, paper.unwrap_or(usual))?,
+        AccountFormat::Pdf => app.account_pdf(account, paper)?,
         AccountFormat::Csv => account_csv(account).into_bytes(),
         AccountFormat::Json => account_json(account)?.into_bytes(),
         AccountFormat::Table => table(account).into_bytes(),
     })
-}
-
-/// `account 2026.pdf`, or with the owner's name.
-pub fn file_name(account: &AnnualAccount, format: AccountFormat) -> String {
-    let owner = account.owner.as_ref().map(|owner| format!(" {owner}")).unwrap_or_default();
-    fit(&format!("account {}{owner}.{}", account.year, format.extension()))
 }
 
 fn table(account: &AnnualAccount) -> String {

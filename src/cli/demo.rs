@@ -3,7 +3,7 @@
 use super::account::{self, AccountFormat};
 use super::file::{make_folder, write_whole};
 use super::{Answer, today, window};
-use crate::app::{App, Clock, SystemClock, build_demonstration, may_become_demonstration};
+use crate::app::{App, Clock, SystemClock, account_file_name, build_demonstration, may_become_demonstration};
 use crate::ledger::VisitState;
 use crate::store::{OpenMode, VisitFilter};
 use anyhow::Context;
@@ -93,8 +93,8 @@ fn print_accounts(app: &App, folder: &Path, today: NaiveDate) -> anyhow::Result<
     for year in first..=today.year() {
         let made = account::made(app, year, None)?;
         for format in AccountFormat::FILES {
-            let path = folder.join(account::file_name(&made, format));
-            write_whole(&path, &account::written(&made, format, None)?)?;
+            let path = folder.join(account_file_name(&made, format.extension()));
+            write_whole(&path, &account::written(app, &made, format, None)?)?;
             files.push(path);
         }
     }

@@ -5,8 +5,7 @@ use super::places::{Out, Places, WithApp};
 use crate::app::AppError;
 use crate::view::places::{Go, Look, Msg as Office, Place};
 use crate::view::visit::choose_appliance;
-use crate::view::words::office as say;
-use crate::view::{Desk, Message, Msg, Page, places};
+use crate::view::{Desk, Message, Msg, Page, places, words};
 use bubblepoint_ui::{AppWindow, Shell};
 use slint::ComponentHandle;
 use std::rc::Rc;
@@ -83,8 +82,8 @@ fn follow(desk: &mut Desk, go: Go) {
         Go::Visit(visit) => desk.take_up(visit),
         Go::Entry(_, entry) => desk.open_entry(entry),
         Go::Open(path) => {
-            if desk.open_with_platform(&path).is_err() {
-                desk.say(Message::grave(say::cannot_open(&path.display().to_string())));
+            if let Err(cause) = desk.open_with_platform(&path) {
+                desk.say(Message::told(words::cannot_open(&path.display().to_string(), &cause)));
             }
             Ok(())
         }

@@ -10,14 +10,12 @@ mod closing;
 mod joined;
 mod machine;
 pub mod places;
-mod shapes;
 mod shell;
 mod visit;
 mod weighing;
 mod work;
 
 pub use machine::{desk_options, has_display};
-pub use shell::{APPEARANCE, TEXT_FACTOR};
 
 use crate::app::{App, AppError};
 use crate::view::visit::Panel;
@@ -80,7 +78,7 @@ impl Gui {
         weighing::connect(window, &gui);
         work::connect(window, &gui);
         closing::connect(window, &gui);
-        shell::appear(window, &gui.desk.borrow());
+        shell::mark_demonstration(window, &gui.desk.borrow());
         joined::join(window, &gui);
         gui.show();
         gui

@@ -59,6 +59,16 @@ pub fn verdict(verdict: shown::Verdict) -> ui::Verdict {
     }
 }
 
+fn row_bar(bar: Option<shown::Bar>) -> ui::RowBar {
+    match bar {
+        None => ui::RowBar::default(),
+        Some(shown::Bar::Rate { fill, notch, error_from, error_to }) => {
+            ui::RowBar { kind: ui::BarKind::Rate, heel: 0.0, fill, notch, error_from, error_to }
+        }
+        Some(shown::Bar::Mass { fill, notch }) => ui::RowBar { kind: ui::BarKind::Mass, fill, notch, ..ui::RowBar::default() },
+    }
+}
+
 pub fn line(line: &shown::Line) -> ui::Line {
     ui::Line {
         key: text(&line.key),
@@ -70,7 +80,9 @@ pub fn line(line: &shown::Line) -> ui::Line {
         judged: line.verdict.is_some(),
         verdict: verdict(line.verdict.unwrap_or_default()),
         struck: line.struck,
-        ..ui::Line::default()
+        chosen: false,
+        heading: line.heading,
+        bar: row_bar(line.bar),
     }
 }
 
@@ -177,6 +189,7 @@ mod tests {
         assert!(renew(&model, vec![1, 5, 7]).is_none());
         assert_eq!(model.iter().collect::<Vec<_>>(), [1, 5, 7]);
         let foreign: ModelRc<i32> = ModelRc::from([4, 4].as_slice());
-        assert!(renew(&foreign, vec![1]).is_none_or(|fresh| fresh.iter().eq([1])));
+        let fresh = renew(&foreign, vec![1]).expect("a list that is not ours is replaced");
+        assert_eq!(fresh.iter().collect::<Vec<_>>(), [1]);
     }
 }

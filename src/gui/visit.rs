@@ -6,8 +6,7 @@ use crate::app::AppError;
 use crate::view::visit::{Panel, begin, cautions, choose_appliance, choose_cylinder, facts, page};
 use crate::view::{Desk, Msg, Page};
 use bubblepoint_ui::{
-    Act, AppWindow, BeginAdapter, CautionsAdapter, ChooseApplianceAdapter, ChooseCylinderAdapter, DueAdapter, VisitAdapter,
-    VisitFactsAdapter,
+    Act, AppWindow, BeginAdapter, CautionsAdapter, ChooseApplianceAdapter, ChooseCylinderAdapter, VisitAdapter, VisitFactsAdapter,
 };
 use slint::ComponentHandle;
 use std::rc::Rc;
@@ -19,22 +18,6 @@ pub fn connect(window: &AppWindow, gui: &Rc<Gui>) {
     on!(gui, visit.on_open_entry(key) => Msg::Visit(page::Msg::OpenEntry(key.into())));
     on!(gui, visit.on_open_item(key) => Msg::Visit(page::Msg::OpenItem(key.into())));
     on!(gui, visit.on_back() => Msg::Back);
-
-    let due = window.global::<DueAdapter>();
-    let beginning = Rc::clone(gui);
-    due.on_begin(move || {
-        beginning.act(|desk| {
-            let asked = desk.ask_where();
-            desk.tell(asked);
-        });
-    });
-    let taking_up = Rc::clone(gui);
-    due.on_open_visit(move |key| {
-        taking_up.act(|desk| {
-            let taken = desk.take_up_key(&key);
-            desk.tell(taken);
-        });
-    });
 
     let begins = window.global::<BeginAdapter>();
     on!(gui, begins.on_search_for(typed) => Msg::Begin(begin::Msg::Search(typed.into())));

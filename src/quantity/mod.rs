@@ -5,6 +5,7 @@ mod decimal;
 mod mass;
 mod pressure;
 mod temperature;
+mod units;
 mod volume;
 mod written;
 
@@ -13,5 +14,6 @@ pub use decimal::{NotADecimal, Ratio, decimal_text, floored_text, parse_decimal,
 pub use mass::{Mass, MassError, MassUnit, Weighing};
 pub use pressure::{AbsolutePressure, GaugePressure, PressureStep, WrittenPressure};
 pub use temperature::{Temperature, TemperatureStep};
+pub use units::{PressureUnit, TemperatureUnit, VacuumUnit};
 pub use volume::Volume;
 pub use written::QuantityError;

@@ -3,6 +3,7 @@
 //!
 //! The window sends messages and reads view models; it decides nothing.
 
+use super::shown::Message;
 use super::visit::{
     self, Panel, Work, begin, cautions, charge, choose_appliance, choose_cylinder, close, closed, entry, facts, leak_test, note, page,
     pressure, recover, repair,
@@ -23,24 +24,6 @@ pub enum Page {
     Setup,
     Visit,
     Closed,
-}
-
-/// What the program has to say, until it is put away.
-#[derive(Debug, Clone, PartialEq, Eq)]
-pub struct Message {
-    pub text: String,
-    /// Something went wrong.
-    pub grave: bool,
-}
-
-impl Message {
-    pub fn told(text: impl Into<String>) -> Self {
-        Self { text: text.into(), grave: false }
-    }
-
-    pub fn grave(text: impl Into<String>) -> Self {
-        Self { text: text.into(), grave: true }
-    }
 }
 
 /// Hands a file or folder to the platform.

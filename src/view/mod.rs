@@ -5,12 +5,15 @@
 //! does, and the view model. Nothing here knows Slint, so that every flow can
 //! be followed in a test.
 
+mod bars;
 mod desk;
 pub mod format;
+pub mod gases;
 pub mod parse;
 pub mod places;
 pub mod shown;
 pub mod visit;
 pub mod words;
 
-pub use desk::{Desk, DeskOptions, Message, Msg, Page};
+pub use desk::{Desk, DeskOptions, Msg, Page};
+pub use shown::Message;

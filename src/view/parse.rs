@@ -1,7 +1,7 @@
 //! What people type: figures with point or comma, masses with their unit, and
 //! keys of the number pad.
 
-use crate::quantity::{MassUnit, Ratio, Weighing, parse_decimal};
+use crate::quantity::{MassUnit, QuantityError, Ratio, Volume, Weighing, decimal_text, parse_decimal};
 
 /// No scale or gauge shows more signs than this.
 const MOST_SIGNS: usize = 10;
@@ -48,6 +48,38 @@ pub fn mass(text: &str, unit: MassUnit) -> Result<Option<Weighing>, String> {
     let weighing = with_unit(text, unit);
     weighing.mass().map_err(|e| super::words::sentence(&e.to_string()))?;
     Ok(Some(weighing))
+}
+
+/// A figure that `read` takes, kept as it was written but for its decimal
+/// sign; `None` where nothing was typed.
+///
+/// # Errors
+/// A sentence that says what was typed.
+pub fn as_written<T>(text: &str, read: impl Fn(&str) -> Result<T, QuantityError>) -> Result<Option<String>, String> {
+    let text = text.trim();
+    if text.is_empty() {
+        return Ok(None);
+    }
+    read(text).map(|_| Some(text.replace(',', "."))).map_err(|e| super::words::sentence(&e.to_string()))
+}
+
+/// Litres from `26.2 l`, `26,2`, or a mass of water such as `47.7 lb` (1 kg of
+/// water is taken as 1 l, as on the stamp), as decimal text; `None` where
+/// nothing was typed.
+///
+/// # Errors
+/// A sentence that says what was typed.
+pub fn litres(text: &str) -> Result<Option<String>, String> {
+    let text = text.trim();
+    let lower = text.to_lowercase();
+    if lower.ends_with("lb") || lower.ends_with("kg") {
+        let water = mass(text, MassUnit::Kilogram)?.and_then(|written| written.mass().ok()).and_then(Volume::of_water);
+        return match water.and_then(|water| decimal_text(water.litres())) {
+            Some(litres) => Ok(Some(litres)),
+            None => Err(super::words::not_above_zero(text)),
+        };
+    }
+    as_written(lower.strip_suffix('l').filter(|figure| !figure.is_empty()).unwrap_or(&lower), Volume::from_litres_text)
 }
 
 fn with_unit(text: &str, unit: MassUnit) -> Weighing {
@@ -100,5 +132,24 @@ mod tests {
         assert_eq!(read("800g"), "800 g");
         assert!(mass("much", MassUnit::Kilogram).unwrap_err().contains("much"));
         assert_eq!(mass("", MassUnit::Kilogram), Ok(None));
+    }
+
+    #[test]
+    fn a_figure_stays_as_written() {
+        let read = |text: &str| as_written(text, Volume::from_cubic_metres_text);
+        assert_eq!(read("12,50"), Ok(Some("12.50".to_owned())));
+        assert_eq!(read(""), Ok(None));
+        assert!(read("0").is_err() && read("-1").is_err() && read("x").is_err());
+    }
+
+    #[test]
+    fn water_capacity_is_litres_or_the_mass_of_water() {
+        assert_eq!(litres("26,2"), Ok(Some("26.2".to_owned())));
+        assert_eq!(litres("26.2 L"), Ok(Some("26.2".to_owned())));
+        assert_eq!(litres("47.7 lb"), Ok(Some("21.636356049".to_owned())));
+        assert_eq!(litres(" "), Ok(None));
+        for wrong in ["big", "l", "0 l", "-3"] {
+            assert!(litres(wrong).is_err(), "{wrong}");
+        }
     }
 }

@@ -11,9 +11,28 @@ pub enum Verdict {
     Over,
 }
 
-/// A row of a list.
-#[derive(Debug, Clone, Default, PartialEq, Eq)]
+/// What the program has to say, until it is put away.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Message {
+    pub text: String,
+    /// Something went wrong.
+    pub grave: bool,
+}
+
+impl Message {
+    pub fn told(text: impl Into<String>) -> Self {
+        Self { text: text.into(), grave: false }
+    }
+
+    pub fn grave(text: impl Into<String>) -> Self {
+        Self { text: text.into(), grave: true }
+    }
+}
+
+/// A row of a list, or with `heading` the name of a group of rows.
+#[derive(Debug, Clone, Default, PartialEq)]
 pub struct Line {
+    /// Empty: the row does not act.
     pub key: String,
     pub time: String,
     pub name: String,
@@ -22,7 +41,37 @@ pub struct Line {
     pub aside: String,
     /// `None`: nothing was judged.
     pub verdict: Option<Verdict>,
+    pub heading: bool,
     pub struck: bool,
+    pub bar: Option<Bar>,
+}
+
+/// Places along the small bar of a row, from 0 to 1.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Bar {
+    Rate { fill: f32, notch: f32, error_from: f32, error_to: f32 },
+    Mass { fill: f32, notch: f32 },
+}
+
+impl Line {
+    pub fn new(key: impl Into<String>, name: impl Into<String>, facts: impl Into<String>) -> Self {
+        Self { key: key.into(), name: name.into(), facts: facts.into(), ..Self::default() }
+    }
+
+    /// The name of a group; `state` counts or sums what stands below it.
+    pub fn group(name: impl Into<String>, state: impl Into<String>) -> Self {
+        Self { heading: true, name: name.into(), state: state.into(), ..Self::default() }
+    }
+
+    pub fn state(mut self, state: impl Into<String>, aside: impl Into<String>) -> Self {
+        (self.state, self.aside) = (state.into(), aside.into());
+        self
+    }
+
+    pub fn judged(mut self, verdict: Verdict) -> Self {
+        self.verdict = Some(verdict);
+        self
+    }
 }
 
 /// A caption and what it says.

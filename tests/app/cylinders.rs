@@ -80,7 +80,7 @@ fn room_for_oil_is_left_in_recovered_gas_alone() {
     assert_eq!(recovered.oil_factor, default_oil_factor());
     assert_eq!(recovered.name(), "80 % of the volume at 25 °C, × 0.9 for oil");
     assert!(recovered.net.kg() <= virgin.net.kg() * default_oil_factor());
-    app.set("oil factor", "0.85").unwrap();
+    app.set(bubblepoint::app::Setting::OilFactor, "0.85").unwrap();
     assert_eq!((limit(plant.recovery).oil_factor, limit(plant.supply).oil_factor), (Ratio::new(85, 100), Ratio::from_integer(1)));
     let standing = app.cylinder_standing(plant.recovery, app.today()).unwrap();
     assert_eq!((standing.balance.heel, standing.balance.status), (Some(Mass::ZERO), Some(GasStatus::Recovered)));

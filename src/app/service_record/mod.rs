@@ -8,7 +8,7 @@ mod wording;
 
 pub(super) use verdict::ODP_TABLE;
 
-use super::{App, AppError, PROGRAM};
+use super::{App, AppError, PROGRAM, Setting};
 use crate::gas::Weighting;
 use crate::ledger::{
     Act, Appliance, ApplianceFacts, CautionSeen, ChargePurpose, Closing, Counterpart, Entry, Instrument, Line, Person, PersonId, Registers,
@@ -65,7 +65,7 @@ pub(super) fn of_visit(store: &Store, visit: &Visit, entries: &[Entry]) -> Resul
         state: state(visit, entries),
         fingerprint: None,
         copy: 1,
-        demonstration: store.setting("demonstration")?.is_some_and(|value| value == "yes"),
+        demonstration: store.setting(Setting::Demonstration.key())?.is_some_and(|value| value == "yes"),
         program: PROGRAM.to_owned(),
         rulebooks: rulebooks(&site_facts.rulebooks),
         company: Party { name: company.name, address: company.address, certificate: company.certificate },

@@ -1,9 +1,9 @@
 //! Account.
 
 use super::Send;
-use crate::gui::shapes::{choices, facts, list};
+use crate::gui::rows::{self, inner};
 use crate::view::places::account::Msg as Account;
-use crate::view::places::{Msg, Office};
+use crate::view::places::{Msg, Office, account};
 use bubblepoint_ui::{AccountAdapter, AccountFigure, AppWindow, GasPlate, Share, Tally};
 use slint::{ComponentHandle, SharedString};
 
@@ -32,9 +32,9 @@ pub fn show(window: &AppWindow, office: &Office) {
     a.set_has_earlier(page.has_earlier);
     a.set_has_later(page.has_later);
     a.set_extent(page.extent.into());
-    a.set_owners(choices(&page.owners));
+    list!(a.get_owners, set_owners, rows::choices(&page.owners));
     a.set_owner(page.owner.into());
-    a.set_gases(choices(&page.gases));
+    list!(a.get_gases, set_gases, rows::choices(&page.gases));
     a.set_gas(page.gas.into());
     a.set_choice_words(page.choice_words.into());
     a.set_lost(page.lost.into());
@@ -42,23 +42,25 @@ pub fn show(window: &AppWindow, office: &Office) {
     a.set_co2e(page.co2e.into());
     a.set_odp(page.odp.into());
     a.set_tables(page.tables.into());
-    a.set_plates(list(page.plates.into_iter().map(|plate| {
+    let plate = |plate: account::Plate| {
         let figure = |(caption, value, sum): (String, String, bool)| AccountFigure { caption: caption.into(), value: value.into(), sum };
         GasPlate {
             gas: plate.gas.into(),
             unit: plate.unit.into(),
-            figures: list(plate.figures.into_iter().map(figure)),
-            weighted: facts(&plate.weighted),
+            figures: inner(plate.figures.into_iter().map(figure).collect()),
+            weighted: inner(rows::facts(&plate.weighted)),
         }
-    })));
-    a.set_losses(list(page.losses.into_iter().map(|share| Share {
+    };
+    list!(a.get_plates, set_plates, page.plates.into_iter().map(plate).collect());
+    let share = |share: account::Share| Share {
         key: share.key.into(),
         name: share.name.into(),
         facts: share.facts.into(),
         value: share.value.into(),
         share: share.share,
-    })));
-    a.set_duties(list(page.duties.into_iter().map(|tally| Tally {
+    };
+    list!(a.get_losses, set_losses, page.losses.into_iter().map(share).collect());
+    let tally = |tally: account::Tally| Tally {
         name: tally.name.into(),
         source: tally.source.into(),
         in_time: tally.in_time.into(),
@@ -67,8 +69,9 @@ pub fn show(window: &AppWindow, office: &Office) {
         in_time_share: tally.shares[0],
         late_share: tally.shares[1],
         not_done_share: tally.shares[2],
-    })));
-    a.set_remarks(list(page.remarks.into_iter().map(SharedString::from)));
+    };
+    list!(a.get_duties, set_duties, page.duties.into_iter().map(tally).collect());
+    list!(a.get_remarks, set_remarks, page.remarks.into_iter().map(SharedString::from).collect());
     a.set_export_words(page.export_words.into());
     a.set_export_grave(page.export_grave);
     a.set_empty_words(page.empty_words.into());

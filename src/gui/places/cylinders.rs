@@ -1,8 +1,8 @@
 //! Cylinders: the list, a cylinder's page, its form.
 
 use super::Send;
-use crate::gui::shapes::{choices, facts, mass_bar, rows};
-use crate::view::places::appliance_form::gases_like;
+use crate::gui::rows;
+use crate::view::gases::gases_like;
 use crate::view::places::cylinder::CylinderPage;
 use crate::view::places::cylinder_form::{kinds, states};
 use crate::view::places::cylinders::{Msg as Cylinders, Pane};
@@ -35,7 +35,7 @@ pub fn show(window: &AppWindow, office: &Office) {
     let page = office.cylinders_page();
     a.set_summary(page.summary.into());
     a.set_search(page.search.into());
-    a.set_lines(rows(&page.lines));
+    list!(a.get_lines, set_lines, rows::lines(&page.lines));
     a.set_empty_words(page.empty_words.into());
     a.set_nothing_yet(page.nothing_yet);
     a.set_chosen(page.chosen.into());
@@ -62,12 +62,12 @@ fn show_cylinder(window: &AppWindow, page: &CylinderPage) {
     a.set_unit((&page.unit).into());
     a.set_has_mass(page.mass.is_some());
     if let Some(mass) = &page.mass {
-        a.set_mass(mass_bar(mass));
+        a.set_mass(rows::mass(mass));
     }
-    a.set_limits(facts(&page.limits));
+    list!(a.get_limits, set_limits, rows::facts(&page.limits));
     a.set_refused((&page.refused).into());
-    a.set_facts(facts(&page.facts));
-    a.set_movements(rows(&page.movements));
+    list!(a.get_facts, set_facts, rows::facts(&page.facts));
+    list!(a.get_movements, set_movements, rows::lines(&page.movements));
 }
 
 /// `open`: what the screen itself has unfolded stays so.
@@ -78,12 +78,12 @@ fn show_form(window: &AppWindow, office: &Office, open: bool) {
     a.set_changing(form.changing);
     a.set_identification(form.text("identification").into());
     a.set_identification_error(form.error("identification").into());
-    a.set_kinds(choices(&kinds()));
+    list!(a.get_kinds, set_kinds, rows::choices(&kinds()));
     a.set_kind(form.text("kind").into());
     a.set_gas(form.text("gas").into());
     a.set_gas_error(form.error("gas").into());
-    a.set_gases(choices(&gases_like(form.text("gas"))));
-    a.set_states(choices(&states()));
+    list!(a.get_gases, set_gases, rows::choices(&gases_like(form.text("gas"))));
+    list!(a.get_states, set_states, rows::choices(&states()));
     a.set_status(form.text("status").into());
     a.set_tare(form.text("tare").into());
     a.set_tare_error(form.error("tare").into());

@@ -3,8 +3,10 @@
 
 use super::{Send, connect, place, show};
 use crate::app::App;
+use crate::app::Appearance as Light;
 use crate::store::StoreError;
-use crate::view::places::{Go, Look, Message, Msg, Office, Overview, Place};
+use crate::view::Message;
+use crate::view::places::{Go, Look, Msg, Office, Overview, Place};
 use bubblepoint_ui::{AppWindow, Appearance, Page, Shell, Theme};
 use slint::{ComponentHandle, Timer, TimerMode};
 use std::cell::{Cell, Ref, RefCell};
@@ -145,10 +147,10 @@ impl Places {
     pub fn appear(&self, window: &AppWindow) {
         let theme = window.global::<Theme>();
         let look = self.look.borrow();
-        theme.set_appearance(match look.appearance.as_str() {
-            "dark" => Appearance::Dark,
-            "sunlight" => Appearance::Sunlight,
-            _ => Appearance::Light,
+        theme.set_appearance(match look.appearance {
+            Light::Light => Appearance::Light,
+            Light::Dark => Appearance::Dark,
+            Light::Sunlight => Appearance::Sunlight,
         });
         theme.set_text_factor(look.text_size as f32 / 100.0);
     }

@@ -1,7 +1,7 @@
 //! Due.
 
 use super::Send;
-use crate::gui::shapes::{choices, facts, rows, verdict};
+use crate::gui::rows;
 use crate::view::places::due::Msg as Due;
 use crate::view::places::{Msg, Office};
 use bubblepoint_ui::{AppWindow, DueAdapter, DueItem};
@@ -21,10 +21,10 @@ pub fn show(window: &AppWindow, office: &Office) {
     let page = office.due_page();
     a.set_today(page.today.into());
     a.set_summary(page.summary.into());
-    a.set_visits(rows(&page.visits));
-    a.set_horizons(choices(&page.horizons));
+    list!(a.get_visits, set_visits, rows::lines(&page.visits));
+    list!(a.get_horizons, set_horizons, rows::choices(&page.horizons));
     a.set_horizon(page.horizon.into());
-    a.set_lines(rows(&page.lines));
+    list!(a.get_lines, set_lines, rows::lines(&page.lines));
     a.set_empty_words(page.empty_words.into());
     a.set_begin_words(page.begin_words.into());
     a.set_item_open(page.item.is_some());
@@ -33,9 +33,9 @@ pub fn show(window: &AppWindow, office: &Office) {
         a.set_item(DueItem {
             name: item.name.into(),
             subject: item.subject.into(),
-            verdict: verdict(item.verdict),
+            verdict: rows::verdict(item.verdict),
             word: item.word.into(),
-            facts: facts(&item.facts),
+            facts: rows::inner(rows::facts(&item.facts)),
             text: item.text.into(),
             source: item.source.into(),
         });

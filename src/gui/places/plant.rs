@@ -1,9 +1,10 @@
 //! Plant: its list, the pages of sites, appliances and records, and their forms.
 
 use super::Send;
-use crate::gui::shapes::{choices, facts, list, rate, row, rows, verdict};
+use crate::gui::rows::{self, inner, verdict};
+use crate::view::gases::gases_like;
 use crate::view::places::appliance::AppliancePage;
-use crate::view::places::appliance_form::{categories, charge_methods, equipment, gases_like};
+use crate::view::places::appliance_form::{categories, charge_methods, equipment};
 use crate::view::places::plant::{FormMsg, Msg as Plant, Pane};
 use crate::view::places::record::RecordPage;
 use crate::view::places::site_form::methods;
@@ -62,7 +63,7 @@ pub fn show(window: &AppWindow, office: &Office) {
     let page = office.plant_page();
     a.set_summary(page.summary.into());
     a.set_search(page.search.into());
-    a.set_lines(rows(&page.lines));
+    list!(a.get_lines, set_lines, rows::lines(&page.lines));
     a.set_empty_words(page.empty_words.into());
     a.set_nothing_yet(page.nothing_yet);
     a.set_chosen(page.chosen.into());
@@ -88,9 +89,9 @@ fn show_site(window: &AppWindow, page: &SitePage) {
     let a = window.global::<SiteAdapter>();
     a.set_name((&page.name).into());
     a.set_address((&page.address).into());
-    a.set_facts(facts(&page.facts));
-    a.set_appliances(rows(&page.appliances));
-    a.set_visits(rows(&page.visits));
+    list!(a.get_facts, set_facts, rows::facts(&page.facts));
+    list!(a.get_appliances, set_appliances, rows::lines(&page.appliances));
+    list!(a.get_visits, set_visits, rows::lines(&page.visits));
 }
 
 fn show_appliance(window: &AppWindow, page: &AppliancePage) {
@@ -99,14 +100,14 @@ fn show_appliance(window: &AppWindow, page: &AppliancePage) {
     a.set_site((&page.site).into());
     a.set_name((&page.name).into());
     a.set_state((&page.state).into());
-    a.set_rates(list(page.rates.iter().map(rate)));
+    list!(a.get_rates, set_rates, rows::rates(&page.rates));
     a.set_has_history(page.history.is_some());
     if let Some(history) = &page.history {
         let step =
             |step: &RateStep| ui::RateStep { at: step.at, rate: step.rate, low: step.low, high: step.high, verdict: verdict(step.verdict) };
         a.set_history(ui::RateHistory {
-            steps: list(history.steps.iter().map(step)),
-            repairs: list(history.repairs.iter().copied()),
+            steps: inner(history.steps.iter().map(step).collect()),
+            repairs: inner(history.repairs.clone()),
             trigger: history.trigger,
             trigger_words: (&history.trigger_words).into(),
             from: (&history.from).into(),
@@ -114,11 +115,11 @@ fn show_appliance(window: &AppWindow, page: &AppliancePage) {
             words: (&history.words).into(),
         });
     }
-    a.set_duties(rows(&page.duties));
-    a.set_leaks(rows(&page.leaks));
-    a.set_records(rows(&page.records));
-    a.set_facts(facts(&page.facts));
-    a.set_changes(list(page.changes.iter().map(row)));
+    list!(a.get_duties, set_duties, rows::lines(&page.duties));
+    list!(a.get_leaks, set_leaks, rows::lines(&page.leaks));
+    list!(a.get_records, set_records, rows::lines(&page.records));
+    list!(a.get_facts, set_facts, rows::facts(&page.facts));
+    list!(a.get_changes, set_changes, rows::lines(&page.changes));
 }
 
 fn show_record(window: &AppWindow, page: &RecordPage) {
@@ -127,9 +128,9 @@ fn show_record(window: &AppWindow, page: &RecordPage) {
     a.set_subject((&page.subject).into());
     a.set_file((&page.file).into());
     a.set_folder((&page.folder).into());
-    a.set_facts(facts(&page.facts));
-    a.set_entries(rows(&page.entries));
-    a.set_corrections(facts(&page.corrections));
+    list!(a.get_facts, set_facts, rows::facts(&page.facts));
+    list!(a.get_entries, set_entries, rows::lines(&page.entries));
+    list!(a.get_corrections, set_corrections, rows::facts(&page.corrections));
 }
 
 /// `open`: what the screen itself has unfolded stays so.
@@ -143,17 +144,17 @@ fn show_appliance_form(window: &AppWindow, office: &Office, open: bool) {
     a.set_identification_error(form.error("identification").into());
     a.set_gas(form.text("gas").into());
     a.set_gas_error(form.error("gas").into());
-    a.set_gases(choices(&gases_like(form.text("gas"))));
+    list!(a.get_gases, set_gases, rows::choices(&gases_like(form.text("gas"))));
     a.set_full_charge(form.text("full-charge").into());
     a.set_full_charge_error(form.error("full-charge").into());
     a.set_place(form.text("place").into());
     a.set_more(form.more || (open && a.get_more()));
-    a.set_charge_methods(choices(&charge_methods()));
+    list!(a.get_charge_methods, set_charge_methods, rows::choices(&charge_methods()));
     a.set_charge_method(form.text("charge-method").into());
-    a.set_categories(choices(&categories()));
+    list!(a.get_categories, set_categories, rows::choices(&categories()));
     a.set_category(form.text("category").into());
     a.set_equipment(form.text("equipment").into());
-    a.set_kinds(choices(&equipment()));
+    list!(a.get_kinds, set_kinds, rows::choices(&equipment()));
     a.set_installed_on(form.text("installed-on").into());
     a.set_installed_on_error(form.error("installed-on").into());
     a.set_assembly(form.text("assembly").into());
@@ -193,9 +194,9 @@ fn show_site_form(window: &AppWindow, office: &Office) {
         facts: book.facts.into(),
         on: book.on,
     };
-    a.set_rulebooks(list(office.rulebook_choices().into_iter().map(book)));
+    list!(a.get_rulebooks, set_rulebooks, office.rulebook_choices().into_iter().map(book).collect());
     a.set_rulebooks_error(form.error("rulebooks").into());
-    a.set_methods(choices(&methods()));
+    list!(a.get_methods, set_methods, rows::choices(&methods()));
     a.set_method(form.text("method").into());
     a.set_asks_method(office.site_form_asks_method());
     a.set_valid_from(form.text("valid-from").into());

@@ -1,11 +1,12 @@
 //! Setup: its list, registers, forms, units, appearance, store, about.
 
 use super::Send;
-use crate::gui::shapes::{choices, facts, list, rows};
+use crate::app::{Appearance as Light, Setting, paper_name};
+use crate::gui::rows;
 use crate::view::places::plant::FormMsg;
-use crate::view::places::setup::{Msg as Setup, Pane, mass_units, sources};
+use crate::view::places::setup::{Msg as Setup, Pane, mass_units, papers, pressure_units, sources, temperature_units, vacuum_units};
 use crate::view::places::setup_forms::{asks_division, asks_holds, kinds};
-use crate::view::places::{Look, Msg, Office};
+use crate::view::places::{Look, Msg, Office, setup};
 use bubblepoint_ui::{
     AboutAdapter, AppWindow, Appearance, AppearanceAdapter, CompanyAdapter, InstrumentFormAdapter, PersonFormAdapter, SetupAdapter,
     SetupLine, SetupPane, StoreAdapter, UnitsAdapter,
@@ -34,13 +35,24 @@ fn shown(pane: Pane) -> SetupPane {
     PANES.iter().find(|(own, _)| *own == pane).map_or(SetupPane::None, |(_, screen)| *screen)
 }
 
-fn word(appearance: Appearance) -> String {
+fn light(appearance: Appearance) -> Light {
     match appearance {
-        Appearance::Light => "light",
-        Appearance::Dark => "dark",
-        Appearance::Sunlight => "sunlight",
+        Appearance::Light => Light::Light,
+        Appearance::Dark => Light::Dark,
+        Appearance::Sunlight => Light::Sunlight,
     }
-    .to_owned()
+}
+
+/// What the page of units calls a setting.
+fn setting(what: &str) -> Option<Setting> {
+    Some(match what {
+        "mass" => Setting::Mass,
+        "pressure" => Setting::Pressure,
+        "vacuum" => Setting::Vacuum,
+        "temperature" => Setting::Temperature,
+        "paper" => Setting::Paper,
+        _ => return None,
+    })
 }
 
 /// Offered are four sizes; the nearest is meant.
@@ -68,10 +80,15 @@ pub fn connect(window: &AppWindow, send: &Send) {
     on!(a, send, on_save, || Msg::Setup(Setup::Instrument(FormMsg::Save)));
 
     let a = window.global::<UnitsAdapter>();
-    on!(a, send, on_choose, |what, key| Msg::Setup(Setup::Unit(what.into(), key.into())));
+    let choosing = std::rc::Rc::clone(send);
+    a.on_choose(move |what, key| {
+        if let Some(setting) = setting(&what) {
+            choosing(Msg::Setup(Setup::Set(setting, key.into())));
+        }
+    });
 
     let a = window.global::<AppearanceAdapter>();
-    on!(a, send, on_changed_appearance, |appearance| Msg::Setup(Setup::Appearance(word(appearance))));
+    on!(a, send, on_changed_appearance, |appearance| Msg::Setup(Setup::Appearance(light(appearance))));
     on!(a, send, on_changed_text_factor, |factor| Msg::Setup(Setup::TextSize(percent(factor))));
 
     let a = window.global::<StoreAdapter>();
@@ -82,15 +99,16 @@ pub fn connect(window: &AppWindow, send: &Send) {
 
 pub fn show(window: &AppWindow, office: &Office, look: &Look) {
     let a = window.global::<SetupAdapter>();
-    a.set_lines(list(office.setup_lines(look).into_iter().map(|line| SetupLine {
+    let line = |line: setup::SetupLine| SetupLine {
         pane: shown(line.pane),
         name: line.name.into(),
         facts: line.facts.into(),
         state: line.state.into(),
-    })));
+    };
+    list!(a.get_lines, set_lines, office.setup_lines(look).into_iter().map(line).collect());
     let register = office.register();
     a.set_register_title(register.title.into());
-    a.set_register(rows(&register.lines));
+    list!(a.get_register, set_register, rows::lines(&register.lines));
     a.set_register_empty(register.empty.into());
     a.set_register_add(register.add.into());
     match office.setup.pane {
@@ -102,7 +120,7 @@ pub fn show(window: &AppWindow, office: &Office, look: &Look) {
         Pane::About => {
             let a = window.global::<AboutAdapter>();
             a.set_version(env!("CARGO_PKG_VERSION").into());
-            a.set_sources(facts(&sources()));
+            list!(a.get_sources, set_sources, rows::facts(&sources()));
         }
         _ => {}
     }
@@ -145,7 +163,7 @@ fn show_instrument(window: &AppWindow, office: &Office) {
     let form = &office.setup.instrument;
     let ready = office.instrument_ready();
     a.set_changing(form.changing);
-    a.set_kinds(choices(&kinds()));
+    list!(a.get_kinds, set_kinds, rows::choices(&kinds()));
     a.set_kind(form.text("kind").into());
     a.set_name(form.text("name").into());
     a.set_name_error(form.error("name").into());
@@ -166,19 +184,23 @@ fn show_instrument(window: &AppWindow, office: &Office) {
 
 fn show_units(window: &AppWindow, office: &Office) {
     let a = window.global::<UnitsAdapter>();
-    a.set_masses(choices(&mass_units()));
+    list!(a.get_masses, set_masses, rows::choices(&mass_units()));
     a.set_mass(office.units.mass.name().into());
-    a.set_pressure((&office.units.pressure).into());
-    a.set_vacuum((&office.units.vacuum).into());
-    a.set_temperature((&office.units.temperature).into());
-    a.set_paper((&office.units.paper).into());
+    list!(a.get_pressures, set_pressures, rows::choices(&pressure_units()));
+    a.set_pressure(office.units.pressure.name().into());
+    list!(a.get_vacuums, set_vacuums, rows::choices(&vacuum_units()));
+    a.set_vacuum(office.units.vacuum.name().into());
+    list!(a.get_temperatures, set_temperatures, rows::choices(&temperature_units()));
+    a.set_temperature(office.units.temperature.name().into());
+    list!(a.get_papers, set_papers, rows::choices(&papers()));
+    a.set_paper(paper_name(office.units.paper).into());
 }
 
 fn show_store(window: &AppWindow, office: &Office) {
     let a = window.global::<StoreAdapter>();
     let page = &office.setup.store;
     a.set_path((&page.path).into());
-    a.set_facts(facts(&page.facts));
+    list!(a.get_facts, set_facts, rows::facts(&page.facts));
     a.set_answer((&page.answer).into());
     a.set_answer_grave(page.grave);
     a.set_busy(false);

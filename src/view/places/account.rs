@@ -1,9 +1,8 @@
 //! Account: a year per gas, losses by appliance, how duties were kept, export.
 
 use super::plant;
-use super::rates::number;
 use super::{Go, Office, Place};
-use crate::app::{App, file_away};
+use crate::app::{App, account_file_name, file_away};
 use crate::ledger::VisitState;
 use crate::quantity::{Mass, MassUnit, Ratio, rounded_text};
 use crate::record::{AccountLine, AnnualAccount, GasAccount, account_csv, account_json};
@@ -147,20 +146,17 @@ impl Office {
                 self.place = Place::Plant;
                 return self.update_plant(app, plant::Msg::Open(key));
             }
-            Msg::Export(format) => self.export(&format),
+            Msg::Export(format) => self.export(app, &format),
             Msg::Begin => return self.lead(app),
         }
         Vec::new()
     }
 
-    fn export(&mut self, ending: &str) {
+    fn export(&mut self, app: &App, ending: &str) {
         let Some(account) = &self.account.account else { return };
-        let owner = account.owner.as_ref().map(|owner| format!(" {owner}")).unwrap_or_default();
-        let name = crate::app::fit(&format!("account {}{owner}.{ending}", account.year));
-        let path = self.documents.join(account.year.to_string()).join(name);
-        let paper = if self.units.paper == "letter" { crate::print::Paper::Letter } else { crate::print::Paper::A4 };
+        let path = self.documents.join(account.year.to_string()).join(account_file_name(account, ending));
         let bytes = match ending {
-            "pdf" => crate::print::annual_account(account, paper).map_err(|error| error.to_string()),
+            "pdf" => app.account_pdf(account, None).map_err(|error| error.to_string()),
             "csv" => Ok(account_csv(account).into_bytes()),
             _ => account_json(account).map(String::into_bytes).map_err(|error| error.to_string()),
         };
@@ -168,7 +164,7 @@ impl Office {
         let shown = path.display().to_string();
         (self.account.export, self.account.export_grave) = match done {
             Ok(()) => (say::written_to(&shown), false),
-            Err(cause) => (say::cannot_write(&shown, &cause), true),
+            Err(cause) => (words::cannot_write(&shown, &cause), true),
         };
     }
 
@@ -233,7 +229,7 @@ impl Office {
                 name: one.appliance.clone(),
                 facts: format::commas([one.site.as_str(), &one.refrigerant]),
                 value: format!("{} {}", figure(one.line.lost, unit), format::unit(unit)),
-                share: number(one.line.lost.kg() / most.kg()) as f32,
+                share: format::float(one.line.lost.kg() / most.kg()) as f32,
             })
             .collect();
         page.duties = account.duties.iter().filter_map(tally).collect();

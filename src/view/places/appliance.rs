@@ -2,7 +2,6 @@
 //! duties, open leaks and records, its facts with their history.
 
 use super::overview::{Judged, LifeState};
-use super::row::Row;
 use super::{Office, RateHistory, due, rates};
 use crate::app::{App, AppError};
 use crate::gas;
@@ -10,7 +9,7 @@ use crate::ledger::{Act, ApplianceFacts, ApplianceId, Entry, VisitState};
 use crate::quantity::{MassUnit, Ratio};
 use crate::rules::{self, DutyState};
 use crate::store::VisitFilter;
-use crate::view::shown::{Fact, Rate};
+use crate::view::shown::{Fact, Line, Rate};
 use crate::view::{format, words};
 use words::office as say;
 
@@ -22,12 +21,12 @@ pub struct AppliancePage {
     pub state: String,
     pub rates: Vec<Rate>,
     pub history: Option<RateHistory>,
-    pub duties: Vec<Row>,
-    pub leaks: Vec<Row>,
-    pub records: Vec<Row>,
+    pub duties: Vec<Line>,
+    pub leaks: Vec<Line>,
+    pub records: Vec<Line>,
     /// An empty value is to complete.
     pub facts: Vec<Fact>,
-    pub changes: Vec<Row>,
+    pub changes: Vec<Line>,
 }
 
 /// One entry in a few words: `charge 2.1 kg`.
@@ -92,7 +91,7 @@ impl Office {
             },
             rates: self.rates(judged),
             history: rates::history(judged),
-            duties: duties.map(|duty| Row { facts: duty.source.clone(), ..due::duty_row(judged, duty, self.today, soon) }).collect(),
+            duties: duties.map(|duty| Line { facts: duty.source.clone(), ..due::duty_row(judged, duty, self.today, soon) }).collect(),
             leaks: judged.leaks.iter().map(|leak| due::leak_row(judged, leak, self.today)).collect(),
             records: self.records_of(app, judged)?,
             facts: self.facts_of(judged),
@@ -110,7 +109,7 @@ impl Office {
         if applying.is_empty() { bars(false).into_iter().take(1).collect() } else { applying }
     }
 
-    fn records_of(&self, app: &App, judged: &Judged) -> Result<Vec<Row>, AppError> {
+    fn records_of(&self, app: &App, judged: &Judged) -> Result<Vec<Line>, AppError> {
         let entries = app.store().entries_of_appliance(judged.appliance.id)?;
         let visits = app.store().visits(&VisitFilter { appliance: Some(judged.appliance.id), ..VisitFilter::default() })?;
         let row = |visit: &crate::ledger::Visit| {
@@ -123,7 +122,7 @@ impl Office {
                 (None, state) => state.name().to_owned(),
             };
             let aside = if corrected { "corrected" } else { "" };
-            Row::new(visit.id.to_string(), format::full_day(visit.date), facts.join(", ")).state(state, aside)
+            Line::new(visit.id.to_string(), format::full_day(visit.date), facts.join(", ")).state(state, aside)
         };
         Ok(visits.iter().rev().map(row).collect())
     }
@@ -170,7 +169,7 @@ impl Office {
 }
 
 /// Dated changes of a fact, the latest first.
-fn changes(judged: &Judged) -> Vec<Row> {
+fn changes(judged: &Judged) -> Vec<Line> {
     let versions = judged.appliance.versions.all();
     let mut rows = Vec::new();
     for pair in versions.windows(2) {
@@ -178,7 +177,7 @@ fn changes(judged: &Judged) -> Vec<Row> {
         for (name, is, was) in differences(&pair[0].facts, &pair[1].facts) {
             let value = if is.is_empty() { words::to_complete() } else { is };
             let facts = [Some(say::was(&was)), pair[1].reason.clone()].into_iter().flatten().collect::<Vec<_>>().join("; ");
-            rows.push(Row::new("", format!("{name} {value}"), facts).state(day.clone(), ""));
+            rows.push(Line::new("", format!("{name} {value}"), facts).state(day.clone(), ""));
         }
     }
     rows.reverse();

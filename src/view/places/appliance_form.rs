@@ -4,50 +4,16 @@ use super::form::day;
 use super::plant::{FormMsg, Pane};
 use super::{Form, Go, Office};
 use crate::app::App;
-use crate::gas;
 use crate::ledger::{ApplianceFacts, ApplianceId, Category, ChargeMethod, Equipment};
 use crate::quantity::Volume;
+use crate::view::gases::gas_named;
 use crate::view::shown::{Choice, Ready};
 use crate::view::{parse, words};
 use words::office as say;
 
-/// Gases offered at most while typing.
-const MOST_OFFERED: usize = 6;
-
 /// The fields of `AppError::Input`, and what the form calls them.
 const FIELDS: [(&str, &str); 5] =
     [("name", "identification"), ("refrigerant", "gas"), ("gas", "gas"), ("full charge", "full-charge"), ("installed on", "installed-on")];
-
-/// Gases that fit what is typed so far, the shortest name first; none once one is written out.
-pub fn gases_like(typed: &str) -> Vec<Choice> {
-    if gas::find(typed.trim()).is_some_and(|gas| gas.designation() == typed.trim()) {
-        return Vec::new();
-    }
-    let plain = |text: &str| text.chars().filter(|c| c.is_alphanumeric()).flat_map(char::to_lowercase).collect::<String>();
-    let typed = plain(typed);
-    let mut found: Vec<&str> = gas::all()
-        .iter()
-        .map(gas::Gas::designation)
-        .filter(|name| plain(name).trim_start_matches('r').starts_with(typed.trim_start_matches('r')))
-        .collect();
-    found.sort_by_key(|name| name.len());
-    if typed.is_empty() {
-        // Before anything is typed: what is met most often in plant rooms (common practice).
-        found = ["R-22", "R-410A", "R-404A", "R-134a", "R-448A", "R-513A"].into_iter().filter(|name| gas::find(name).is_some()).collect();
-    }
-    found.into_iter().take(MOST_OFFERED).map(Choice::word).collect()
-}
-
-/// The catalogue's own name for a gas.
-///
-/// # Errors
-/// A sentence with the names that come near.
-pub fn gas_named(typed: &str) -> Result<String, String> {
-    match gas::find(typed.trim()) {
-        Some(gas) => Ok(gas.designation().to_owned()),
-        None => Err(say::unknown_gas(typed.trim(), &gas::like(typed.trim()))),
-    }
-}
 
 pub fn categories() -> Vec<Choice> {
     Category::ALL.iter().map(|word| Choice::word(word.name())).collect()
@@ -102,7 +68,7 @@ impl Office {
         } else if form.trimmed("gas").is_empty() {
             Ready::not(say::choose_gas())
         } else if form.changing && form.trimmed("reason").is_empty() {
-            Ready::not(say::say_why())
+            Ready::not(say::why_it_changes())
         } else if form.has_errors() {
             Ready::not(say::amend())
         } else {
@@ -195,13 +161,7 @@ fn read(form: &mut Form, before: Option<&ApplianceFacts>, unit: crate::quantity:
     let refrigerant = form.take("gas", gas_named(form.text("gas")));
     let charge = form.take("full-charge", parse::mass(form.text("full-charge"), unit));
     let installed_on = form.take("installed-on", day(form.text("installed-on")));
-    let room = form.trimmed("room-volume");
-    let room = if room.is_empty() {
-        Some(None)
-    } else {
-        let read = Volume::from_cubic_metres_text(&room).map_err(|error| words::sentence(&error.to_string()));
-        form.take("room-volume", read.map(|_| Some(room.replace(',', "."))))
-    };
+    let room = form.take("room-volume", parse::as_written(form.text("room-volume"), Volume::from_cubic_metres_text));
     let written = charge?;
     // Typed as it was, an exact mass of imported history stays what it was.
     let same =

@@ -1,15 +1,15 @@
 //! The page of one cylinder: what is in it, every limit at its own mark, its
 //! facts, each movement of gas.
 
-use super::cylinders::{rounded, share, water_mass};
-use super::row::Row;
-use super::{Office, units::Units};
+use super::Office;
+use super::cylinders::bar;
 use crate::app::{App, AppError, CylinderStanding};
 use crate::ledger::{Act, CylinderAct, CylinderId, CylinderKind};
-use crate::measure::{CylinderLimit, LimitKind, Rating};
+use crate::measure::{CylinderLimit, Rating};
 use crate::quantity::{Mass, rounded_text};
+use crate::view::bars::rounded;
 use crate::view::format;
-use crate::view::shown::{Fact, MassBar, MassLimit};
+use crate::view::shown::{Fact, Line, MassBar};
 use crate::view::words::office as say;
 
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -28,17 +28,7 @@ pub struct CylinderPage {
     /// Why it must not be filled; empty where it may be.
     pub refused: String,
     pub facts: Vec<Fact>,
-    pub movements: Vec<Row>,
-}
-
-fn short(kind: LimitKind) -> &'static str {
-    match kind {
-        LimitKind::EightyPercent => "80 %",
-        LimitKind::LiquidFull => "55 °C",
-        LimitKind::FillingDensity => "density",
-        LimitKind::FillingRatio => "ADR",
-        LimitKind::Stamped => "stamped",
-    }
+    pub movements: Vec<Line>,
 }
 
 fn refused(cylinder: &CylinderStanding, limit: Option<&CylinderLimit>, today: chrono::NaiveDate) -> String {
@@ -87,7 +77,7 @@ impl Office {
             content: figure(content),
             room: figure(room),
             unit: format::unit(unit).to_owned(),
-            mass: water_mass(cylinder).map(|whole| bar(cylinder, limit.as_ref(), whole, &self.units)),
+            mass: bar(cylinder, limit.as_ref(), unit),
             limits: others
                 .map(|one| {
                     let counts = if one.counts { "" } else { ", does not count here" };
@@ -123,7 +113,7 @@ impl Office {
     }
 
     /// Entries and weighings of the register, the latest first. A row's key is its visit.
-    fn movements(&self, app: &App, cylinder: &CylinderStanding) -> Result<Vec<Row>, AppError> {
+    fn movements(&self, app: &App, cylinder: &CylinderStanding) -> Result<Vec<Line>, AppError> {
         let registers = self.overview.as_ref().map(|overview| &overview.registers);
         let mut rows = Vec::new();
         for version in cylinder.cylinder.versions.all().iter().filter(|version| version.facts.gross.is_some() || version.from.is_some()) {
@@ -135,7 +125,7 @@ impl Office {
             };
             let day = version.from.map_or_else(|| "when first written down".to_owned(), format::full_day);
             let facts = format::commas([day.as_str(), version.reason.as_deref().unwrap_or_default()]);
-            rows.push(((version.from, 0), Row::new("", name, facts).state(weighed, "")));
+            rows.push(((version.from, 0), Line::new("", name, facts).state(weighed, "")));
         }
         for entry in app.store().entries_of_cylinder(cylinder.cylinder.id)? {
             let appliance = registers.and_then(|registers| registers.appliance(entry.line.appliance));
@@ -148,9 +138,9 @@ impl Office {
                 Act::Recover { transfer, .. } => (format!("From {name}, {site}"), format!("+{}", rounded(transfer.mass, self.units.mass))),
                 act => (format::capital(act.name()), String::new()),
             };
-            let row = Row {
+            let row = Line {
                 struck: entry.struck_by.is_some(),
-                ..Row::new(entry.visit.to_string(), name, format::commas([day.trim(), person])).state(state, "")
+                ..Line::new(entry.visit.to_string(), name, format::commas([day.trim(), person])).state(state, "")
             };
             rows.push(((Some(entry.line.at.date), entry.line.position), row));
         }
@@ -163,25 +153,11 @@ impl Office {
             let day = format!("{} {}", format::full_day(entry.at.date), format::clock(entry.at.minute));
             let detail = &entry.detail;
             let facts = format::commas([day.trim(), detail.party.as_str(), detail.paper.as_str(), detail.reason.as_str()]);
-            let row = Row { struck: entry.struck_by.is_some(), ..Row::new("", format::capital(entry.act.name()), facts).state(state, "") };
+            let row =
+                Line { struck: entry.struck_by.is_some(), ..Line::new("", format::capital(entry.act.name()), facts).state(state, "") };
             rows.push(((Some(entry.at.date), entry.position), row));
         }
         rows.sort_by_key(|(at, _)| std::cmp::Reverse(*at));
         Ok(rows.into_iter().map(|(_, row)| row).collect())
-    }
-}
-
-fn bar(cylinder: &CylinderStanding, limit: Option<&CylinderLimit>, whole: f64, units: &Units) -> MassBar {
-    let content = cylinder.balance.content.mass();
-    let binding = limit.and_then(|limit| limit.binding.as_ref());
-    let limits = limit.iter().flat_map(|limit| &limit.limits).filter(|one| one.counts);
-    MassBar {
-        heel: content.and(cylinder.balance.heel).map_or(0.0, |heel| share(heel, whole)),
-        content: content.map_or(0.0, |content| share(content, whole)),
-        limits: limits
-            .map(|one| MassLimit { name: short(one.kind).to_owned(), at: share(one.net, whole), binding: Some(one) == binding })
-            .collect(),
-        words: content.map_or_else(say::not_weighed, |content| rounded(content, units.mass)),
-        binding: binding.map(|one| say::limit(&one.name(), &rounded(one.net, units.mass))).unwrap_or_default(),
     }
 }

@@ -1,16 +1,16 @@
 //! A cylinder added as it is stamped, or its facts changed from today on.
 
-use super::appliance_form::gas_named;
 use super::cylinders::Pane;
 use super::form::last_day;
 use super::plant::FormMsg;
 use super::{Form, Go, Office};
 use crate::app::App;
 use crate::ledger::{CylinderFacts, CylinderId, CylinderKind, GasStatus};
-use crate::quantity::{GaugePressure, MassUnit, QuantityError, Volume, decimal_text};
+use crate::quantity::{GaugePressure, MassUnit};
+use crate::view::gases::gas_named;
+use crate::view::parse;
 use crate::view::shown::{Choice, Ready};
-use crate::view::{parse, words};
-use words::office as say;
+use crate::view::words::office as say;
 
 const FIELDS: [(&str, &str); 5] =
     [("name", "identification"), ("refrigerant", "gas"), ("gas", "gas"), ("tare", "tare"), ("gross", "gross")];
@@ -142,40 +142,19 @@ fn filled(name: &str, facts: &CylinderFacts) -> Form {
     form
 }
 
-/// Litres as `26.2 l`, `26,2`, or a mass of water as `57.8 lb`.
-fn litres(text: &str) -> Result<Option<String>, String> {
-    let text = text.trim();
-    if text.is_empty() {
-        return Ok(None);
-    }
-    if ["kg", "lb"].iter().any(|unit| text.ends_with(unit)) {
-        let mass = parse::mass(text, MassUnit::Kilogram)?.and_then(|weighing| weighing.mass().ok());
-        let volume = mass.and_then(Volume::of_water).and_then(|volume| decimal_text(volume.litres()));
-        return volume.map(Some).ok_or_else(|| say::not_a_pressure(text));
-    }
-    number(text.trim_end_matches(['l', 'L']), Volume::from_litres_text)
-}
-
-/// A number that `read` takes, kept as it was written.
-fn number<T>(text: &str, read: impl Fn(&str) -> Result<T, QuantityError>) -> Result<Option<String>, String> {
-    let text = text.trim();
-    if text.is_empty() {
-        return Ok(None);
-    }
-    read(text).map(|_| Some(text.replace(',', "."))).map_err(|error| words::sentence(&error.to_string()))
-}
-
 fn read(form: &mut Form, unit: MassUnit) -> Option<CylinderFacts> {
+    let bare = |text: &str, unit: &str| text.trim().trim_end_matches(unit).to_owned();
     let gas = form.trimmed("gas");
     let refrigerant = if gas.is_empty() { Some(None) } else { form.take("gas", gas_named(&gas)).map(Some) };
     let tare = form.take("tare", parse::mass(form.text("tare"), unit)).flatten();
     let gross = form.take("gross", parse::mass(form.text("gross"), unit));
-    let capacity = form.take("water-capacity", litres(form.text("water-capacity")));
+    let capacity = form.take("water-capacity", parse::litres(form.text("water-capacity")));
     let requalify_by = form.take("requalify-by", last_day(form.text("requalify-by")));
     let stamped = form.take("stamped-maximum", parse::mass(form.text("stamped-maximum"), unit));
-    let service =
-        form.take("service-pressure", number(form.text("service-pressure").trim().trim_end_matches("psig"), GaugePressure::from_psi_text));
-    let test = form.take("test-pressure", number(form.text("test-pressure").trim().trim_end_matches("bar"), GaugePressure::from_bar_text));
+    let service = parse::as_written(&bare(form.text("service-pressure"), "psig"), GaugePressure::from_psi_text);
+    let service = form.take("service-pressure", service);
+    let test = parse::as_written(&bare(form.text("test-pressure"), "bar"), GaugePressure::from_bar_text);
+    let test = form.take("test-pressure", test);
     let tare_written = tare?;
     let (gross_written, stamped) = (gross?, stamped?);
     Some(CylinderFacts {

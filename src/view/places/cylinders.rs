@@ -2,13 +2,13 @@
 
 use super::cylinder::CylinderPage;
 use super::plant::{FormMsg, fits};
-use super::rates::number;
-use super::row::{Bar, Row};
 use super::{Form, Go, Office, Place, id};
 use crate::app::{App, CylinderStanding, LimitRules};
 use crate::ledger::{CylinderId, CylinderKind};
 use crate::measure::CylinderLimit;
 use crate::quantity::{Mass, MassUnit, parse_decimal};
+use crate::view::bars::{mass_bar, rounded, small_mass_bar};
+use crate::view::shown::{Line, MassBar};
 use crate::view::{format, words};
 use std::collections::BTreeMap;
 use words::office as say;
@@ -59,30 +59,16 @@ impl State {
 pub struct Page {
     pub summary: String,
     pub search: String,
-    pub lines: Vec<Row>,
+    pub lines: Vec<Line>,
     pub empty_words: String,
     pub nothing_yet: bool,
     pub chosen: String,
 }
 
-/// The mass of water the cylinder holds: where its bar ends.
-pub fn water_mass(cylinder: &CylinderStanding) -> Option<f64> {
+/// The bar of a cylinder; `None` where its water capacity is not known.
+pub fn bar(cylinder: &CylinderStanding, limit: Option<&CylinderLimit>, unit: MassUnit) -> Option<MassBar> {
     let litres = cylinder.facts.water_capacity_l.as_ref().and_then(|text| parse_decimal(text).ok())?;
-    Some(number(litres)).filter(|litres| *litres > 0.0)
-}
-
-/// Drawing only: a mass as a share of the bar.
-pub fn share(mass: Mass, whole: f64) -> f32 {
-    (number(mass.kg()) / whole).clamp(0.0, 1.0) as f32
-}
-
-/// A mass at the two decimals of a list.
-pub fn rounded(mass: Mass, unit: MassUnit) -> String {
-    if unit == MassUnit::PoundOunce {
-        return format::mass(mass, unit);
-    }
-    let places = if unit == MassUnit::Gram { 0 } else { 2 };
-    format!("{} {}", crate::quantity::rounded_text(mass.in_unit(unit), places), format::unit(unit)).replace('-', "\u{2212}")
+    Some(mass_bar(cylinder.balance.content.mass(), cylinder.balance.heel, Some(litres), limit, unit))
 }
 
 impl Office {
@@ -143,7 +129,7 @@ impl Office {
             return page;
         };
         page.nothing_yet = overview.registers.cylinders.is_empty();
-        page.empty_words = if page.nothing_yet { say::cylinders_empty() } else { say::no_cylinder_fits(self.cylinders.search.trim()) };
+        page.empty_words = if page.nothing_yet { say::cylinders_empty() } else { say::no_cylinder_found(self.cylinders.search.trim()) };
         if let Pane::Cylinder(cylinder) = self.cylinders.pane {
             page.chosen = cylinder.to_string();
         }
@@ -160,7 +146,7 @@ impl Office {
                 Some(sum) if sum.is_positive() => rounded(sum, self.units.mass),
                 _ => cylinders.len().to_string(),
             };
-            page.lines.push(Row::group(name, state));
+            page.lines.push(Line::group(name, state));
             page.lines.extend(cylinders.into_iter().map(|cylinder| self.cylinder_row(cylinder)));
         }
         page
@@ -172,12 +158,13 @@ impl Office {
         fits(&self.cylinders.search, [cylinder.cylinder.name.as_str(), gas, status, &cylinder.facts.location, &cylinder.facts.owner])
     }
 
-    fn cylinder_row(&self, cylinder: &CylinderStanding) -> Row {
+    fn cylinder_row(&self, cylinder: &CylinderStanding) -> Line {
         let facts = &cylinder.facts;
         let status = cylinder.balance.status.map_or(facts.kind.name(), |status| status.name());
-        let row = Row::new(cylinder.cylinder.id.to_string(), &cylinder.cylinder.name, format::commas([status, &facts.location]));
+        let row = Line::new(cylinder.cylinder.id.to_string(), &cylinder.cylinder.name, format::commas([status, &facts.location]));
         let content = cylinder.balance.content.mass();
-        let binding = self.limit_of(cylinder).and_then(|limit| limit.binding);
+        let limit = self.limit_of(cylinder);
+        let binding = limit.as_ref().and_then(|limit| limit.binding.as_ref());
         let aside = if facts.scrapped.is_some() {
             say::scrapped()
         } else if self.is_overdue(cylinder) {
@@ -185,15 +172,12 @@ impl Office {
         } else if facts.kind == CylinderKind::NonRefillable {
             CylinderKind::NonRefillable.name().to_owned()
         } else {
-            let room = binding.as_ref().zip(content).map(|(limit, content)| (limit.net - content).max(Mass::ZERO));
+            let room = binding.zip(content).map(|(limit, content)| (limit.net - content).max(Mass::ZERO));
             room.map(|room| say::gas_left(&rounded(room, self.units.mass))).unwrap_or_default()
         };
-        let state = content.map_or_else(say::not_weighed, |content| rounded(content, self.units.mass));
-        let bar = water_mass(cylinder).map(|whole| Bar::Mass {
-            fill: content.map_or(0.0, |content| share(content, whole)),
-            notch: binding.map_or(0.0, |limit| share(limit.net, whole)),
-        });
-        Row { bar, ..row.state(state, aside) }
+        let state = content.map_or_else(words::not_weighed, |content| rounded(content, self.units.mass));
+        let bar = bar(cylinder, limit.as_ref(), self.units.mass).map(|bar| small_mass_bar(&bar));
+        Line { bar, ..row.state(state, aside) }
     }
 }
 

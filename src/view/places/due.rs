@@ -2,12 +2,11 @@
 //! open leaks, what was met lately; the open visits on top.
 
 use super::overview::Judged;
-use super::row::Row;
 use super::{First, Go, Office, Place, id, plant};
 use crate::app::App;
 use crate::ledger::{OpenLeak, VisitId};
-use crate::rules::{self, Duty, DutyState};
-use crate::view::shown::{Choice, Fact, Verdict};
+use crate::rules::{self, Dated as _, Duty, DutyKind, DutyState};
+use crate::view::shown::{Choice, Fact, Line, Verdict};
 use crate::view::{format, words};
 use chrono::{Days, NaiveDate};
 use words::office as say;
@@ -43,10 +42,10 @@ pub enum Msg {
 pub struct Page {
     pub today: String,
     pub summary: String,
-    pub visits: Vec<Row>,
+    pub visits: Vec<Line>,
     pub horizons: Vec<Choice>,
     pub horizon: String,
-    pub lines: Vec<Row>,
+    pub lines: Vec<Line>,
     pub empty_words: String,
     /// The one large action: begins work, or on a first start the next thing needed.
     pub begin_words: String,
@@ -81,9 +80,9 @@ fn subject(judged: &Judged) -> String {
 }
 
 /// A duty's row, apart from its facts.
-pub fn duty_row(judged: &Judged, duty: &Duty, today: NaiveDate, soon: NaiveDate) -> Row {
-    let row = Row::new(duty_key(judged, duty), say::duty_short(duty.kind), "");
-    let day = |due: Option<NaiveDate>| due.map_or_else(say::no_day_set, |due| format::day(due, today));
+pub fn duty_row(judged: &Judged, duty: &Duty, today: NaiveDate, soon: NaiveDate) -> Line {
+    let row = Line::new(duty_key(judged, duty), say::duty_short(duty.kind), "");
+    let day = |due: Option<NaiveDate>| due.map_or_else(|| no_day(duty), |due| format::day(due, today));
     match duty.state(judged.on) {
         DutyState::Late => {
             row.state(day(duty.due), duty.due.map(|due| say::until(due, judged.on)).unwrap_or_default()).judged(Verdict::Over)
@@ -93,17 +92,39 @@ pub fn duty_row(judged: &Judged, duty: &Duty, today: NaiveDate, soon: NaiveDate)
             let row = row.state(day(duty.due), duty.due.map(|due| say::until(due, judged.on)).unwrap_or_default());
             row.judged(if near { Verdict::At } else { Verdict::None })
         }
-        DutyState::Met => row.state(say::met(), day(duty.met_on)).judged(Verdict::Under),
-        DutyState::MetLate => row.state(say::met_late(), day(duty.met_on)).judged(Verdict::Under),
-        DutyState::Suspended => row.state(say::mothballed(), "").judged(Verdict::None),
+        DutyState::Met => row.state(DutyState::Met.name(), day(duty.met_on)).judged(Verdict::Under),
+        DutyState::MetLate => row.state(DutyState::MetLate.name(), day(duty.met_on)).judged(Verdict::Under),
+        DutyState::Suspended => row.state(words::suspended(), "").judged(Verdict::None),
         DutyState::Ended => row.state(DutyState::Ended.name(), day(duty.ended_on)).judged(Verdict::None),
     }
 }
 
-pub fn leak_row(judged: &Judged, leak: &OpenLeak, today: NaiveDate) -> Row {
-    let place = if leak.place.is_empty() { say::place_unknown() } else { format::capital(&leak.place) };
-    let state = if leak.state.is_empty() { say::open_leak() } else { leak.state.clone() };
-    Row::new(leak_key(judged, leak), say::leak(), place).state(state, say::since(&format::day(leak.since, today)))
+/// Where a duty has no due day: that it is without undue delay, or that its day is not known yet.
+fn no_day(duty: &Duty) -> String {
+    if duty.kind == DutyKind::RepairOfFoundLeak { words::without_undue_delay() } else { words::no_day_yet() }
+}
+
+/// `repair 2 Apr`, `repair late`.
+pub fn by_words(duty: &Duty, on: NaiveDate, today: NaiveDate) -> String {
+    let name = say::duty_short(duty.kind).to_lowercase();
+    match (duty.state(on), duty.due) {
+        (DutyState::Late, _) => format!("{name} late"),
+        (_, Some(due)) => format!("{name} {}", format::day(due, today)),
+        (_, None) => format!("{name} {}", no_day(duty)),
+    }
+}
+
+pub fn leak_row(judged: &Judged, leak: &OpenLeak, today: NaiveDate) -> Line {
+    let place = format::capital(&words::leak_place(&leak.place));
+    Line::new(leak_key(judged, leak), say::leak(), place)
+        .state(words::leak_state(&leak.state), words::since(&format::day(leak.since, today)))
+}
+
+/// The share of the full charge that a duty's row in its rulebook names.
+fn share_asked(duty: &Duty) -> String {
+    let rows = rules::rulebook(&duty.rulebook).map(|book| book.duties.as_slice()).unwrap_or_default();
+    let row = rows.iter().find(|row| row.duty == duty.kind && row.holds_on(duty.from));
+    row.and_then(|row| row.percent).map(format::trigger).unwrap_or_default()
 }
 
 impl Office {
@@ -158,7 +179,7 @@ impl Office {
     fn duty_item(&self, judged: &Judged, index: usize) -> Item {
         let duty = &judged.duties[index];
         let row = duty_row(judged, duty, self.today, self.soon());
-        let mut facts = vec![Fact::new("due", duty.due.map_or_else(say::without_undue_delay, format::full_day))];
+        let mut facts = vec![Fact::new("due", duty.due.map_or_else(|| no_day(duty), format::full_day))];
         let from = judged.origins.get(index).copied().flatten();
         facts.push(Fact::new(
             "from",
@@ -168,14 +189,14 @@ impl Office {
             facts.push(Fact::new("met on", format::full_day(met)));
         }
         if let Some(rate) = judged.rate_behind(duty) {
-            facts.push(Fact::new("leak rate then", format!("{} {}", format::percent(rate.percent), say::percent_a_year())));
+            facts.push(Fact::new("leak rate then", format!("{} {}", format::percent(rate.percent), words::percent_a_year())));
             facts.push(Fact::new("trigger", format::trigger(rate.trigger)));
         }
         let title = rules::rulebook(&duty.rulebook).map_or_else(|| duty.rulebook.clone(), |book| book.title.clone());
         facts.push(Fact::new("rulebook", title));
         let word = match duty.state(judged.on) {
             DutyState::Late | DutyState::Open if !row.aside.is_empty() => row.aside,
-            DutyState::Open => say::without_undue_delay(),
+            DutyState::Open => no_day(duty),
             _ => row.state,
         };
         Item {
@@ -184,7 +205,7 @@ impl Office {
             verdict: row.verdict.unwrap_or_default(),
             word,
             facts,
-            text: say::duty_asks(duty.kind).to_owned(),
+            text: say::duty_asks(duty.kind, &share_asked(duty)),
             source: duty.source.clone(),
         }
     }
@@ -211,9 +232,9 @@ impl Office {
             .iter()
             .map(|open| {
                 let since =
-                    say::since(&format::moment(crate::ledger::Moment { date: open.visit.date, minute: open.visit.minute }, self.today));
+                    words::since(&format::moment(crate::ledger::Moment { date: open.visit.date, minute: open.visit.minute }, self.today));
                 let facts = format::commas([since.as_str(), &open.appliances.join(", ")]);
-                Row::new(open.visit.id.to_string(), &open.site, facts).state(say::entries(open.entries), "")
+                Line::new(open.visit.id.to_string(), &open.site, facts).state(words::entries(open.entries), "")
             })
             .collect();
         let groups = self.groups(overview.appliances.as_slice());
@@ -236,8 +257,8 @@ impl Office {
     }
 
     /// A leak's row among those of other appliances.
-    fn leak_at(&self, judged: &Judged, leak: &OpenLeak) -> Row {
-        Row { name: say::leak_of(&judged.appliance.name), ..leak_row(judged, leak, self.today) }
+    fn leak_at(&self, judged: &Judged, leak: &OpenLeak) -> Line {
+        Line { name: say::leak_of(&judged.appliance.name), ..leak_row(judged, leak, self.today) }
     }
 
     fn groups(&self, appliances: &[Judged]) -> Groups {
@@ -245,7 +266,7 @@ impl Office {
         let mut groups = Groups::default();
         for judged in appliances {
             for duty in &judged.duties {
-                let row = Row { facts: subject(judged), ..duty_row(judged, duty, self.today, soon) };
+                let row = Line { facts: subject(judged), ..duty_row(judged, duty, self.today, soon) };
                 match duty.state(judged.on) {
                     DutyState::Late => groups.late.push((duty.due, row)),
                     DutyState::Open if duty.due.is_none_or(|due| due <= soon) => groups.soon.push((duty.due, row)),
@@ -265,7 +286,7 @@ impl Office {
     }
 }
 
-type Dated = Vec<(Option<NaiveDate>, Row)>;
+type Dated = Vec<(Option<NaiveDate>, Line)>;
 
 #[derive(Default)]
 struct Groups {
@@ -278,16 +299,16 @@ struct Groups {
 }
 
 impl Groups {
-    fn rows(mut self, soon: &str) -> Vec<Row> {
+    fn rows(mut self, soon: &str) -> Vec<Line> {
         let mut rows = Vec::new();
         // What was met last stands first.
         self.met.sort_by_key(|(day, _)| std::cmp::Reverse(*day));
         let named = [
             (say::late(), self.late, true),
-            (say::by_day(soon), self.soon, true),
+            (format::capital(&words::by_day(soon)), self.soon, true),
             (say::open_leaks(), self.leaks, true),
             (say::later(), self.later, true),
-            (say::suspended(), self.suspended, true),
+            (format::capital(&words::suspended()), self.suspended, true),
             (say::met_lately(), self.met, false),
         ];
         for (name, mut group, sort) in named {
@@ -297,7 +318,7 @@ impl Groups {
             if sort {
                 group.sort_by_key(|(day, _)| *day);
             }
-            rows.push(Row::group(name, group.len().to_string()));
+            rows.push(Line::group(name, group.len().to_string()));
             rows.extend(group.into_iter().map(|(_, row)| row));
         }
         rows

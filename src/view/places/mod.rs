@@ -16,24 +16,22 @@ mod overview;
 pub mod plant;
 mod rates;
 pub mod record;
-mod row;
 pub mod setup;
 pub mod setup_forms;
 mod site;
 pub mod site_form;
 #[cfg(test)]
 mod tests;
-mod units;
 
 pub use form::Form;
 pub use overview::{Judged, LifeState, OpenVisit, Overview};
 pub use rates::{RateHistory, RateStep};
-pub use row::{Bar, Row};
 pub use site::SitePage;
-pub use units::{Look, Units};
 
 use crate::app::{App, AppError};
+pub use crate::app::{Look, Units};
 use crate::ledger::{ApplianceId, EntryId, SiteId, VisitId};
+use crate::view::shown::Message;
 use crate::view::words;
 use chrono::NaiveDate;
 use std::path::{Path, PathBuf};
@@ -86,13 +84,6 @@ pub enum Go {
     At(Place),
 }
 
-/// A line that the program speaks in.
-#[derive(Debug, Clone, PartialEq, Eq)]
-pub struct Message {
-    pub text: String,
-    pub grave: bool,
-}
-
 /// The next thing that a new user needs before the first visit.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum First {
@@ -133,7 +124,7 @@ impl Office {
         Ok(Self {
             place: Place::Due,
             overview: None,
-            units: Units::read(app)?,
+            units: app.units()?,
             message: None,
             due: due::State::default(),
             plant: plant::State::default(),
@@ -203,11 +194,11 @@ impl Office {
     }
 
     pub(super) fn fail(&mut self, error: &dyn std::fmt::Display) {
-        self.message = Some(Message { text: words::sentence(&error.to_string()), grave: true });
+        self.message = Some(Message::grave(words::sentence(&error.to_string())));
     }
 
     pub(super) fn say(&mut self, text: String) {
-        self.message = Some(Message { text, grave: false });
+        self.message = Some(Message::told(text));
     }
 
     /// Says what went wrong at the field it went wrong with, where the form has that field.

@@ -3,12 +3,12 @@
 use super::appliance::AppliancePage;
 use super::overview::{Judged, LifeState, Overview};
 use super::record::RecordPage;
-use super::row::Row;
 use super::site::SitePage;
-use super::{Form, Go, Office, Place, due, id, rates};
+use super::{Form, Go, Office, Place, due, id};
 use crate::app::App;
 use crate::ledger::{ApplianceId, EntryId, SiteId, VisitId};
-use crate::view::shown::Verdict;
+use crate::view::bars::{small_rate_bar, verdict};
+use crate::view::shown::{Line, Verdict};
 use crate::view::{format, words};
 use words::office as say;
 
@@ -96,7 +96,7 @@ impl State {
 pub struct Page {
     pub summary: String,
     pub search: String,
-    pub lines: Vec<Row>,
+    pub lines: Vec<Line>,
     pub empty_words: String,
     pub nothing_yet: bool,
     pub chosen: String,
@@ -108,15 +108,15 @@ pub fn gas_and_charge(judged: &Judged) -> String {
 }
 
 /// An appliance's row: identification, gas and full charge, the leak-rate bar, the next duty.
-pub fn appliance_row(judged: &Judged, today: chrono::NaiveDate) -> Row {
-    let row = Row::new(judged.appliance.id.to_string(), &judged.appliance.name, gas_and_charge(judged));
-    let next = judged.next().map(|duty| say::duty_by(duty, judged.on, today)).unwrap_or_default();
+pub fn appliance_row(judged: &Judged, today: chrono::NaiveDate) -> Line {
+    let row = Line::new(judged.appliance.id.to_string(), &judged.appliance.name, gas_and_charge(judged));
+    let next = judged.next().map(|duty| due::by_words(duty, judged.on, today)).unwrap_or_default();
     match (judged.state, judged.rate()) {
         (LifeState::Retired, _) => row.state(say::retired(), "").judged(Verdict::None),
         (LifeState::Mothballed, _) => row.state(say::mothballed(), next).judged(Verdict::None),
         (LifeState::InUse, Some(rate)) => {
-            let row = row.state(format!("{} %", format::percent(rate.percent)), next).judged(rates::verdict(rate.verdict));
-            Row { bar: Some(rates::row_bar(rate)), ..row }
+            let row = row.state(format!("{} %", format::percent(rate.percent)), next).judged(verdict(rate.verdict));
+            Line { bar: Some(small_rate_bar(rate)), ..row }
         }
         (LifeState::InUse, None) => row.state(say::none_due(), next).judged(Verdict::None),
     }
@@ -253,11 +253,11 @@ impl Office {
             let facts = site.versions.on(self.today).unwrap_or_else(|| site.versions.latest());
             let whole = fits(&self.plant.search, [site.name.as_str()]);
             let here: Vec<&Judged> = overview.appliances.iter().filter(|judged| judged.site.id == site.id).collect();
-            let rows: Vec<Row> =
+            let rows: Vec<Line> =
                 here.iter().filter(|judged| whole || self.is_searched(judged)).map(|judged| appliance_row(judged, self.today)).collect();
             if whole || !rows.is_empty() {
-                let heading = Row::new(site.id.to_string(), &site.name, &facts.address).state(here.len().to_string(), "");
-                page.lines.push(Row { heading: true, ..heading });
+                let heading = Line::new(site.id.to_string(), &site.name, &facts.address).state(here.len().to_string(), "");
+                page.lines.push(Line { heading: true, ..heading });
                 page.lines.extend(rows);
             }
         }

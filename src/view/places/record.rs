@@ -2,12 +2,12 @@
 
 use super::appliance::{short_print, told};
 use super::plant::Pane;
-use super::row::Row;
 use super::{Go, Office};
 use crate::app::{App, AppError, file_away};
 use crate::ledger::{Act, ApplianceId, Counterpart, VisitId};
 use crate::view::format;
-use crate::view::shown::Fact;
+use crate::view::shown::{Fact, Line};
+use crate::view::words;
 use crate::view::words::office as say;
 use std::path::PathBuf;
 
@@ -18,7 +18,7 @@ pub struct RecordPage {
     pub file: String,
     pub folder: String,
     pub facts: Vec<Fact>,
-    pub entries: Vec<Row>,
+    pub entries: Vec<Line>,
     pub corrections: Vec<Fact>,
 }
 
@@ -58,14 +58,13 @@ impl Office {
             }
             let state = match &entry.line.act {
                 Act::Charge { transfer, .. } | Act::Recover { transfer, .. } => format::mass(transfer.mass, self.units.mass),
-                Act::Repair { temporary: true } => "for now".to_owned(),
-                Act::Repair { temporary: false } => "for good".to_owned(),
+                Act::Repair { temporary: true } => words::temporary(),
                 _ => String::new(),
             };
-            rows.push(Row {
+            rows.push(Line {
                 time: format::clock(entry.line.at.minute),
                 struck: entry.struck_by.is_some(),
-                ..Row::new(entry.line.entry.to_string(), short_act(&entry.line.act), about.join(", ")).state(state, "")
+                ..Line::new(entry.line.entry.to_string(), short_act(&entry.line.act), about.join(", ")).state(state, "")
             });
             if let Some(by) = entry.struck_by
                 && let Some(correction) = app.store().entry(by)?
@@ -77,7 +76,7 @@ impl Office {
             }
         }
         // Named as its print is; a name that paper cannot show says so instead.
-        let file = match app.print_record(visit.id, app.paper_set()) {
+        let file = match app.print_record(visit.id, None) {
             Ok(printed) => printed.file_name,
             Err(error) => error.to_string(),
         };
@@ -97,10 +96,10 @@ impl Office {
         let (Some(page), Pane::Record(visit, _)) = (&self.plant.record, self.plant.pane) else { return Vec::new() };
         let folder = PathBuf::from(&page.folder);
         let file = folder.join(&page.file);
-        let written = match app.print_record(visit, app.paper_set()) {
+        let written = match app.print_record(visit, None) {
             // The same bytes where nothing came since; else with what came.
             Ok(printed) => {
-                file_away(&file, &printed.bytes).map_err(|error| say::cannot_write(&file.display().to_string(), &error.to_string()))
+                file_away(&file, &printed.bytes).map_err(|error| words::cannot_write(&file.display().to_string(), &error.to_string()))
             }
             Err(error) => Err(error.to_string()),
         };
@@ -120,7 +119,7 @@ fn short_act(act: &Act) -> String {
         Act::Test { kind: crate::ledger::TestKind::InitialVerification, .. } => "Initial test".to_owned(),
         Act::Test { kind: crate::ledger::TestKind::FollowUpVerification, .. } => "Follow-up test".to_owned(),
         Act::Test { kind: crate::ledger::TestKind::LeakInspection, .. } => "Inspection".to_owned(),
-        Act::DetectionSystemCheck => "Detector check".to_owned(),
+        Act::DetectionSystemCheck => "Detection system check".to_owned(),
         act => format::capital(act.name()),
     }
 }

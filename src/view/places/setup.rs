@@ -2,21 +2,18 @@
 //! and where the store lies.
 
 use super::plant::FormMsg;
-use super::row::Row;
 use super::site::titles;
-use super::units::{APPEARANCE, Look, MASS, PAPER, PRESSURE, TEMPERATURE, TEXT_SIZE, VACUUM};
 use super::{Form, Go, Office, Place, id};
-use crate::app::App;
-use crate::ledger::{Instrument, InstrumentId, InstrumentKind, PersonId, SiteId, VisitState};
-use crate::quantity::MassUnit;
+use crate::app::{App, Appearance, Look, Setting, paper_name};
+use crate::ledger::{Instrument, InstrumentId, InstrumentKind, PersonId, SiteFacts, SiteId, VisitState};
+use crate::print::Paper;
+use crate::quantity::{MassUnit, PressureUnit, TemperatureUnit, VacuumUnit};
 use crate::rules::known;
 use crate::store::VisitFilter;
 use crate::view::format;
-use crate::view::shown::{Choice, Fact, Verdict};
+use crate::view::shown::{Choice, Fact, Line, Verdict};
 use crate::view::words::{self, office as say};
 use chrono::NaiveDate;
-
-const LAST_BACKUP: &str = "last backup";
 
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
 pub enum Pane {
@@ -55,9 +52,9 @@ pub enum Msg {
     Company(FormMsg),
     Person(FormMsg),
     Instrument(FormMsg),
-    /// `mass`, `pressure`, `vacuum`, `temperature` or `paper`, and what is chosen.
-    Unit(String, String),
-    Appearance(String),
+    /// What is set, and the key that was chosen.
+    Set(Setting, String),
+    Appearance(Appearance),
     /// In percent.
     TextSize(u32),
     BackUp,
@@ -66,7 +63,7 @@ pub enum Msg {
 }
 
 #[derive(Debug, Clone, Default, PartialEq)]
-pub struct Line {
+pub struct SetupLine {
     pub pane: Pane,
     pub name: String,
     pub facts: String,
@@ -77,7 +74,7 @@ pub struct Line {
 #[derive(Debug, Clone, Default, PartialEq)]
 pub struct Register {
     pub title: String,
-    pub lines: Vec<Row>,
+    pub lines: Vec<Line>,
     pub empty: String,
     pub add: String,
 }
@@ -107,6 +104,26 @@ pub fn mass_units() -> Vec<Choice> {
         .iter()
         .map(|unit| if *unit == MassUnit::PoundOunce { Choice::new(unit.name(), "lb and oz", "") } else { Choice::word(unit.name()) })
         .collect()
+}
+
+pub fn pressure_units() -> Vec<Choice> {
+    PressureUnit::ALL.iter().map(|unit| Choice::new(unit.name(), say::gauge(unit.name()), "")).collect()
+}
+
+pub fn vacuum_units() -> Vec<Choice> {
+    VacuumUnit::ALL.iter().map(|unit| Choice::word(unit.name())).collect()
+}
+
+pub fn temperature_units() -> Vec<Choice> {
+    TemperatureUnit::ALL.iter().map(|unit| Choice::word(unit.name())).collect()
+}
+
+pub fn papers() -> Vec<Choice> {
+    let named = [Paper::A4, Paper::Letter].map(|paper| {
+        let key = paper_name(Some(paper));
+        Choice::new(key, format::capital(key), "")
+    });
+    [Choice::new(paper_name(None), say::paper_by_law(), "")].into_iter().chain(named).collect()
 }
 
 /// The titles of every rulebook and the tables of gas values, for About.
@@ -149,9 +166,9 @@ impl Office {
             Msg::Company(msg) => return self.update_company_form(app, msg),
             Msg::Person(msg) => return self.update_person_form(app, msg),
             Msg::Instrument(msg) => return self.update_instrument_form(app, msg),
-            Msg::Unit(what, key) => return self.choose_unit(app, &what, &key),
-            Msg::Appearance(word) => return self.set_look(app, APPEARANCE, &word),
-            Msg::TextSize(percent) => return self.set_look(app, TEXT_SIZE, &Look::factor(percent)),
+            Msg::Set(setting, key) => self.choose_unit(app, setting, &key),
+            Msg::Appearance(appearance) => return self.set_look(app, Setting::Appearance, appearance.name()),
+            Msg::TextSize(percent) => return self.set_look(app, Setting::TextSize, &percent.to_string()),
             Msg::BackUp => self.back_up(app),
             Msg::Check => self.check(app),
             Msg::ShowFolder => {
@@ -162,17 +179,8 @@ impl Office {
         Vec::new()
     }
 
-    fn choose_unit(&mut self, app: &App, what: &str, key: &str) -> Vec<Go> {
-        let setting = match what {
-            "mass" => MASS,
-            "pressure" => PRESSURE,
-            "vacuum" => VACUUM,
-            "temperature" => TEMPERATURE,
-            "paper" => PAPER,
-            _ => return Vec::new(),
-        };
-        let kept = app.set(setting, key).and_then(|()| super::Units::read(app));
-        match kept {
+    fn choose_unit(&mut self, app: &App, setting: Setting, key: &str) {
+        match app.set(setting, key).and_then(|()| app.units()) {
             Ok(units) => {
                 self.units = units;
                 self.refresh_cylinders(app);
@@ -180,10 +188,9 @@ impl Office {
             }
             Err(error) => self.fail(&error),
         }
-        Vec::new()
     }
 
-    fn set_look(&mut self, app: &App, setting: &str, value: &str) -> Vec<Go> {
+    fn set_look(&mut self, app: &App, setting: Setting, value: &str) -> Vec<Go> {
         match app.set(setting, value).and_then(|()| Look::read(app)) {
             Ok(look) => vec![Go::Appear(look)],
             Err(error) => {
@@ -194,19 +201,19 @@ impl Office {
     }
 
     fn now_text(&self, app: &App) -> String {
-        let at = app.moment_in(app.zone_of(&device_zone()));
+        let at = app.moment_in(device_zone(app));
         format!("{} {}", format::full_day(at.date), format::clock(at.minute))
     }
 
     fn back_up(&mut self, app: &App) {
-        let at = app.moment_in(app.zone_of(&device_zone()));
+        let at = app.moment_in(device_zone(app));
         let clock = format::clock(at.minute).replace(':', "");
         let folder = self.documents.join("Backups");
         let target = folder.join(format!("bubblepoint {} {clock}.db", at.date));
         let done = std::fs::create_dir_all(&folder)
-            .map_err(|error| say::cannot_write(&folder.display().to_string(), &error.to_string()))
+            .map_err(|error| words::cannot_write(&folder.display().to_string(), &error.to_string()))
             .and_then(|()| app.store().backup(&target).map_err(|error| error.to_string()))
-            .and_then(|()| app.set(LAST_BACKUP, &at.date.to_string()).map_err(|error| error.to_string()));
+            .and_then(|()| app.set(Setting::LastBackup, &at.date.to_string()).map_err(|error| error.to_string()));
         self.refresh_store_facts(app);
         (self.setup.store.answer, self.setup.store.grave) = match done {
             Ok(()) => (say::backed_up(&target.display().to_string()), false),
@@ -232,7 +239,7 @@ impl Office {
         let size = path.and_then(|path| std::fs::metadata(path).ok()).map(|file| size_text(file.len()));
         let closed = store.visits(&VisitFilter { state: Some(VisitState::Closed), ..VisitFilter::default() });
         let entries = store.last_position().map(|position| position.to_string());
-        let backup = store.setting(LAST_BACKUP).ok().flatten().and_then(|day| day.parse::<NaiveDate>().ok());
+        let backup = app.setting(Setting::LastBackup).ok().flatten().and_then(|day| day.parse::<NaiveDate>().ok());
         self.setup.store.path = path.map_or_else(say::only_in_memory, |path| path.display().to_string());
         self.setup.store.facts = vec![
             Fact::new("size", size.unwrap_or_else(say::only_in_memory)),
@@ -242,7 +249,7 @@ impl Office {
         ];
     }
 
-    pub fn setup_lines(&self, look: &Look) -> Vec<Line> {
+    pub fn setup_lines(&self, look: &Look) -> Vec<SetupLine> {
         let registers = self.overview.as_ref().map(|overview| &overview.registers);
         let company = registers.map(|registers| registers.company().name).unwrap_or_default();
         let people = registers.map(|registers| registers.people.as_slice()).unwrap_or_default();
@@ -251,7 +258,7 @@ impl Office {
         let late = instruments.iter().filter(|instrument| self.check_late(instrument)).count();
         let sites = registers.map_or(0, |registers| registers.sites.len());
         let or_empty = |text: String| if text.is_empty() { words::to_complete() } else { text };
-        let line = |pane, name: &str, facts: String, state: String| Line { pane, name: name.to_owned(), facts, state };
+        let line = |pane, name: &str, facts: String, state: String| SetupLine { pane, name: name.to_owned(), facts, state };
         let number = |count: usize| if count == 0 { String::new() } else { count.to_string() };
         let late = if late == 0 { number(instruments.len()) } else { format!("{late} overdue") };
         let unit =
@@ -266,8 +273,8 @@ impl Office {
                 "by site".to_owned(),
                 if sites == 0 { String::new() } else { say::count(sites, "site", "sites") },
             ),
-            line(Pane::Units, "Units", format!("{unit}, {} gauge, °{}", self.units.pressure, self.units.temperature), String::new()),
-            line(Pane::Appearance, "Appearance", format!("{}, text {} %", look.appearance, look.text_size), String::new()),
+            line(Pane::Units, "Units", say::units(&unit, self.units.pressure.name(), self.units.temperature.name()), String::new()),
+            line(Pane::Appearance, "Appearance", say::look(look.appearance.name(), look.text_size), String::new()),
             line(Pane::Store, "Store", "backup and check".to_owned(), String::new()),
             line(Pane::About, "About", "cautions and limits, licences".to_owned(), String::new()),
         ]
@@ -291,7 +298,7 @@ impl Office {
                 let row = |site: &crate::ledger::Site| {
                     let facts = site.versions.on(self.today).unwrap_or_else(|| site.versions.latest());
                     let listed = titles(&facts.rulebooks);
-                    Row::new(site.id.to_string(), &site.name, if listed.is_empty() { "no rulebook".to_owned() } else { listed })
+                    Line::new(site.id.to_string(), &site.name, if listed.is_empty() { "no rulebook".to_owned() } else { listed })
                 };
                 Register {
                     title: "Rulebooks".to_owned(),
@@ -309,9 +316,9 @@ impl Office {
         }
     }
 
-    fn person_row(&self, person: &crate::ledger::Person) -> Row {
+    fn person_row(&self, person: &crate::ledger::Person) -> Line {
         let facts = format::commas([person.certificate_kind.as_str(), &person.certificate]);
-        let row = Row::new(person.id.to_string(), &person.name, if facts.is_empty() { words::to_complete() } else { facts });
+        let row = Line::new(person.id.to_string(), &person.name, if facts.is_empty() { words::to_complete() } else { facts });
         match (person.valid_from, person.valid_to) {
             (_, Some(to)) if to < self.today => row.state("expired", format::day(to, self.today)).judged(Verdict::Over),
             (Some(from), _) if from > self.today => row.state("not yet", format::day(from, self.today)),
@@ -321,13 +328,13 @@ impl Office {
         }
     }
 
-    fn instrument_row(&self, instrument: &Instrument) -> Row {
+    fn instrument_row(&self, instrument: &Instrument) -> Line {
         let division = instrument.division.as_ref().map(|division| format!("division {}", division.text())).unwrap_or_default();
         let holds = instrument.holds.as_ref().map(|holds| format!("holds {}", holds.text())).unwrap_or_default();
         let due = instrument.check_due.filter(|due| *due >= self.today);
         let due = due.map(|due| say::check_due(&format::day(due, self.today))).unwrap_or_default();
         let facts = format::commas([kind_name(instrument.kind), &division, &holds, &due]);
-        let row = Row::new(instrument.id.to_string(), &instrument.name, facts);
+        let row = Line::new(instrument.id.to_string(), &instrument.name, facts);
         match instrument.check_due {
             Some(late) if late < self.today => row.state("overdue", format::day(late, self.today)).judged(Verdict::Over),
             _ => row,
@@ -335,16 +342,9 @@ impl Office {
     }
 }
 
-/// A site's facts that name no zone: the device's own is meant.
-fn device_zone() -> crate::ledger::SiteFacts {
-    crate::ledger::SiteFacts {
-        rulebooks: Vec::new(),
-        owner: String::new(),
-        operator: String::new(),
-        address: String::new(),
-        rate_method: crate::ledger::RateMethod::Annualizing,
-        time_zone: String::new(),
-    }
+/// The device's own zone: that of a site that names none.
+fn device_zone(app: &App) -> chrono_tz::Tz {
+    app.zone_of(&SiteFacts::under(Vec::new()))
 }
 
 fn size_text(bytes: u64) -> String {

@@ -2,13 +2,12 @@
 
 use super::Office;
 use super::plant::appliance_row;
-use super::row::Row;
 use crate::app::{App, AppError};
 use crate::ledger::{SiteId, VisitState};
 use crate::rules;
 use crate::store::VisitFilter;
 use crate::view::format;
-use crate::view::shown::Fact;
+use crate::view::shown::{Fact, Line};
 use std::collections::{BTreeSet, HashMap};
 
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -16,8 +15,8 @@ pub struct SitePage {
     pub name: String,
     pub address: String,
     pub facts: Vec<Fact>,
-    pub appliances: Vec<Row>,
-    pub visits: Vec<Row>,
+    pub appliances: Vec<Line>,
+    pub visits: Vec<Line>,
 }
 
 /// The titles of rulebooks, as their site lists them.
@@ -49,7 +48,7 @@ impl Office {
             let at: BTreeSet<&str> = entries.iter().filter_map(|entry| names.get(&entry.line.appliance).copied()).collect();
             let facts = at.into_iter().collect::<Vec<_>>().join(", ");
             let state = if visit.state == VisitState::Imported { "from a file" } else { visit.state.name() };
-            visits.push(Row::new(visit.id.to_string(), format::full_day(visit.date), facts).state(state, ""));
+            visits.push(Line::new(visit.id.to_string(), format::full_day(visit.date), facts).state(state, ""));
         }
         Ok(Some(SitePage {
             name: site.name.clone(),

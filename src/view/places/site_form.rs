@@ -86,7 +86,7 @@ impl Office {
         if form.trimmed("name").is_empty() {
             Ready::not(say::name_it("site"))
         } else if form.changing && form.trimmed("reason").is_empty() {
-            Ready::not(say::say_why())
+            Ready::not(say::why_it_changes())
         } else if form.has_errors() {
             Ready::not(say::amend())
         } else {

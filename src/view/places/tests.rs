@@ -6,7 +6,7 @@ use super::plant::{FormMsg, Msg as Plant, Pane};
 use super::setup::{Msg as Setup, Pane as SetupPane};
 use super::{First, Go, Look, Msg, Office, Overview, Place};
 use crate::app::testing::{CountedIds, SetClock};
-use crate::app::{App, ChargeInput, Common, NewEntry, TestInput};
+use crate::app::{App, Appearance, ChargeInput, Common, NewEntry, Setting, TestInput};
 use crate::ledger::{ApplianceId, ChargePurpose, LeakPlace, Reading, Scope, SiteId, TestKind, TestResult, Visit, WeighingMode};
 use crate::quantity::{MassUnit, Weighing};
 use crate::store::{OpenMode, Store};
@@ -307,10 +307,10 @@ fn a_cylinder_shows_its_limits_and_is_scrapped() {
 #[test]
 fn settings_are_kept() {
     let mut bench = empty();
-    let look = Look { appearance: "sunlight".to_owned(), text_size: 115 };
-    bench.tell(Msg::Setup(Setup::Appearance("sunlight".to_owned())));
-    assert_eq!(bench.tell(Msg::Setup(Setup::TextSize(115))), [Go::Appear(look.clone())]);
-    bench.tell(Msg::Setup(Setup::Unit("mass".to_owned(), "lb".to_owned())));
+    let look = Look { appearance: Appearance::Sunlight, text_size: 115 };
+    bench.tell(Msg::Setup(Setup::Appearance(Appearance::Sunlight)));
+    assert_eq!(bench.tell(Msg::Setup(Setup::TextSize(115))), [Go::Appear(look)]);
+    bench.tell(Msg::Setup(Setup::Set(Setting::Mass, "lb".to_owned())));
     let again = Office::new(&bench.app, &bench.office.documents).unwrap();
     assert_eq!((Look::read(&bench.app).unwrap(), again.units.mass), (look, MassUnit::Pound));
 }
@@ -351,7 +351,7 @@ fn the_account_follows_the_charges_and_is_exported() {
     let (_, id) = bench.ids();
     let visit = bench.begin();
     bench.charge(&visit, id, "70", "50");
-    bench.tell(Msg::Setup(Setup::Unit("mass".to_owned(), "lb".to_owned())));
+    bench.tell(Msg::Setup(Setup::Set(Setting::Mass, "lb".to_owned())));
     bench.tell(Msg::Go(Place::Account));
     let page = bench.office.account_page();
     assert_eq!((page.lost.as_str(), page.lost_unit.as_str()), ("20.00", "lb"));

@@ -1,17 +1,12 @@
 //! Begin work: at which site, and who.
 
 use super::{Panel, id};
-use crate::app::{AppError, NewSite};
-use crate::ledger::{Person, PersonId, RateMethod, Site, SiteFacts, SiteId, Visit};
+use crate::app::{AppError, NewSite, Setting};
+use crate::ledger::{Person, PersonId, Site, SiteFacts, SiteId, Visit};
 use crate::rules::rulebook;
-use crate::view::desk::{Desk, Message, Page};
-use crate::view::shown::{Choice, Line, Ready};
+use crate::view::desk::{Desk, Page};
+use crate::view::shown::{Choice, Line, Message, Ready};
 use crate::view::words;
-
-/// The setting that remembers who worked last on this device.
-const PERSON: &str = "person";
-/// The setting that names the rulebooks of a new site.
-const RULEBOOKS: &str = "rulebooks";
 
 #[derive(Debug, Clone, Default, PartialEq, Eq)]
 pub struct State {
@@ -36,7 +31,7 @@ pub enum Msg {
     AddAndBegin,
 }
 
-#[derive(Debug, Clone, Default, PartialEq, Eq)]
+#[derive(Debug, Clone, Default, PartialEq)]
 pub struct Shown {
     pub search: String,
     pub sites: Vec<Line>,
@@ -60,7 +55,7 @@ impl Desk {
     /// The store's own.
     pub fn ask_where(&mut self) -> Result<(), AppError> {
         self.reload_registers()?;
-        let last = self.app.store().setting(PERSON)?.and_then(|key| id(&key, PersonId));
+        let last = self.app.setting(Setting::Person)?.and_then(|key| id(&key, PersonId));
         let known = last.filter(|person| self.registers.person(*person).is_some());
         let person = known.or_else(|| self.registers.people.first().map(|person| person.id));
         self.begin = State { person, adding: self.registers.sites.is_empty(), ..State::default() };
@@ -107,7 +102,7 @@ impl Desk {
     pub fn begin_at(&mut self, site: SiteId) -> Result<(), AppError> {
         let person = self.begin.person.or_else(|| self.registers.people.first().map(|person| person.id));
         let person = person.ok_or_else(|| AppError::Input { field: "technician", sentence: words::say_your_name() })?;
-        self.app.set(PERSON, &person.to_string())?;
+        self.app.set(Setting::Person, &person.to_string())?;
         let visit: Visit = self.app.begin_visit(site, person)?;
         self.take_up(visit.id)?;
         if self.work()?.appliances().is_empty() && self.panel == Panel::None {
@@ -143,23 +138,13 @@ impl Desk {
         Ok(site)
     }
 
-    /// The law that a new site is under: as set, as at the site written down last, or as the device's zone suggests.
+    /// The law that a new site is under: as at the site written down last, or as the device's zone suggests.
     fn usual_rulebooks(&self) -> Result<Vec<String>, AppError> {
-        if let Some(set) = self.app.store().setting(RULEBOOKS)? {
-            return Ok(set.split(' ').filter(|id| rulebook(id).is_some()).map(str::to_owned).collect());
-        }
         let newest = self.registers.sites.iter().max_by_key(|site| site.id);
         if let Some(site) = newest {
             return Ok(site.versions.latest().rulebooks.clone());
         }
-        let zone = self.app.zone_of(&SiteFacts {
-            rulebooks: Vec::new(),
-            owner: String::new(),
-            operator: String::new(),
-            address: String::new(),
-            rate_method: RateMethod::Annualizing,
-            time_zone: String::new(),
-        });
+        let zone = self.app.zone_of(&SiteFacts::under(Vec::new()));
         Ok(rulebooks_of_zone(zone.name()).iter().map(|id| (*id).to_owned()).collect())
     }
 

@@ -2,14 +2,11 @@
 
 use super::{Panel, id};
 use crate::app::AppError;
-use crate::gas;
 use crate::ledger::{Appliance, ApplianceFacts, ApplianceId, Category};
 use crate::view::desk::Desk;
+use crate::view::gases::{gas_named, gases_like};
 use crate::view::shown::{Choice, Line, Ready};
 use crate::view::{format, parse, words};
-
-/// Gases offered for what is typed so far.
-const OFFERED: usize = 6;
 
 #[derive(Debug, Clone, Default, PartialEq, Eq)]
 pub struct State {
@@ -33,7 +30,7 @@ pub enum Msg {
     Add,
 }
 
-#[derive(Debug, Clone, Default, PartialEq, Eq)]
+#[derive(Debug, Clone, Default, PartialEq)]
 pub struct Shown {
     pub site: String,
     pub search: String,
@@ -134,17 +131,13 @@ impl Desk {
             appliances.push(self.appliance_line(appliance)?);
         }
         let unit = self.fresh_weighing()?.unit;
-        let known = gas::find(state.gas.trim());
-        let gas_error = match known {
-            None if !state.gas.trim().is_empty() && gases(&state.gas).is_empty() => {
-                words::unknown_gas(state.gas.trim(), &gas::like(state.gas.trim()))
-            }
-            _ => String::new(),
-        };
+        let (known, gases) = (gas_named(&state.gas), gases_like(&state.gas));
+        // While it is typed and still fits some, nothing is wrong with it.
+        let gas_error = known.as_ref().err().filter(|_| gases.is_empty()).cloned().unwrap_or_default();
         let full_charge_error = parse::mass(&state.full_charge, unit).err().unwrap_or_default();
         let ready = if state.identification.trim().is_empty() {
             Ready::not(words::say_the_identification())
-        } else if known.is_none() {
+        } else if known.is_err() {
             Ready::not(words::say_the_gas())
         } else if !full_charge_error.is_empty() {
             Ready::not(full_charge_error.clone())
@@ -161,7 +154,7 @@ impl Desk {
             identification_error: String::new(),
             gas: state.gas.clone(),
             gas_error,
-            gases: gases(&state.gas),
+            gases,
             full_charge: state.full_charge.clone(),
             full_charge_error,
             place: state.place.clone(),
@@ -188,33 +181,4 @@ impl Desk {
 fn fits(appliance: &Appliance, search: &str) -> bool {
     let facts = appliance.versions.latest();
     [appliance.name.as_str(), &facts.refrigerant, &facts.place, &facts.serial].join(" ").to_lowercase().contains(search)
-}
-
-/// Gases whose designation holds what is typed, the ones that begin with it first.
-fn gases(typed: &str) -> Vec<Choice> {
-    let plain = |text: &str| text.to_lowercase().replace([' ', '-'], "");
-    let typed = plain(typed);
-    if typed.is_empty() {
-        return Vec::new();
-    }
-    let mut found: Vec<&str> = gas::all().iter().map(gas::Gas::designation).filter(|name| plain(name).contains(&typed)).collect();
-    found.sort_by_key(|name| {
-        let name = plain(name);
-        (!name.starts_with(&typed) && !name.starts_with(&format!("r{typed}")), name.len())
-    });
-    found.into_iter().take(OFFERED).map(Choice::word).collect()
-}
-
-#[cfg(test)]
-mod tests {
-    use super::*;
-
-    #[test]
-    fn gases_are_offered_as_they_are_typed() {
-        let offered = |typed: &str| gases(typed).into_iter().map(|choice| choice.key).collect::<Vec<_>>();
-        assert_eq!(offered("22")[0], "R-22");
-        assert!(offered("r404").contains(&"R-404A".to_owned()));
-        assert!(offered("").is_empty());
-        assert!(offered("water vapour").is_empty());
-    }
 }

@@ -47,7 +47,7 @@ pub enum Msg {
     Add,
 }
 
-#[derive(Debug, Clone, Default, PartialEq, Eq)]
+#[derive(Debug, Clone, Default, PartialEq)]
 pub struct Shown {
     pub purpose: String,
     pub search: String,
@@ -160,7 +160,7 @@ impl Desk {
         let refused = |field, sentence| AppError::Input { field, sentence };
         let tare = parse::mass(&state.tare, self.fresh_weighing()?.unit).map_err(|sentence| refused("tare", sentence))?;
         let tare_written = tare.ok_or_else(|| refused("tare", words::tare_missing()))?;
-        let litres = capacity(&state.water_capacity).map_err(|sentence| refused("water capacity", sentence))?;
+        let litres = parse::litres(&state.water_capacity).map_err(|sentence| refused("water capacity", sentence))?;
         let standing = self.app.appliance_standing(self.appliance_in_hand()?, self.today_there()?)?;
         // A cylinder for recovery may be empty; gas is named in it by the recovery.
         let empty = panel == Panel::Recover;
@@ -241,7 +241,7 @@ impl Desk {
             tare: state.tare.clone(),
             tare_error: parse::mass(&state.tare, unit).err().unwrap_or_default(),
             water_capacity: state.water_capacity.clone(),
-            water_capacity_error: capacity(&state.water_capacity).err().unwrap_or_default(),
+            water_capacity_error: parse::litres(&state.water_capacity).err().unwrap_or_default(),
             ready,
         })
     }
@@ -251,38 +251,5 @@ impl Desk {
         let limit = self.app.limit_rules(&standing.site_facts.rulebooks)?.limit_of(gas, cylinder, true);
         let room = limit.binding.zip(cylinder.balance.content.mass()).map(|(binding, held)| binding.net - held);
         Ok(room.map(|room| format!("room {}", format::mass(room, unit))))
-    }
-}
-
-/// Litres from `26.2 l`, `26,2` or a mass of water such as `47.7 lb`.
-fn capacity(text: &str) -> Result<Option<String>, String> {
-    let text = text.trim();
-    if text.is_empty() {
-        return Ok(None);
-    }
-    let lower = text.to_lowercase();
-    let litres = match lower.strip_suffix('l') {
-        Some(figure) => parse::number(figure)?,
-        None if lower.ends_with("lb") || lower.ends_with("kg") => {
-            // 1 kg of water is taken as 1 l, as on the stamp.
-            let written = parse::mass(text, MassUnit::Kilogram)?;
-            written.and_then(|written| written.mass().ok()).map(crate::quantity::Mass::kg)
-        }
-        None => parse::number(text)?,
-    };
-    Ok(litres.map(|litres| crate::quantity::decimal_text(litres).unwrap_or_else(|| crate::quantity::rounded_text(litres, 4))))
-}
-
-#[cfg(test)]
-mod tests {
-    use super::*;
-
-    #[test]
-    fn water_capacity_is_litres_or_the_mass_of_water() {
-        assert_eq!(capacity("26,2"), Ok(Some("26.2".to_owned())));
-        assert_eq!(capacity("26.2 l"), Ok(Some("26.2".to_owned())));
-        assert_eq!(capacity("47.7 lb"), Ok(Some("21.636356049".to_owned())));
-        assert_eq!(capacity(" "), Ok(None));
-        assert!(capacity("big").is_err());
     }
 }

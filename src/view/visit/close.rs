@@ -8,8 +8,8 @@ use crate::ledger::{Act, Category, Counterpart, Entry, Ink, Signature, TestKind,
 use crate::quantity::MassUnit;
 use crate::record::{CautiousAct, Circumstances, caution, fitting};
 use crate::store::VisitFilter;
-use crate::view::desk::{Desk, Message};
-use crate::view::shown::{Caution, Fact, Ready};
+use crate::view::desk::Desk;
+use crate::view::shown::{Caution, Fact, Message, Ready};
 use crate::view::{format, words};
 use serde::{Deserialize, Serialize};
 

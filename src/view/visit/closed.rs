@@ -3,8 +3,8 @@
 use crate::app::{AppError, Printed, file_away};
 use crate::ledger::{Counterpart, Moment, VisitId};
 use crate::record::Fingerprint;
-use crate::view::desk::{Desk, Message, Page};
-use crate::view::shown::{Choice, Fact, Ready};
+use crate::view::desk::{Desk, Page};
+use crate::view::shown::{Choice, Fact, Message, Ready};
 use crate::view::{format, words};
 use std::path::{Path, PathBuf};
 
@@ -71,7 +71,7 @@ impl Desk {
     /// # Errors
     /// A sentence that says what could not be done and where.
     pub fn print(&self, visit: VisitId) -> Result<PathBuf, String> {
-        let printed = self.app.print_record(visit, self.app.paper_set()).map_err(|e| e.to_string())?;
+        let printed = self.app.print_record(visit, None).map_err(|e| e.to_string())?;
         self.file(visit, &printed)
     }
 
@@ -115,7 +115,7 @@ impl Desk {
         self.app.hand_over(visit, &words::handed_over_to(to_whom, way))?;
         let printed = if again {
             let copy = self.app.further_copy(visit)?;
-            self.app.print_copy(visit, copy, self.app.paper_set()).map_err(|e| e.to_string()).and_then(|printed| self.file(visit, &printed))
+            self.app.print_copy(visit, copy, None).map_err(|e| e.to_string()).and_then(|printed| self.file(visit, &printed))
         } else {
             // The original says to whom it was handed over.
             self.print(visit)

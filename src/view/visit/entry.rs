@@ -9,8 +9,8 @@ use crate::measure::Uncertainty;
 use crate::quantity::Weighing;
 use crate::record::Fingerprint;
 use crate::rules::weights;
-use crate::view::desk::{Desk, Message, Page};
-use crate::view::shown::{Fact, Ready};
+use crate::view::desk::{Desk, Page};
+use crate::view::shown::{Fact, Message, Ready};
 use crate::view::{format, parse, words};
 use chrono::NaiveDate;
 

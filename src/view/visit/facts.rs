@@ -3,8 +3,8 @@
 use super::{Panel, duty_line, id};
 use crate::app::AppError;
 use crate::ledger::{ApplianceId, PersonId, open_leaks};
-use crate::view::desk::{Desk, Message};
-use crate::view::shown::Line;
+use crate::view::desk::Desk;
+use crate::view::shown::{Line, Message};
 use crate::view::{format, words};
 
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -23,7 +23,7 @@ pub struct AtWork {
     pub at_work: bool,
 }
 
-#[derive(Debug, Clone, Default, PartialEq, Eq)]
+#[derive(Debug, Clone, Default, PartialEq)]
 pub struct Shown {
     pub site: String,
     pub people: Vec<AtWork>,

@@ -2,10 +2,10 @@
 
 use crate::app::ApplianceStanding;
 use crate::ledger::{Act, EntryId, Line, RateMethod};
-use crate::measure::{CylinderLimit, LimitKind};
-use crate::quantity::{Mass, MassUnit, Ratio, parse_decimal};
-use crate::rules::{self, Assessment, Duty, DutyState, Judgement, LeakRate, assess, points, rulebook};
-use crate::view::shown::{Fact, MassBar, MassLimit, Rate, Reason, Verdict};
+use crate::quantity::MassUnit;
+use crate::rules::{self, Assessment, Duty, DutyKind, DutyState, Judgement, LeakRate, assess, points, rulebook};
+use crate::view::bars::{rate_bar, verdict};
+use crate::view::shown::{Fact, Rate, Reason, Verdict};
 use crate::view::{format, shown, words};
 use chrono::NaiveDate;
 
@@ -59,8 +59,8 @@ pub fn duty_due(duty: &Duty, on: NaiveDate) -> String {
         (DutyState::Suspended, _) => words::suspended(),
         (DutyState::Late, Some(due)) => words::late_since(&format::day(due, on)),
         (_, Some(due)) => words::by_day(&format::day(due, on)),
-        (_, None) if duty.rulebook.starts_with("us-") => words::no_day_yet(),
-        (_, None) => words::without_delay(),
+        (_, None) if duty.kind == DutyKind::RepairOfFoundLeak => words::without_undue_delay(),
+        (_, None) => words::no_day_yet(),
     }
 }
 
@@ -226,97 +226,4 @@ fn title(id: &str) -> String {
 
 fn within_error(rate: &LeakRate) -> bool {
     rate.error.as_ref().is_some_and(|band| band.holds_trigger)
-}
-
-fn verdict(verdict: rules::Verdict) -> Verdict {
-    match verdict {
-        rules::Verdict::Under => Verdict::Under,
-        rules::Verdict::At => Verdict::At,
-        rules::Verdict::Over => Verdict::Over,
-    }
-}
-
-/// Places along the leak-rate bar. The scale ends at the next round figure
-/// above rate and trigger; beyond four times the trigger the bar is broken.
-pub fn rate_bar(rate: &LeakRate) -> Rate {
-    use format::float;
-    let (percent, trigger) = (float(rate.percent), float(rate.trigger));
-    let band = rate.error.as_ref().and_then(|band| parse_decimal(&band.percent).ok()).map_or(0.0, float);
-    let broken = percent > 4.0 * trigger;
-    let end = if broken { round_up(2.0 * trigger) } else { round_up((percent + band).max(trigger * 1.1)) };
-    #[allow(clippy::cast_possible_truncation)]
-    let at = |value: f64| (value / end).clamp(0.0, 1.0) as f32;
-    Rate {
-        rate_at: at(percent),
-        trigger_at: at(trigger),
-        error_from: at(percent - band),
-        error_to: at(percent + band),
-        broken,
-        ..Rate::default()
-    }
-}
-
-/// 1, 2, 4, 5 or 10 times a power of ten.
-fn round_up(value: f64) -> f64 {
-    let power = 10_f64.powf(value.max(0.01).log10().floor());
-    [1.0, 2.0, 4.0, 5.0, 10.0].into_iter().map(|step| step * power).find(|round| *round >= value).unwrap_or(value)
-}
-
-/// A cylinder's bar: from empty to full of water.
-pub fn mass_bar(
-    content: Option<Mass>,
-    heel: Option<Mass>,
-    capacity: Option<Ratio>,
-    limit: Option<&CylinderLimit>,
-    unit: MassUnit,
-) -> MassBar {
-    let kg = |mass: Mass| format::float(mass.kg());
-    let binding = limit.and_then(|limit| limit.binding.as_ref());
-    // Without a water capacity the bar ends a quarter above what there is to show.
-    let end = capacity.map(format::float).unwrap_or_else(|| {
-        let most: f64 = content.map_or(0.0, kg).max(binding.map_or(0.0, |binding| kg(binding.net)));
-        if most > 0.0 { most * 1.25 } else { 1.0 }
-    });
-    #[allow(clippy::cast_possible_truncation)]
-    let at = |mass: Mass| (kg(mass) / end).clamp(0.0, 1.0) as f32;
-    let limits = limit.map_or(&[][..], |limit| &limit.limits).iter().filter(|limit| limit.counts);
-    MassBar {
-        heel: content.and(heel).map_or(0.0, at),
-        content: content.map_or(0.0, at),
-        limits: limits
-            .map(|limit| MassLimit { name: short(limit.kind).to_owned(), at: at(limit.net), binding: Some(limit) == binding })
-            .collect(),
-        words: content.map_or_else(words::not_weighed, |content| format::mass(content, unit)),
-        binding: binding.map_or_else(words::no_limit, |binding| words::limit_binds(&format::mass(binding.net, unit), &binding.name())),
-    }
-}
-
-fn short(kind: LimitKind) -> &'static str {
-    match kind {
-        LimitKind::EightyPercent => "80 %",
-        LimitKind::LiquidFull => "55 °C",
-        LimitKind::FillingDensity => "density",
-        LimitKind::FillingRatio => "ADR",
-        LimitKind::Stamped => "stamp",
-    }
-}
-
-#[cfg(test)]
-mod tests {
-    use super::*;
-
-    #[test]
-    fn scales_end_at_round_figures() {
-        for (value, end) in [(22.0, 40.0), (9.4, 10.0), (0.3, 0.4), (40.0, 40.0), (41.0, 50.0), (180.0, 200.0)] {
-            assert!((round_up(value) - end).abs() < 1e-9, "{value} ends at {}", round_up(value));
-        }
-    }
-
-    #[test]
-    fn a_cylinder_without_facts_has_a_bar_all_the_same() {
-        let bar = mass_bar(None, None, None, None, MassUnit::Kilogram);
-        assert_eq!((bar.content, bar.words.as_str()), (0.0, "never weighed"));
-        let half = mass_bar(Some(Mass::from_kg(10)), Some(Mass::from_kg(1)), Some(Ratio::from_integer(20)), None, MassUnit::Kilogram);
-        assert_eq!(half.content, 0.5);
-    }
 }

@@ -2,7 +2,7 @@
 //! becomes an open leak.
 
 use super::{Panel, id};
-use crate::app::{AppError, TestInput};
+use crate::app::{AppError, Setting, TestInput};
 use crate::ledger::{ApplianceId, InstrumentId, InstrumentKind, LeakPlace, Scope, TestKind, TestResult};
 use crate::view::desk::Desk;
 use crate::view::shown::{Choice, Line, Ready};
@@ -51,7 +51,7 @@ pub enum Msg {
     Save,
 }
 
-#[derive(Debug, Clone, Default, PartialEq, Eq)]
+#[derive(Debug, Clone, Default, PartialEq)]
 pub struct Shown {
     pub appliance: String,
     pub kinds: Vec<Choice>,
@@ -157,7 +157,7 @@ impl Desk {
 
     /// The detector that was used last, else the first one.
     pub(super) fn usual_detector(&self) -> Result<Option<InstrumentId>, AppError> {
-        let last = self.app.store().setting("detector")?.and_then(|key| id(&key, InstrumentId));
+        let last = self.app.setting(Setting::Detector)?.and_then(|key| id(&key, InstrumentId));
         let mut detectors = self.registers.instruments.iter().filter(|instrument| instrument.kind == InstrumentKind::Detector);
         Ok(last.filter(|id| self.registers.instrument(*id).is_some()).or_else(|| detectors.next().map(|detector| detector.id)))
     }
@@ -207,7 +207,7 @@ impl Desk {
             self.app.repair(visit, form.appliance, crate::app::RepairInput { common, place: leak.place, ..Default::default() })?;
         }
         if let Some(instrument) = form.instrument {
-            self.app.set("detector", &instrument.to_string())?;
+            self.app.set(Setting::Detector, &instrument.to_string())?;
         }
         self.work_mut()?.leak_test = None;
         self.entered()

@@ -20,7 +20,7 @@ pub mod recover;
 pub mod repair;
 pub mod weighing;
 
-pub use judging::{Judging, duty_due, duty_line, judge, mass_bar, rate_bar};
+pub use judging::{Judging, duty_due, duty_line, judge};
 
 use super::desk::Desk;
 use crate::app::{AppError, OpenVisit};
@@ -207,14 +207,6 @@ impl Desk {
         self.changed();
         self.go(super::desk::Page::Visit);
         Ok(())
-    }
-
-    /// As [`Desk::take_up`], by the key of a row.
-    ///
-    /// # Errors
-    /// As there.
-    pub fn take_up_key(&mut self, key: &str) -> Result<(), AppError> {
-        id(key, crate::ledger::VisitId).map_or(Ok(()), |visit| self.take_up(visit))
     }
 
     /// Reads again what is on disk of the visit.

@@ -2,9 +2,9 @@
 
 use super::{Panel, id};
 use crate::app::{AppError, NewEntry, RecycleInput, RetrofitInput, SimpleAct};
-use crate::gas;
 use crate::ledger::{ApplianceId, CylinderId, GasStatus};
 use crate::view::desk::Desk;
+use crate::view::gases::gas_named;
 use crate::view::shown::{Choice, Ready};
 use crate::view::{format, parse, words};
 use serde::{Deserialize, Serialize};
@@ -40,7 +40,7 @@ pub enum Msg {
     Save,
 }
 
-#[derive(Debug, Clone, Default, PartialEq, Eq)]
+#[derive(Debug, Clone, Default, PartialEq)]
 pub struct Shown {
     pub appliance: String,
     pub kinds: Vec<Choice>,
@@ -147,17 +147,14 @@ impl Desk {
         } else {
             Vec::new()
         };
-        let gas_error = match form.gas.trim() {
-            "" => String::new(),
-            typed if gas::find(typed).is_none() => words::unknown_gas(typed, &gas::like(typed)),
-            _ => String::new(),
-        };
+        let known = gas_named(&form.gas);
+        let gas_error = known.as_ref().err().filter(|_| !form.gas.trim().is_empty()).cloned().unwrap_or_default();
         let asks_gas = form.kind == "retrofit";
         let full_charge_error = parse::mass(&form.full_charge, unit).err().unwrap_or_default();
         let ready = match form.kind.as_str() {
             "note" | "recycle" if form.text.trim().is_empty() => Ready::not(words::note_empty()),
             "recycle" if form.cylinder.is_none() => Ready::not(words::choose_the_cylinder()),
-            "retrofit" if gas::find(form.gas.trim()).is_none() => Ready::not(words::say_the_gas()),
+            "retrofit" if known.is_err() => Ready::not(words::say_the_gas()),
             "retrofit" if !full_charge_error.is_empty() => Ready::not(full_charge_error.clone()),
             _ => Ready::yes(),
         };

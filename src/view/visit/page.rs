@@ -80,7 +80,7 @@ impl Desk {
             if let Some(appliance) = self.registers.appliance(id) {
                 let line = self.appliance_line(appliance)?;
                 let count = work.entries_of(id).len();
-                let done = if count == 0 { words::no_entry_yet() } else { words::entries(count) };
+                let done = words::entries(count);
                 let gas = self.app.appliance_standing(id, today)?.facts.refrigerant;
                 appliances.push(Line { facts: format::commas([&*gas, &*done]), ..line });
             }

@@ -49,7 +49,7 @@ pub enum Msg {
     Save,
 }
 
-#[derive(Debug, Clone, Default, PartialEq, Eq)]
+#[derive(Debug, Clone, Default, PartialEq)]
 pub struct Shown {
     pub appliance: String,
     pub kind: String,

@@ -1,13 +1,14 @@
 //! Two readings of a scale, as a charge and a recovery take them.
 
-use crate::app::{AppError, CylinderStanding, Prepared, WeighingGap};
+use crate::app::{AppError, CylinderStanding, Prepared, Setting, WeighingGap};
 use crate::gas;
 use crate::ledger::{CylinderId, Instrument, InstrumentId, InstrumentKind, Reading, WeighingMode};
 use crate::measure::{CylinderLimit, Direction};
 use crate::quantity::{Mass, MassUnit, Weighing};
+use crate::view::bars::mass_bar;
 use crate::view::desk::Desk;
 use crate::view::shown::{self, Choice};
-use crate::view::visit::{id, mass_bar};
+use crate::view::visit::id;
 use crate::view::{format, parse, words};
 use serde::{Deserialize, Serialize};
 
@@ -353,20 +354,22 @@ pub(super) fn scales(desk: &Desk, today: chrono::NaiveDate) -> Vec<Choice> {
 impl Desk {
     /// A weighing as this device last took one.
     pub(super) fn fresh_weighing(&self) -> Result<WeighingForm, AppError> {
-        let setting = |key: &str| self.app.store().setting(key);
-        let unit = setting("mass unit")?.as_deref().and_then(unit_of_key);
-        let scale = setting("scale")?.and_then(|key| id(&key, InstrumentId)).filter(|scale| self.registers.instrument(*scale).is_some());
-        let zeroed = setting("weighing mode")?.as_deref() == Some("zeroed");
+        let scale = self
+            .app
+            .setting(Setting::Scale)?
+            .and_then(|key| id(&key, InstrumentId))
+            .filter(|scale| self.registers.instrument(*scale).is_some());
+        let zeroed = self.app.setting(Setting::WeighingMode)?.as_deref() == Some("zeroed");
         let active = if zeroed { AFTER } else { BEFORE }.to_owned();
-        Ok(WeighingForm { unit: unit.unwrap_or(MassUnit::Kilogram), scale, zeroed, active, ..WeighingForm::default() })
+        Ok(WeighingForm { unit: self.app.weighed_in()?, scale, zeroed, active, ..WeighingForm::default() })
     }
 
     /// Remembers how it was weighed, for the next time.
     pub(super) fn remember_weighing(&self, form: &WeighingForm) -> Result<(), AppError> {
-        self.app.set("mass unit", unit_key(form.unit))?;
-        self.app.set("weighing mode", if form.zeroed { "zeroed" } else { "gross" })?;
+        self.app.set(Setting::WeighedIn, form.unit.name())?;
+        self.app.set(Setting::WeighingMode, if form.zeroed { "zeroed" } else { "gross" })?;
         if let Some(scale) = form.scale {
-            self.app.set("scale", &scale.to_string())?;
+            self.app.set(Setting::Scale, &scale.to_string())?;
         }
         Ok(())
     }

@@ -35,7 +35,7 @@ pub fn duty_by(duty: &str, day: &str, source: &str) -> String {
 }
 
 pub fn no_addition_yet() -> String {
-    "no addition on record yet".to_owned()
+    "no addition has asked for a rate yet".to_owned()
 }
 
 pub fn no_rate_without_full_charge() -> String {
@@ -144,10 +144,6 @@ pub fn think_again() -> String {
 
 pub fn reason_missing() -> String {
     "Going on needs a reason, which is printed.".to_owned()
-}
-
-pub fn left_in_appliance() -> String {
-    "by the record, of this visit: charged less recovered".to_owned()
 }
 
 pub fn level_to_reach() -> String {

@@ -1,5 +1,6 @@
-//! Every sentence that the screens say with figures or names in it: one
-//! function each, English.
+//! What the screens say beyond their own fixed labels: one function each,
+//! English. Words of the law and the trade come from their lists in `ledger`
+//! and `rules`; refusals from `app`.
 
 mod act;
 pub mod office;
@@ -18,6 +19,18 @@ pub fn sentence(cause: &str) -> String {
 
 pub fn today() -> String {
     "today".to_owned()
+}
+
+pub fn not_above_zero(text: &str) -> String {
+    format!("\u{201c}{text}\u{201d} is not a number above zero.")
+}
+
+pub fn cannot_write(path: &str, cause: &str) -> String {
+    format!("{path} cannot be written: {cause}. Look whether the folder is there and has room.")
+}
+
+pub fn demonstration() -> String {
+    "Demonstration: invented people and places".to_owned()
 }
 
 pub fn to_complete() -> String {

@@ -1,41 +1,12 @@
 //! The five places: Due, Plant, Cylinders, Account, Setup.
 
 use crate::quantity::days_between;
-use crate::rules::{Duty, DutyKind, DutyState};
-use crate::view::format;
+use crate::rules::DutyKind;
 use chrono::NaiveDate;
-
-pub fn percent_a_year() -> String {
-    "% a year".to_owned()
-}
-
-pub fn no_rate_due() -> String {
-    "no rate due".to_owned()
-}
 
 /// The same in the few letters of a row.
 pub fn none_due() -> String {
     "none due".to_owned()
-}
-
-pub fn verdict(word: &str, within_error: bool) -> String {
-    if within_error { format!("{word}, by less than the weighing error") } else { word.to_owned() }
-}
-
-pub fn consequence(stands: bool, next: &str) -> String {
-    match (stands, next.is_empty()) {
-        (true, true) => "The duty stands.".to_owned(),
-        (true, false) => format!("The duty stands: {next}"),
-        (false, _) => format::capital(next),
-    }
-}
-
-pub fn rate_needs_full_charge() -> String {
-    "The full charge is not known yet, so no rate can be worked out.".to_owned()
-}
-
-pub fn no_addition_yet() -> String {
-    "No addition has asked for a rate yet.".to_owned()
 }
 
 pub fn trigger(figure: &str) -> String {
@@ -69,14 +40,14 @@ pub fn duty_short(kind: DutyKind) -> &'static str {
         DutyKind::LeakCheck => "Leak check",
         DutyKind::ReCheck => "Re-check",
         DutyKind::RepairOfFoundLeak => "Leak repair",
-        DutyKind::DetectionSystemCheck => "Detector check",
+        DutyKind::DetectionSystemCheck => "Detection system check",
         DutyKind::DetermineFullCharge => "Full charge",
     }
 }
 
-/// What a duty asks for.
-pub fn duty_asks(kind: DutyKind) -> &'static str {
-    match kind {
+/// What a duty asks for; `percent` is its row's share of the full charge, where it has one.
+pub fn duty_asks(kind: DutyKind, percent: &str) -> String {
+    let asks = match kind {
         DutyKind::Repair => {
             "Repair the leaks until the rate is back under the trigger, then prove it by an initial and a follow-up verification test."
         }
@@ -89,14 +60,15 @@ pub fn duty_asks(kind: DutyKind) -> &'static str {
         DutyKind::Plan => "Make a dated plan to retrofit or retire this appliance, keep it at the site, and enter that it was made.",
         DutyKind::LeakInspection => "Inspect all parts that can be seen and reached, with a direct method. Indirect methods do not count.",
         DutyKind::ChronicLeakReport => {
-            "Report that the appliance lost its whole charge or more within a calendar year, and what was done about it."
+            return format!("Report that {percent} of full charge or more were added within a calendar year, and what was done about it.");
         }
         DutyKind::LeakCheck => "Check the appliance for leaks, the parts most likely to leak first. Inspections of this rulebook count.",
         DutyKind::ReCheck => "Check the repaired place again, to see that the repair holds.",
         DutyKind::RepairOfFoundLeak => "A leak was found: repair it without undue delay. Isolating it is no repair.",
         DutyKind::DetectionSystemCheck => "Check that the leakage detection system still raises its alarm.",
         DutyKind::DetermineFullCharge => "Determine the full charge and write down how: without it no leak rate can be judged.",
-    }
+    };
+    asks.to_owned()
 }
 
 /// `tomorrow`, `in 5 days`, `5 days late`.
@@ -110,38 +82,12 @@ pub fn until(due: NaiveDate, today: NaiveDate) -> String {
     }
 }
 
-pub fn no_day_set() -> String {
-    "soon".to_owned()
-}
-
-pub fn without_undue_delay() -> String {
-    "without undue delay".to_owned()
-}
-
-/// `repair 2 Apr`, `repair late`.
-pub fn duty_by(duty: &Duty, on: NaiveDate, today: NaiveDate) -> String {
-    let name = duty_short(duty.kind).to_lowercase();
-    match (duty.state(on), duty.due) {
-        (DutyState::Late, _) => format!("{name} late"),
-        (_, Some(due)) => format!("{name} {}", format::day(due, today)),
-        (_, None) => format!("{name} {}", no_day_set()),
-    }
-}
-
 pub fn late() -> String {
     "Late".to_owned()
 }
 
-pub fn by_day(day: &str) -> String {
-    format!("By {day}")
-}
-
 pub fn later() -> String {
     "Later".to_owned()
-}
-
-pub fn suspended() -> String {
-    "Clock stopped".to_owned()
 }
 
 pub fn mothballed() -> String {
@@ -164,32 +110,12 @@ pub fn met_lately() -> String {
     "Met lately".to_owned()
 }
 
-pub fn met() -> String {
-    "met".to_owned()
-}
-
-pub fn met_late() -> String {
-    "met late".to_owned()
-}
-
-pub fn since(day: &str) -> String {
-    format!("since {day}")
-}
-
-pub fn open_leak() -> String {
-    "open".to_owned()
-}
-
 pub fn leak() -> String {
     "Leak".to_owned()
 }
 
 pub fn leak_of(appliance: &str) -> String {
     format!("Leak, {appliance}")
-}
-
-pub fn place_unknown() -> String {
-    "place not written down".to_owned()
 }
 
 pub fn leak_asks() -> String {
@@ -249,14 +175,6 @@ pub fn first_visit() -> (String, String) {
     ("All is ready. Duties, open leaks and open visits will stand here.".to_owned(), begin())
 }
 
-pub fn entries(count: usize) -> String {
-    match count {
-        0 => "no entry yet".to_owned(),
-        1 => "1 entry".to_owned(),
-        count => format!("{count} entries"),
-    }
-}
-
 pub fn count(number: usize, one: &str, many: &str) -> String {
     format!("{number} {}", if number == 1 { one } else { many })
 }
@@ -269,7 +187,7 @@ pub fn nothing_fits(text: &str) -> String {
     format!("Nothing fits \u{201c}{text}\u{201d}. Search by identification, site, serial, gas or job.")
 }
 
-pub fn no_cylinder_fits(text: &str) -> String {
+pub fn no_cylinder_found(text: &str) -> String {
     format!("Nothing fits \u{201c}{text}\u{201d}. Search by identification, gas, status or where it is.")
 }
 
@@ -309,10 +227,6 @@ pub fn not_a_day(text: &str) -> String {
     format!("\u{201c}{text}\u{201d} is not a day such as 2026-03-31.")
 }
 
-pub fn not_a_pressure(text: &str) -> String {
-    format!("\u{201c}{text}\u{201d} is not a number above zero.")
-}
-
 pub fn name_it(what: &str) -> String {
     format!("Write down how the {what} is called.")
 }
@@ -321,18 +235,11 @@ pub fn choose_gas() -> String {
     "Choose a gas.".to_owned()
 }
 
-pub fn unknown_gas(text: &str, like: &[&str]) -> String {
-    if like.is_empty() {
-        return format!("\u{201c}{text}\u{201d} is not in the catalogue of gases.");
-    }
-    format!("\u{201c}{text}\u{201d} is not in the catalogue of gases. Do you mean {}?", like.join(", "))
-}
-
 pub fn give_tare() -> String {
     "Write down the tare stamped on the cylinder.".to_owned()
 }
 
-pub fn say_why() -> String {
+pub fn why_it_changes() -> String {
     "Say why it changes: the history keeps it.".to_owned()
 }
 
@@ -358,10 +265,6 @@ pub fn overdue() -> String {
 
 pub fn scrapped() -> String {
     "out of use".to_owned()
-}
-
-pub fn not_weighed() -> String {
-    "not weighed".to_owned()
 }
 
 pub fn refuse_scrapped(reason: &str) -> String {
@@ -392,10 +295,6 @@ pub fn refuse_named_rating(needed: &str, given: &str) -> String {
     format!("Not made for this gas: that takes a cylinder of {needed}, this one is stamped {given}.")
 }
 
-pub fn limit(name: &str, mass: &str) -> String {
-    format!("{name}: {mass}")
-}
-
 pub fn cylinders_summary(cylinders: usize, overdue: usize) -> String {
     let cylinders = count(cylinders, "cylinder", "cylinders");
     if overdue == 0 { cylinders } else { format!("{cylinders}, {overdue} overdue") }
@@ -415,14 +314,6 @@ pub fn all_gases() -> String {
 
 pub fn written_to(path: &str) -> String {
     format!("Written to {path}")
-}
-
-pub fn cannot_write(path: &str, cause: &str) -> String {
-    format!("{path} cannot be written: {cause}. Look whether the folder is there and has room.")
-}
-
-pub fn cannot_open(path: &str) -> String {
-    format!("No program on this device opens it. The file is {path}.")
 }
 
 pub fn checked_sound(at: &str, records: usize) -> String {
@@ -446,16 +337,28 @@ pub fn only_in_memory() -> String {
     "in memory only".to_owned()
 }
 
-pub fn saved(what: &str) -> String {
-    format!("{} is kept.", format::capital(what))
-}
-
 pub fn gone() -> String {
     "It is no longer there. Look through the list again.".to_owned()
 }
 
 pub fn tables(gwp: &str, odp: &str) -> String {
     format!("CO\u{2082} equivalent by {gwp}; ODP by {odp}")
+}
+
+pub fn units(mass: &str, pressure: &str, temperature: &str) -> String {
+    format!("{mass}, {}, {temperature}", gauge(pressure))
+}
+
+pub fn gauge(pressure: &str) -> String {
+    format!("{pressure} gauge")
+}
+
+pub fn paper_by_law() -> String {
+    "by the site\u{2019}s law".to_owned()
+}
+
+pub fn look(appearance: &str, text_size: u32) -> String {
+    format!("{appearance}, text {text_size} %")
 }
 
 pub fn and_more() -> String {

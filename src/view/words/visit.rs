@@ -62,7 +62,7 @@ pub fn say_the_gas() -> String {
 }
 
 pub fn unknown_gas(gas: &str, like: &[&str]) -> String {
-    let hint = if like.is_empty() { String::new() } else { format!(" Like it are: {}.", like.join(", ")) };
+    let hint = if like.is_empty() { String::new() } else { format!(" Do you mean {}?", like.join(", ")) };
     format!("\u{201c}{gas}\u{201d} is not in the gas catalogue.{hint}")
 }
 
@@ -75,20 +75,16 @@ pub fn rulebooks_taken(rulebooks: &str) -> String {
     }
 }
 
-pub fn added_on_the_spot(place: &str) -> String {
-    if place.is_empty() { "added on the spot".to_owned() } else { place.to_owned() }
-}
-
 pub fn nothing_entered() -> String {
     "Nothing entered yet. Choose what you did.".to_owned()
 }
 
-pub fn no_entry_yet() -> String {
-    "no entry yet".to_owned()
-}
-
 pub fn entries(count: usize) -> String {
-    if count == 1 { "1 entry".to_owned() } else { format!("{count} entries") }
+    match count {
+        0 => "no entry yet".to_owned(),
+        1 => "1 entry".to_owned(),
+        count => format!("{count} entries"),
+    }
 }
 
 pub fn struck(why: &str) -> String {
@@ -127,12 +123,12 @@ pub fn late_since(day: &str) -> String {
     format!("late since {day}")
 }
 
-pub fn no_day_yet() -> String {
-    "no day yet".to_owned()
+pub fn without_undue_delay() -> String {
+    "without undue delay".to_owned()
 }
 
-pub fn without_delay() -> String {
-    "without undue delay".to_owned()
+pub fn no_day_yet() -> String {
+    "no day yet".to_owned()
 }
 
 pub fn suspended() -> String {
@@ -157,10 +153,6 @@ pub fn certificate(kind: &str, number: &str) -> String {
 
 pub fn stays_at_work() -> String {
     "Who is at work in a visit stays on its record.".to_owned()
-}
-
-pub fn job_of(job: &str) -> String {
-    format!("job {job}")
 }
 
 pub fn acknowledge_each() -> String {
@@ -249,7 +241,7 @@ pub fn record_not_printed(cause: &str) -> String {
 }
 
 pub fn cannot_open(path: &str, cause: &str) -> String {
-    format!("No program here opens the record ({cause}). It lies at {path}.")
+    format!("No program here opens it ({cause}). It lies at {path}.")
 }
 
 pub fn taken_up_again(site: &str) -> String {

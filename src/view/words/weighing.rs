@@ -49,10 +49,6 @@ pub fn plus_minus(error: &str) -> String {
     format!("\u{b1} {error}")
 }
 
-pub fn scale_worth(division: &str, checked: &str) -> String {
-    if checked.is_empty() { format!("division {division}") } else { format!("division {division}, checked {checked}") }
-}
-
 pub fn last_digit_counts() -> String {
     "no scale named: the last digit typed counts as its division".to_owned()
 }
@@ -62,7 +58,7 @@ pub fn no_scale() -> String {
 }
 
 pub fn not_weighed() -> String {
-    "never weighed".to_owned()
+    "not weighed".to_owned()
 }
 
 pub fn limit_binds(mass: &str, name: &str) -> String {
@@ -140,8 +136,4 @@ pub fn room_unknown() -> String {
 
 pub fn left_in(cylinder: &str) -> String {
     format!("left in {cylinder}")
-}
-
-pub fn held_by(cylinder: &str) -> String {
-    format!("then in {cylinder}")
 }

@@ -132,7 +132,7 @@ fn appearance_and_text_size_are_kept() {
     press(&opened.window, &row.label);
     press(&opened.window, "sunlight");
     press(&opened.window, "130 %");
-    assert_eq!(Look::read(&app).expect("settings"), Look { appearance: "sunlight".to_owned(), text_size: 130 });
+    assert_eq!(Look::read(&app).expect("settings"), Look { appearance: bubblepoint::app::Appearance::Sunlight, text_size: 130 });
     let theme = opened.window.global::<Theme>();
     assert_eq!((theme.get_appearance(), theme.get_text_factor()), (bubblepoint_ui::Appearance::Sunlight, 1.3));
     assert!(shows(&opened.window, "Appearance, sunlight, text 130 %"));
@@ -152,7 +152,7 @@ fn every_page_of_the_demonstration_is_whole() {
     for size in SIZES {
         for text_size in [100, 150] {
             for page in OFFICE_PAGES {
-                let look = Look { appearance: "light".to_owned(), text_size };
+                let look = Look { appearance: bubblepoint::app::Appearance::Light, text_size };
                 let opened = office_as(&app, size, look, folder.path());
                 opened.window.global::<Shell>().set_demonstration(true);
                 (page.reach)(&opened);

@@ -4,7 +4,7 @@
 //!
 //! `pictures <folder> [words…]`: with words, only pages whose name holds one of them.
 
-use bubblepoint::view::places::Look;
+use bubblepoint::app::{Appearance as Light, Look};
 use bubblepoint_ui::{Appearance, Shell};
 use bubblepoint_ui_tests::{OFFICE_PAGES, PHONE, SIZES, demonstration, draw, office_as, open, save, scenes, settle};
 use slint::ComponentHandle;
@@ -48,13 +48,13 @@ fn main() -> ExitCode {
     let app = demonstration();
     for page in pages {
         for size in SIZES {
-            let mut looks = vec![("light", "light", 100), ("dark", "dark", 100)];
+            let mut looks = vec![("light", Light::Light, 100), ("dark", Light::Dark, 100)];
             if size == PHONE {
-                looks.push(("sunlight", "sunlight", 100));
-                looks.push(("large", "light", 150));
+                looks.push(("sunlight", Light::Sunlight, 100));
+                looks.push(("large", Light::Light, 150));
             }
             for (look, appearance, text_size) in looks {
-                let opened = office_as(&app, size, Look { appearance: appearance.to_owned(), text_size }, &documents);
+                let opened = office_as(&app, size, Look { appearance, text_size }, &documents);
                 opened.window.global::<Shell>().set_demonstration(true);
                 (page.reach)(&opened);
                 settle();
