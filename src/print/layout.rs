@@ -18,7 +18,7 @@ pub(super) const INSET: f32 = 8.0;
 const STRIP: f32 = 19.0;
 const BORDER: f32 = 0.9;
 /// Rows of a table up to this height stay on one page.
-const SHORT: f32 = 150.0;
+pub(super) const SHORT: f32 = 150.0;
 
 /// What stands on every page.
 #[derive(Debug, Clone, Default)]

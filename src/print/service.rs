@@ -2,7 +2,7 @@
 
 use super::chart::leak_rate_bar;
 use super::fonts::Fonts;
-use super::layout::{Flow, Running, Stamp};
+use super::layout::{Flow, Running, SHORT, Stamp};
 use super::mark::rising_bubbles;
 use super::plate::{Cell, Column, Field, dashed, grid, heading, statement, table};
 use super::sheet::{Block, Paper, Style, paragraph};
@@ -173,6 +173,13 @@ fn visit(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord) {
     }
     for row in grid(fonts, inner, COLUMNS, &fields) {
         flow.put(row);
+    }
+    // Whoever reads the first page alone must know that the record was corrected.
+    if !record.remarks.is_empty() {
+        let mut rows = vec![Block::empty(1.0)];
+        rows.extend(record.remarks.iter().map(|remark| dashed(fonts, inner, remark)));
+        rows.push(Block::empty(4.0));
+        flow.put_together(parted(inner, rows));
     }
     let company = [
         Field::required("service company", &record.company.name).strong(),
@@ -434,32 +441,35 @@ fn readings(flow: &mut Flow, fonts: &Fonts, part: &AppliancePart) {
 }
 
 fn cautions(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord) {
-    flow.open_plate("Cautions acknowledged", "", 30.0);
+    const TITLE: &str = "Cautions acknowledged";
     let inner = flow.inner();
     if record.cautions.is_empty() {
+        flow.open_plate(TITLE, "", 30.0);
         flow.put(paragraph(fonts, words::NO_CAUTIONS, Style::BODY, inner));
-    } else {
-        let columns = [Column::left("caution", 4.4), Column::left("basis", 1.9), Column::left("when, by whom", 1.7)];
-        let rows: Vec<Vec<Cell>> = record
-            .cautions
-            .iter()
-            .map(|caution| {
-                let who = [caution.at.as_str(), caution.person.as_str()].into_iter().filter(|t| !t.is_empty()).collect::<Vec<_>>();
-                vec![Cell::plain(&caution.text), Cell::plain(&caution.basis), Cell::plain(who.join("\n"))]
-            })
-            .collect();
-        let set = table(fonts, inner, &columns, &rows, 8.0);
-        flow.put_table(None, set.head, set.rows);
+        flow.close_plate();
+        return;
     }
+    let columns = [Column::left("caution", 4.4), Column::left("basis", 1.9), Column::left("when, by whom", 1.7)];
+    let rows: Vec<Vec<Cell>> = record
+        .cautions
+        .iter()
+        .map(|caution| {
+            let who = [caution.at.as_str(), caution.person.as_str()].into_iter().filter(|t| !t.is_empty()).collect::<Vec<_>>();
+            vec![Cell::plain(&caution.text), Cell::plain(&caution.basis), Cell::plain(who.join("\n"))]
+        })
+        .collect();
+    let set = table(fonts, inner, &columns, &rows, 8.0);
+    // The strip never stands alone: a few cautions go with it, of many the first.
+    let rows: f32 = set.rows.iter().map(|row| row.height).sum();
+    let first = set.rows.first().map_or(0.0, |row| row.height);
+    flow.open_plate(TITLE, "", set.head.height + if rows <= SHORT { rows } else { first });
+    flow.put_table(None, set.head, set.rows);
     flow.close_plate();
 }
 
-/// Remarks, fingerprint, rulebooks, and where local codes come first.
+/// Fingerprint, rulebooks, and where local codes come first.
 fn foot(width: f32, fonts: &Fonts, record: &ServiceRecord) -> Vec<Block> {
     let mut lines: Vec<Block> = Vec::new();
-    for remark in &record.remarks {
-        lines.push(dashed(fonts, width, remark));
-    }
     if let Some(fingerprint) = &record.fingerprint {
         let text = format!("Fingerprint (SHA-256 of the closed record): {}", fingerprint.full);
         lines.push(paragraph(fonts, &text, Style::CAPTION, width));

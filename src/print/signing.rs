@@ -10,7 +10,7 @@ use crate::record::{Counterparty, RecordState, ServiceRecord, SignedBy};
 
 const GUTTER: f32 = 20.0;
 /// Height of the field for the strokes; its width follows from the ink's own.
-const FIELD: f32 = 48.0;
+const FIELD: f32 = 42.0;
 
 /// `foot` is the height of what follows and must not stand on a page alone.
 pub(super) fn signatures(flow: &mut Flow, fonts: &Fonts, record: &ServiceRecord, foot: f32) {

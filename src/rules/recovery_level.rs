@@ -13,8 +13,10 @@ use std::sync::LazyLock;
 pub struct RecoveryLevel {
     /// As `10 in Hg vacuum`, in the law's own unit.
     pub level: String,
-    /// Article and the row of its table, as `40 CFR 82.156, Table 1: high-pressure, 200 lb or more`.
+    /// Article, as `40 CFR 82.156, Table 1`.
     pub source: String,
+    /// The row of its table, as `high-pressure, 200 lb or more`.
+    pub why: String,
 }
 
 /// The level that the rulebooks of a site ask of a recovery on `day` from an
@@ -36,7 +38,7 @@ pub fn recovery_level(rulebooks: &[String], facts: &ApplianceFacts, purpose: Rec
     };
     let row = BOOK.levels.iter().find(fits)?;
     let assumed = if row.charge_at_least.is_some() && facts.full_charge.is_none() { " (full charge not determined)" } else { "" };
-    Some(RecoveryLevel { level: row.level.clone(), source: format!("{}: {}{assumed}", row.source, row.why) })
+    Some(RecoveryLevel { level: row.level.clone(), source: row.source.clone(), why: format!("{}{assumed}", row.why) })
 }
 
 /// The pressure class of 40 CFR 82.152, from the liquid's saturation pressure
@@ -115,6 +117,6 @@ mod tests {
         let facts = ApplianceFacts::new(Category::ComfortCooling, "R-134a");
         let level = recovery_level(&["us-84c".to_owned()], &facts, RecoveryPurpose::Repair, "2026-03-03".parse().unwrap()).unwrap();
         assert_eq!(level.level, "15 in Hg vacuum");
-        assert_eq!(level.source, "40 CFR 82.156, Table 1: medium-pressure, 200 lb or more (full charge not determined)");
+        assert_eq!(level.why, "medium-pressure, 200 lb or more (full charge not determined)");
     }
 }

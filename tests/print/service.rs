@@ -228,6 +228,32 @@ fn the_one_job_of_a_record_is_said_once() {
     assert_eq!(read(&record).text().matches("W-1187").count(), 2, "of two jobs each entry says its own");
 }
 
+/// Whoever reads the first page alone knows that the record was corrected.
+#[test]
+fn corrections_stand_on_the_first_page() {
+    let mut record = fixtures::large();
+    record.remarks = vec!["The charge of 3 Mar 2026, 09:41 is corrected by record 91b2 77aa: misread.".into()];
+    let paper = read(&record);
+    assert!(paper.pages.len() > 1 && paper.pages[0].text().contains("is corrected by record 91b2 77aa: misread."));
+}
+
+/// A plate's strip with no row under it says nothing.
+#[test]
+fn cautions_are_not_parted_from_their_heading() {
+    for lines in 0..40 {
+        let mut record = fixtures::clean();
+        record.cautions = fixtures::over_trigger().cautions;
+        record.appliances[0].entries[0].note = "One more line. ".repeat(lines * 6);
+        for paper in [Paper::A4, Paper::Letter] {
+            let read = Read::read(&service_record(&record, paper).unwrap());
+            let page = read.pages.iter().find(|page| page.text().contains("Cautions acknowledged")).unwrap();
+            for caution in &record.cautions {
+                assert!(page.text().contains(&caution.at), "{lines} on {paper:?}: {}", page.text());
+            }
+        }
+    }
+}
+
 /// What is known by its net alone says why.
 #[test]
 fn nets_say_where_they_come_from() {

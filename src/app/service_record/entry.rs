@@ -161,7 +161,7 @@ fn level_to_reach(entry: &Entry, purpose: RecoveryPurpose, names: &Names<'_>) ->
     let day = entry.line.at.date;
     let Some(site) = names.site.versions.on(day) else { return String::new() };
     let level = recovery_level(&site.rulebooks, names.facts_at(entry), purpose, day);
-    level.map(|level| format!("{} ({})", level.level, level.source)).unwrap_or_default()
+    level.map(|level| format!("{} ({}: {})", level.level, level.source, level.why)).unwrap_or_default()
 }
 
 fn moved(entry: &Entry, way: Way, purpose: &str, transfer: &Transfer, level_required: String, names: &Names<'_>) -> TransferFacts {

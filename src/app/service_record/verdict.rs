@@ -274,9 +274,12 @@ impl Sight<'_> {
     }
 }
 
-/// `since 4 Sep 2025`: from when the days of a rate run; empty where they are cut to the most that count.
+/// `since 4 Sep 2025`: from when the days of a rate run, or that no more count.
 fn since_day(on: NaiveDate, days: i64, longest: i64) -> String {
-    let since = u64::try_from(days).ok().filter(|_| days < longest).and_then(|days| on.checked_sub_days(Days::new(days)));
+    if days >= longest {
+        return "the most that count".to_owned();
+    }
+    let since = u64::try_from(days).ok().and_then(|days| on.checked_sub_days(Days::new(days)));
     since.map(|since| format!("since {}", wording::day(since))).unwrap_or_default()
 }
 

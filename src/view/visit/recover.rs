@@ -8,9 +8,11 @@ use crate::gas;
 use crate::ledger::{Act, ApplianceId, RecoveryPurpose};
 use crate::measure::{CylinderLimit, Direction};
 use crate::quantity::Mass;
+use crate::rules::recovery_level;
 use crate::view::desk::Desk;
 use crate::view::shown::{self, Choice, Fact, Ready};
 use crate::view::{format, words};
+use chrono::NaiveDate;
 use serde::{Deserialize, Serialize};
 
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
@@ -195,7 +197,7 @@ impl Desk {
             room: room.figure,
             room_words: room.words,
             over_limit: room.over,
-            follows: follows(&standing),
+            follows: follows(&standing, form.purpose, today),
             level_reached: form.level_reached.clone(),
             level_after_waiting: form.level_after_waiting.clone(),
             refusal: prepared.map(|prepared| refusal(&prepared.refusals, words::cannot_be_recovered())).unwrap_or_default(),
@@ -260,8 +262,11 @@ fn room(form: &Form, cylinder: Option<&CylinderStanding>, limit: Option<&Cylinde
     }
 }
 
-fn follows(standing: &ApplianceStanding) -> Vec<Fact> {
-    let united_states = standing.site_facts.rulebooks.iter().any(|id| id.starts_with("us-"));
-    let level = if united_states { words::level_by_rule() } else { words::level_by_maker() };
-    vec![Fact::new(words::level_to_reach(), level)]
+/// The level that the law of the day asks of this recovery, else the maker's.
+fn follows(standing: &ApplianceStanding, purpose: RecoveryPurpose, today: NaiveDate) -> Vec<Fact> {
+    let asked = recovery_level(&standing.site_facts.rulebooks, &standing.facts, purpose, today);
+    vec![match asked {
+        Some(asked) => Fact::new(words::level_to_reach_by(&asked.source), asked.level),
+        None => Fact::new(words::level_to_reach(), words::level_by_maker()),
+    }]
 }

@@ -150,8 +150,8 @@ pub fn level_to_reach() -> String {
     "level to reach".to_owned()
 }
 
-pub fn level_by_rule() -> String {
-    "40 CFR 82.156, table 1, by gas and machine".to_owned()
+pub fn level_to_reach_by(source: &str) -> String {
+    format!("level to reach, {source}")
 }
 
 pub fn level_by_maker() -> String {
