@@ -4,7 +4,7 @@
 //! "Until 1 January" is read with 31 December as the last day.
 
 use super::book::read::{day, optional_day, optional_ratio};
-use super::book::{Dated, GasTest, Rulebook};
+use super::book::{GasTest, InForce, Rulebook};
 use super::own::rulebook;
 use super::scope::gas_refusal;
 use crate::gas::{self, Gas, GwpSet, Weighting};
@@ -123,7 +123,7 @@ fn charge_comes_to(tonnes: Ratio, gas: &Gas, facts: &ApplianceFacts, weights: We
 }
 
 /// Where nobody said what the equipment is, its category says what it is likest.
-fn equipment(facts: &ApplianceFacts) -> Equipment {
+pub(super) fn equipment(facts: &ApplianceFacts) -> Equipment {
     facts.equipment.unwrap_or(match facts.category {
         Category::ComfortCooling => Equipment::AirConditioning,
         Category::FireProtection => Equipment::FireProtection,

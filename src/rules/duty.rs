@@ -3,7 +3,7 @@
 mod checks;
 mod exceedance;
 
-use super::book::{Dated, DutyKind, DutyRow, Extension, Rulebook};
+use super::book::{DutyKind, DutyRow, Extension, InForce, Rulebook};
 use super::history::History;
 use super::rate::{LeakRate, Verdict};
 use super::scope::taking;

@@ -1,6 +1,6 @@
 //! Leak rates: both methods of 40 CFR 82.152, exact.
 
-use super::book::{Dated, RateRow, Rulebook, Trigger};
+use super::book::{InForce, RateRow, Rulebook, Trigger};
 use super::history::History;
 use super::scope::taking;
 use crate::ledger::{Act, ApplianceFacts, RateMethod};

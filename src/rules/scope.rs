@@ -1,6 +1,6 @@
 //! Whether a rulebook takes an appliance on a day, and why.
 
-use super::book::{Band, Basis, Dated, EquipmentTest, Exemption, GasTest, Rulebook, Scope};
+use super::book::{Band, Basis, EquipmentTest, Exemption, GasTest, InForce, Rulebook, Scope};
 use crate::gas::{self, Gas, UsGwp};
 use crate::ledger::{ApplianceFacts, Category, Equipment};
 use crate::quantity::{Mass, Ratio, decimal_text, floored_text};

@@ -2,8 +2,8 @@
 //! office must know to keep them, each point with its article.
 
 use super::assess::Assessment;
-use super::ban::{installation_bans, service_bans};
-use super::book::{Dated, Detection, Disposal, Release, Rulebook};
+use super::ban::{equipment, installation_bans, service_bans};
+use super::book::{Detection, Disposal, InForce, Release, Rulebook};
 use super::duty::DutyState;
 use super::loss::loss_entries;
 use super::own::rulebook;
@@ -109,7 +109,7 @@ fn detection_takes(book: &Rulebook, row: &Detection, facts: &ApplianceFacts) -> 
         |day: NaiveDate| row.installed_from.is_none_or(|from| from <= day) && row.installed_to.is_none_or(|to| day <= to);
     let dated = row.installed_from.is_some() || row.installed_to.is_some();
     (row.categories.is_empty() || row.categories.contains(&facts.category))
-        && (row.equipment.is_empty() || facts.equipment.is_some_and(|equipment| row.equipment.contains(&equipment)))
+        && (row.equipment.is_empty() || row.equipment.contains(&equipment(facts)))
         && row.charge_at_least.is_none_or(|least| facts.full_charge.is_some_and(|charge| charge >= least))
         && row.basis.zip(row.at_least).is_none_or(|(basis, least)| amount(basis, gas, facts, book).is_some_and(|amount| amount >= least))
         && (!dated || facts.installed_on.is_some_and(installed_within))

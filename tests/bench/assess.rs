@@ -25,7 +25,7 @@ fn main() {
     // `total` and not `sum`: in 10⁻¹⁴ kg a large store's masses leave 64 bits.
     let bare = rusqlite::Connection::open(&path).expect("SQLite opens it");
     let sum =
-        fastest(7, || bare.query_row("SELECT total(mass) FROM entries", [], |row| row.get::<_, f64>(0)).map(|sum| drop(black_box(sum))));
+        fastest(7, || bare.query_row("SELECT total(mass) FROM entries", [], |row| row.get::<_, f64>(0)).map(|sum| _ = black_box(sum)));
     let read = fastest(5, || store.lines().map(|lines| drop(black_box(lines))));
     let judged = fastest(5, || whole_pass(&store, on));
     println!("{appliances} appliances, {} entries", appliances * each);

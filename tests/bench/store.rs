@@ -7,11 +7,10 @@ use bubblepoint::app::testing::{CountedIds, SetClock};
 use bubblepoint::app::{App, ChargeInput, Common};
 use bubblepoint::ledger::{
     Act, Appliance, ApplianceFacts, ApplianceId, Category, ChargePurpose, Cylinder, CylinderFacts, CylinderId, CylinderKind, Detail, Entry,
-    EntryId, GasStatus, Line, Moment, Person, PersonId, RateMethod, Reading, RecoveryPurpose, Site, SiteFacts, SiteId, TestKind,
-    TestResult, Transfer, Versions, Visit, VisitId, VisitState, WeighingMode,
+    EntryId, GasStatus, Line, Moment, Person, PersonId, Reading, Site, SiteFacts, SiteId, Transfer, Versions, Visit, VisitId, VisitState,
+    WeighingMode,
 };
 use bubblepoint::quantity::{Mass, MassUnit, Weighing};
-use bubblepoint::rules::assess;
 use bubblepoint::store::{OpenMode, Store};
 use chrono::{DateTime, Days, NaiveDate, Utc};
 use rusqlite::{Connection, params};

@@ -16,7 +16,7 @@ use crate::ledger::{
 };
 use crate::measure::default_oil_factor;
 use crate::quantity::Mass;
-use crate::rules::{Dated, DutyKind, History, installation_bans, rulebook};
+use crate::rules::{DutyKind, History, InForce, installation_bans, rulebook};
 use crate::store::{StoreError, Writing};
 use chrono::NaiveDate;
 use std::collections::{BTreeMap, HashMap, HashSet};

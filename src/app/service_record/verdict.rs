@@ -2,7 +2,7 @@
 
 use super::wording;
 use crate::gas::{self, Weighting};
-use crate::ledger::{Act, Appliance, ApplianceFacts, ChargePurpose, Entry, EntryId, Line, RateMethod, Site, TestKind};
+use crate::ledger::{Act, Appliance, ApplianceFacts, Entry, EntryId, Line, Site, TestKind};
 use crate::quantity::{Mass, MassUnit, Ratio, decimal_text, parse_decimal, rounded_text};
 use crate::record::{DutyFacts, DutyStep, LeakRate, NoRate, Notice, RateInput, Verdict, WeightedAmount};
 use crate::rules::{self, Assessment, Duty, DutyState, Judgement, assess, loss_entries};
@@ -120,7 +120,7 @@ impl Sight<'_> {
         let charges = history.lines.iter().enumerate().filter(|(index, _)| has_rates && self.is_here(*index) && !history.counted[*index]);
         let no_rate = |(_, line): (usize, &&Line)| {
             let Act::Charge { purpose, transfer } = &line.act else { return None };
-            let (because, source) = why_no_rate(*purpose);
+            let (because, source) = rules::why_no_rate(*purpose);
             Some(NoRate { on: line.at.date, amount: self.mass(transfer.mass), because: because.to_owned(), source: source.to_owned() })
         };
         charges.filter_map(no_rate).collect()
@@ -216,27 +216,14 @@ impl Sight<'_> {
 
     /// Where the text allows more than one reading, the one that was taken.
     fn readings(&self) -> Vec<Notice> {
-        let methods: HashSet<RateMethod> = self
-            .assessment
-            .rulebooks
-            .iter()
-            .flat_map(|judgement| &judgement.rates)
-            .filter(|rate| self.is_here(rate.charge))
-            .map(|rate| rate.method)
-            .collect();
-        let mut notices = Vec::new();
-        if methods.contains(&RateMethod::Annualizing) {
-            notices.push(Notice {
-                text: "Days are counted from the latest day with any charge before this work, and never more than 365.".to_owned(),
-                source: "40 CFR 82.152, leak rate, annualizing method".to_owned(),
-            });
-        }
-        if methods.contains(&RateMethod::RollingAverage) {
-            notices.push(Notice {
-                text: "Counted is what was added on the 365 days up to the addition, or since the last follow-up test that counts."
-                    .to_owned(),
-                source: "40 CFR 82.152, leak rate, rolling average method".to_owned(),
-            });
+        let mut notices: Vec<Notice> = Vec::new();
+        for rate in self.assessment.rulebooks.iter().flat_map(|judgement| &judgement.rates).filter(|rate| self.is_here(rate.charge)) {
+            for reading in rules::readings(&self.assessment.history, rate) {
+                let notice = Notice { text: wording::sentence(&reading.text), source: reading.source };
+                if !notices.contains(&notice) {
+                    notices.push(notice);
+                }
+            }
         }
         notices.extend(
             self.assessment.rulebooks.iter().filter(|judgement| judgement.applies).flat_map(|judgement| self.of_the_text(judgement)),
@@ -247,7 +234,8 @@ impl Sight<'_> {
     /// How far the law itself was read, and how long this record is kept.
     fn of_the_text(&self, judgement: &Judgement) -> Vec<Notice> {
         let Some(book) = rules::rulebook(&judgement.id) else { return Vec::new() };
-        let unread = (!book.confidence.is_empty()).then(|| Notice { text: format!("{}.", book.confidence), source: book.title.clone() });
+        let unread =
+            (!book.confidence.is_empty()).then(|| Notice { text: wording::sentence(&book.confidence), source: book.title.clone() });
         let kept = book
             .retention(self.assessment.on)
             .map(|row| Notice { text: format!("Kept for {} years: {}.", row.years, row.what), source: row.source.clone() });
@@ -281,19 +269,4 @@ fn since_day(on: NaiveDate, days: i64, longest: i64) -> String {
     }
     let since = u64::try_from(days).ok().and_then(|days| on.checked_sub_days(Days::new(days)));
     since.map(|since| format!("since {}", wording::day(since))).unwrap_or_default()
-}
-
-fn why_no_rate(purpose: ChargePurpose) -> (&'static str, &'static str) {
-    const RATE: &str = "40 CFR 82.157(b), 84.106(b)";
-    match purpose {
-        ChargePurpose::Installation => ("charged at installation", RATE),
-        ChargePurpose::FactoryCharge => ("factory charge", RATE),
-        ChargePurpose::Trim => ("trimmed at commissioning", RATE),
-        ChargePurpose::Retrofit => ("charged after a retrofit", RATE),
-        ChargePurpose::Seasonal => ("returned for the season; as much was recovered before", "40 CFR 82.152, seasonal variance"),
-        ChargePurpose::Mothball => ("put back after mothballing; as much was recovered before", "40 CFR 82.152, mothball"),
-        ChargePurpose::Returned | ChargePurpose::Replacement | ChargePurpose::Leak | ChargePurpose::SameLeak => {
-            ("put back; as much was recovered in this work", "40 CFR 82.152, leak rate")
-        }
-    }
 }

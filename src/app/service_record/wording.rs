@@ -11,6 +11,12 @@ pub fn day(day: NaiveDate) -> String {
     day.format("%-d %b %Y").to_string()
 }
 
+/// A clause as a sentence: `Days are counted.`
+pub fn sentence(clause: &str) -> String {
+    let mut letters = clause.chars();
+    letters.next().map(|first| format!("{}{}.", first.to_uppercase(), letters.as_str())).unwrap_or_default()
+}
+
 /// `09:40`; empty where nobody said.
 pub fn clock(minute: Option<u16>) -> String {
     minute.map(|minute| format!("{:02}:{:02}", minute / 60, minute % 60)).unwrap_or_default()

@@ -4,7 +4,7 @@ use super::answer::{exact, moved};
 use crate::cli::table::TextTable;
 use crate::ledger::Act;
 use crate::quantity::{Ratio, rounded_text};
-use crate::rules::{Assessment, LeakRate, monthly_disposals, points};
+use crate::rules::{Assessment, LeakRate, monthly_disposals, points, readings, why_no_rate};
 use chrono::NaiveDate;
 
 pub fn text(on: NaiveDate, assessments: &[Assessment], explain: bool) -> String {
@@ -124,13 +124,16 @@ pub fn explanations(assessment: &Assessment) -> Vec<String> {
                 rate.trigger_source,
                 rate.source,
             ));
+            let readings = readings(history, rate).into_iter();
+            lines.extend(readings.map(|reading| format!("{}: {} {} ({})", judgement.id, rate.on, reading.text, reading.source)));
             lines.extend(rate.notes.iter().map(|note| format!("{}: {} {note}", judgement.id, rate.on)));
         }
     }
     lines.extend(points(assessment).into_iter().map(|point| format!("{}: {} ({})", point.rulebook, point.text, point.source)));
     for (index, line) in history.lines.iter().enumerate() {
         if let (Act::Charge { purpose, .. }, false, Some(mass)) = (&line.act, history.counted[index], moved(&line.act)) {
-            lines.push(format!("{} charge of {} kg asked for no rate: {purpose}", line.at.date, mass.kg_text()));
+            let (because, source) = why_no_rate(*purpose);
+            lines.push(format!("{} charge of {} kg asked for no rate: {purpose}; {because} ({source})", line.at.date, mass.kg_text()));
         }
     }
     lines

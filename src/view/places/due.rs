@@ -5,7 +5,7 @@ use super::overview::Judged;
 use super::{First, Go, Office, Place, id, plant};
 use crate::app::App;
 use crate::ledger::{OpenLeak, VisitId};
-use crate::rules::{self, Dated as _, Duty, DutyKind, DutyState};
+use crate::rules::{self, Duty, DutyKind, DutyState, InForce as _};
 use crate::view::shown::{Choice, Fact, Line, Verdict};
 use crate::view::{format, words};
 use chrono::{Days, NaiveDate};

@@ -3,7 +3,7 @@
 use crate::app::ApplianceStanding;
 use crate::ledger::{Act, EntryId, Line, RateMethod};
 use crate::quantity::MassUnit;
-use crate::rules::{self, Assessment, Duty, DutyKind, DutyState, Judgement, LeakRate, assess, points, rulebook};
+use crate::rules::{self, Assessment, Duty, DutyKind, DutyState, Judgement, LeakRate, assess, points, readings, rulebook};
 use crate::view::bars::{rate_bar, verdict};
 use crate::view::shown::{Fact, Rate, Reason, Verdict};
 use crate::view::{format, shown, words};
@@ -202,6 +202,9 @@ impl Sight<'_> {
             inputs.push(Fact::new("counted from", format::full_day(from)));
         }
         inputs.extend(rate.notes.iter().map(|note| Fact::new("taken for granted", note)));
+        // The first reading is the method's own, which the text says already.
+        let readings = readings(&self.assessment.history, rate).into_iter().skip(1);
+        inputs.extend(readings.map(|reading| Fact::new("reading taken", reading.text)));
         inputs.push(Fact::new("leak rate", format!("{} %", format::percent(rate.percent))));
         if let Some(band) = &rate.error {
             inputs.push(Fact::new("weighing error, k = 2", words::plus_minus(&format!("{} %", band.percent))));
