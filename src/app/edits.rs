@@ -253,6 +253,9 @@ fn sound_cylinder(facts: CylinderFacts) -> Result<CylinderFacts, AppError> {
     if !facts.tare.is_positive() {
         return Err(AppError::input("tare", "The tare is more than nothing."));
     }
+    if let Some(found) = &facts.tare_found {
+        positive("tare found", found)?;
+    }
     if facts.gross.is_some_and(|gross| gross < facts.tare) {
         return Err(AppError::input("gross", "The gross weight is less than the tare. Look at both."));
     }

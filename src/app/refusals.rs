@@ -33,6 +33,9 @@ pub enum Kind {
     OutOfUse,
     NotRefillable,
     Overdue,
+    Damaged,
+    TareLost,
+    OtherOwner,
     OverLimit,
     NoLimit,
     ContentUnknown,
@@ -82,6 +85,8 @@ pub(super) const STOP_BEFORE: &str = " Stop before that; if it has happened, wri
 const SAME_OWNER: &str = "40 CFR 82.156(h), 82.154(d)";
 const EU_RECOVERED: &str = "Regulation (EU) 2024/573 Art. 8(6)";
 const INDIRECT: &str = "common practice";
+const DAMAGED: &str = "49 CFR 173.301(a)(2), 180.205(d)";
+const TARE_LOST: &str = "49 CFR 180.209(c)";
 const OVERDUE: &str = "49 CFR 180.205(c), 173.301(a)(6)";
 const NON_REFILLABLE: &str = "49 CFR 178.65";
 
@@ -220,10 +225,16 @@ fn recovered_gas(standing: &ApplianceStanding, cylinder: &CylinderStanding, purp
         return Some(Refusal::firm(Kind::RecoveredGas, sentence, EU_RECOVERED));
     }
     if under("us-") {
-        if purpose == ChargePurpose::Returned {
+        let owner = standing.site_facts.owner.trim();
+        if cylinder.owners.len() > 1 {
+            let owners = cylinder.owners.iter().map(String::as_str).collect::<Vec<_>>().join(" and ");
+            let sentence = format!("Cylinder {name} holds gas recovered from {owners}, which goes only to a reclaimer.");
+            return Some(Refusal::firm(Kind::RecoveredGas, sentence, SAME_OWNER));
+        }
+        let known = cylinder.owners.first().map(|known| known.trim());
+        if purpose == ChargePurpose::Returned && known.is_none_or(|known| owner.is_empty() || known.eq_ignore_ascii_case(owner)) {
             return None;
         }
-        let owner = standing.site_facts.owner.trim();
         let stated = cylinder.facts.gas_owner.trim();
         let gas_owner = if stated.is_empty() { cylinder.recovered_from.as_deref().unwrap_or("") } else { stated };
         if !owner.is_empty() && owner.eq_ignore_ascii_case(gas_owner) {
@@ -267,7 +278,9 @@ pub fn of_recovery(
         let sentence = format!("Cylinder {name} was to be requalified by {due}. It may be emptied, not filled.");
         refusals.push(Refusal::firm(Kind::Overdue, sentence, OVERDUE));
     }
+    refusals.extend(of_condition(cylinder));
     let holds_some = cylinder.balance.content.mass().is_none_or(Mass::is_positive);
+    refusals.extend(of_owners(standing, cylinder).filter(|_| holds_some));
     if cylinder.balance.is_mixed() && holds_some {
         let sentence = format!("Cylinder {name} holds mixed gas: what is added to it cannot be used again.");
         refusals.push(Refusal::judgement(Kind::MixedGas, sentence, "common practice"));
@@ -286,6 +299,44 @@ pub fn of_recovery(
         }
     }
     refusals
+}
+
+/// A cylinder that a look or its own weight says is not sound: tested first, never filled before.
+fn of_condition(cylinder: &CylinderStanding) -> Vec<Refusal> {
+    let mut refusals = Vec::new();
+    let (name, facts) = (&cylinder.cylinder.name, &cylinder.facts);
+    let damage = facts.damage.trim();
+    if !damage.is_empty() {
+        let sentence = format!("Cylinder {name} is damaged: {damage}. It is tested before it is filled again; it may be emptied.");
+        refusals.push(Refusal::firm(Kind::Damaged, sentence, DAMAGED));
+    }
+    let found = facts.tare_found.as_ref().and_then(|found| found.mass().ok());
+    // Five per cent or more of the stamped tare.
+    if let Some(found) = found.filter(|found| (facts.tare - *found).units() * 20 >= facts.tare.units()) {
+        let sentence = format!(
+            "Cylinder {name} weighs {} kg empty, 5 % or more below its stamped tare of {} kg. It is requalified before it is filled again.",
+            found.kg_text(),
+            facts.tare.kg_text(),
+        );
+        refusals.push(Refusal::firm(Kind::TareLost, sentence, TARE_LOST));
+    }
+    refusals
+}
+
+/// Gas of several owners in one cylinder can be given back to none of them.
+fn of_owners(standing: &ApplianceStanding, cylinder: &CylinderStanding) -> Option<Refusal> {
+    let united_states = standing.site_facts.rulebooks.iter().any(|id| id.starts_with("us-"));
+    let owner = standing.site_facts.owner.trim();
+    let others: Vec<&str> = cylinder.owners.iter().map(String::as_str).filter(|other| !other.trim().eq_ignore_ascii_case(owner)).collect();
+    if !united_states || owner.is_empty() || others.is_empty() {
+        return None;
+    }
+    let sentence = format!(
+        "Cylinder {} holds gas of {}; with gas of {owner} in it, it goes only to a reclaimer.",
+        cylinder.cylinder.name,
+        others.join(" and "),
+    );
+    Some(Refusal::judgement(Kind::OtherOwner, sentence, SAME_OWNER))
 }
 
 /// Filled too full, or with a gas whose pressure it is not made for, a cylinder bursts. What cannot be shown to
@@ -557,7 +608,7 @@ pub(super) mod tests {
         let cylinder = Cylinder { id: CylinderId(Uuid::nil()), name: "S-204".to_owned(), versions: Versions::always(facts.clone()) };
         let balance =
             CylinderBalance { content: Content::Known(kg(content)), gas: gas.map(str::to_owned), status, ..CylinderBalance::UNKNOWN };
-        CylinderStanding { cylinder, facts, balance, recovered_from: None }
+        CylinderStanding { cylinder, facts, balance, recovered_from: None, owners: std::collections::BTreeSet::new() }
     }
 
     impl CylinderStanding {
@@ -632,8 +683,22 @@ pub(super) mod tests {
         assert_eq!(charge(&plant, &recovered, "4"), []);
         recovered.facts.gas_owner = "Ice Rink Trust".to_owned();
         assert_eq!(charge(&plant, &recovered, "4"), [(Kind::RecoveredGas, false)]);
-        let back = of_charge(&plant, Some(&recovered), ChargePurpose::Returned, kg("4"), None, day("2026-06-01"));
-        assert_eq!(back, []);
+        let back = |cylinder: &CylinderStanding| {
+            kinds(of_charge(&plant, Some(cylinder), ChargePurpose::Returned, kg("4"), None, day("2026-06-01")))
+        };
+        assert_eq!(back(&recovered), []);
+        // Gas that is known to be another's is not given back to this one.
+        recovered.owners = ["Ice Rink Trust".to_owned()].into();
+        assert_eq!(back(&recovered), [(Kind::RecoveredGas, false)]);
+        recovered.owners = ["Harbour Fish Ltd".to_owned()].into();
+        assert_eq!(back(&recovered), []);
+        // 40 CFR 82.154(d): gas of two owners goes to a reclaimer alone.
+        recovered.owners = ["Harbour Fish Ltd".to_owned(), "Ice Rink Trust".to_owned()].into();
+        recovered.facts.gas_owner.clear();
+        assert_eq!(
+            (back(&recovered), charge(&plant, &recovered, "4")),
+            (vec![(Kind::RecoveredGas, false)], vec![(Kind::RecoveredGas, false)])
+        );
     }
 
     #[test]
@@ -676,6 +741,13 @@ pub(super) mod tests {
         assert_eq!(with(&|c| c.facts.requalify_by = Some(day("2026-06-01"))), []);
         assert_eq!(with(&|c| c.facts.kind = CylinderKind::NonRefillable), [(Kind::NotRefillable, false)]);
         assert_eq!(with(&|c| c.facts.scrapped = Some("valve bent".to_owned())), [(Kind::OutOfUse, false)]);
+        assert_eq!(with(&|c| c.facts.damage = "dent at the foot".to_owned()), [(Kind::Damaged, false)]);
+        // 5 % of a tare of 10 kg.
+        let found = |kilograms: &str| Some(Weighing::new(kilograms, MassUnit::Kilogram));
+        assert_eq!(with(&|c| c.facts.tare_found = found("9.5")), [(Kind::TareLost, false)]);
+        assert_eq!(with(&|c| c.facts.tare_found = found("9.51")), []);
+        assert_eq!(with(&|c| c.owners = ["Ice Rink Trust".to_owned()].into()), [(Kind::OtherOwner, true)]);
+        assert_eq!(with(&|c| c.owners = ["harbour fish ltd".to_owned()].into()), []);
         assert_eq!(with(&|c| c.balance.gas = Some("R-22".to_owned())), [(Kind::OtherGas, false)]);
         assert_eq!(with(&|c| c.balance.status = Some(GasStatus::Mixed)), [(Kind::MixedGas, true)]);
         // 49 CFR 173.301(a)(8): R-410A reaches 484 psig at 55 °C; 350 psig allow 437.5.

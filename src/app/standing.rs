@@ -4,14 +4,14 @@
 use super::{App, AppError};
 use crate::ledger::{
     Act, Appliance, ApplianceFacts, ApplianceId, Cylinder, CylinderBalance, CylinderFacts, CylinderId, EntryId, KnownGross, Line, Movement,
-    MovementKind, Registers, Site, SiteFacts, cylinder_balance, follow_cylinder,
+    MovementKind, Registers, Site, SiteFacts, follow_cylinder,
 };
 use crate::measure::{ScaleReading, Uncertainty};
 use crate::quantity::Mass;
 use crate::rules::History;
 use crate::store::{Store, StoreError};
 use chrono::NaiveDate;
-use std::collections::{HashMap, HashSet};
+use std::collections::{BTreeSet, HashMap, HashSet};
 
 /// An appliance on a day.
 #[derive(Debug, Clone)]
@@ -37,6 +37,8 @@ pub struct CylinderStanding {
     pub balance: CylinderBalance,
     /// All gas in it was recovered from appliances of one owner: that owner.
     pub recovered_from: Option<String>,
+    /// All known owners of what was recovered into it since it was last empty.
+    pub owners: BTreeSet<String>,
 }
 
 /// A first reading that differs from the last gross known by more than both
@@ -144,8 +146,9 @@ pub(super) fn cylinder_standing(
 #[derive(Debug, Clone)]
 pub(super) struct HeldBefore {
     pub balance: CylinderBalance,
-    /// As [`CylinderStanding::recovered_from`].
+    /// As in [`CylinderStanding`].
     pub recovered_from: Option<String>,
+    pub owners: BTreeSet<String>,
 }
 
 /// What each of these cylinders held just before each entry that moved its gas.
@@ -165,14 +168,11 @@ pub(super) fn held_before_entries(
     let mut held = HashMap::new();
     for (id, movements) in by_cylinder(&movements) {
         let Some(cylinder) = registers.cylinder(id) else { continue };
-        let mut owners: HashSet<&str> = HashSet::new();
-        let origins = &origins;
+        let mut owners = Owners::of(cylinder);
         follow_cylinder(cylinder, &movements, NaiveDate::MAX, &gas_of, &mut |movement, balance| {
-            let recovered_from = sole_owner(cylinder, &owners);
-            held.insert(movement.entry, HeldBefore { balance: balance.clone(), recovered_from });
-            if matches!(movement.kind, MovementKind::Into(_)) {
-                owners.insert(origins.get(&movement.entry).map_or("", |(_, owner)| owner.as_str()));
-            }
+            let before = HeldBefore { balance: balance.clone(), recovered_from: owners.sole(), owners: owners.known() };
+            held.insert(movement.entry, before);
+            owners.take(movement, balance, &origins);
         });
     }
     Ok(held)
@@ -217,24 +217,51 @@ fn origins(registers: &Registers, lines: &[Line], movements: &[Movement]) -> Ori
 
 fn stand(cylinder: Cylinder, movements: &[Movement], on: NaiveDate, origins: &Origins) -> CylinderStanding {
     let gas_of = |movement: &Movement| origins.get(&movement.entry).map(|(gas, _)| gas.clone());
-    let balance = cylinder_balance(&cylinder, movements, on, &gas_of);
+    let mut owners = Owners::of(&cylinder);
+    let balance = follow_cylinder(&cylinder, movements, on, &gas_of, &mut |movement, balance| owners.take(movement, balance, origins));
     let facts = cylinder.versions.on(on).unwrap_or_else(|| &cylinder.versions.first().facts).clone();
-    let owners: HashSet<&str> = movements
-        .iter()
-        .filter(|movement| matches!(movement.kind, MovementKind::Into(_)))
-        .map(|movement| origins.get(&movement.entry).map_or("", |(_, owner)| owner.as_str()))
-        .collect();
-    let recovered_from = sole_owner(&cylinder, &owners);
-    CylinderStanding { facts, balance, recovered_from, cylinder }
+    CylinderStanding { facts, balance, recovered_from: owners.sole(), owners: owners.known(), cylinder }
 }
 
-/// The one from whose appliances all gas in a cylinder was recovered.
-fn sole_owner(cylinder: &Cylinder, owners: &HashSet<&str>) -> Option<String> {
-    // Gas that was in it from the beginning is of whoever the register says.
-    let from_the_beginning = cylinder.versions.first().facts.refrigerant.is_some();
-    let mut owners = owners.iter();
-    match (from_the_beginning, owners.next(), owners.next()) {
-        (false, Some(owner), None) if !owner.is_empty() => Some((*owner).to_owned()),
-        _ => None,
+/// Whose recovered gas is in a cylinder.
+struct Owners {
+    /// Gas that was in it from the beginning is of whoever the register says.
+    from_the_beginning: bool,
+    /// Empty for an owner that nobody wrote down.
+    names: BTreeSet<String>,
+}
+
+impl Owners {
+    fn of(cylinder: &Cylinder) -> Self {
+        Self { from_the_beginning: cylinder.versions.first().facts.refrigerant.is_some(), names: BTreeSet::new() }
+    }
+
+    /// `before` is what the cylinder held before the movement: gas in an empty one is nobody's but its giver's.
+    fn take(&mut self, movement: &Movement, before: &CylinderBalance, origins: &Origins) {
+        let filled = matches!(movement.kind, MovementKind::Into(_) | MovementKind::Bought { .. });
+        if filled && before.content.mass().is_some_and(|held| !held.is_positive()) {
+            *self = Self { from_the_beginning: false, names: BTreeSet::new() };
+        }
+        match movement.kind {
+            MovementKind::Into(_) => {
+                let owner = origins.get(&movement.entry).map_or("", |(_, owner)| owner.trim());
+                if !self.names.iter().any(|known| known.eq_ignore_ascii_case(owner)) {
+                    self.names.insert(owner.to_owned());
+                }
+            }
+            // A supplier's gas has no owner before.
+            MovementKind::Bought { .. } => self.from_the_beginning = true,
+            _ => {}
+        }
+    }
+
+    /// The one from whose appliances all of it was recovered.
+    fn sole(&self) -> Option<String> {
+        let sole = self.names.first().filter(|owner| self.names.len() == 1 && !owner.is_empty())?;
+        (!self.from_the_beginning).then(|| sole.clone())
+    }
+
+    fn known(&self) -> BTreeSet<String> {
+        self.names.iter().filter(|owner| !owner.is_empty()).cloned().collect()
     }
 }

@@ -227,6 +227,12 @@ pub struct CylinderFacts {
     pub service_pressure_psig: Option<String>,
     pub test_pressure_bar: Option<String>,
     pub requalify_by: Option<NaiveDate>,
+    /// What a look at it found wrong: crack, leak, dent, bulge, bad valve, rust, fire or heat. Empty: nothing.
+    #[serde(default, skip_serializing_if = "String::is_empty")]
+    pub damage: String,
+    /// What it weighed when it was last weighed empty, beside the tare stamped on it.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub tare_found: Option<Weighing>,
     /// Whose cylinder.
     pub owner: String,
     /// Whose gas.
@@ -257,6 +263,8 @@ impl CylinderFacts {
             service_pressure_psig: None,
             test_pressure_bar: None,
             requalify_by: None,
+            damage: String::new(),
+            tare_found: None,
             owner: String::new(),
             gas_owner: String::new(),
             location: String::new(),

@@ -1,7 +1,8 @@
 //! What a cylinder holds and may take, from import to the day's visits.
 
 use crate::support::plant::{charge, gross, lb, plant, recover, zeroed};
-use bubblepoint::ledger::{Content, CylinderFacts, CylinderId, GasStatus};
+use bubblepoint::app::{AppError, ChargeInput, Common, Kind, NewAppliance, NewSite, RecoverInput};
+use bubblepoint::ledger::{Category, ChargePurpose, Content, CylinderFacts, CylinderId, GasStatus, SiteFacts};
 use bubblepoint::measure::{LimitKind, default_oil_factor};
 use bubblepoint::quantity::{Mass, Ratio};
 use chrono::Duration;
@@ -84,4 +85,34 @@ fn room_for_oil_is_left_in_recovered_gas_alone() {
     assert_eq!((limit(plant.recovery).oil_factor, limit(plant.supply).oil_factor), (Ratio::new(85, 100), Ratio::from_integer(1)));
     let standing = app.cylinder_standing(plant.recovery, app.today()).unwrap();
     assert_eq!((standing.balance.heel, standing.balance.status), (Some(Mass::ZERO), Some(GasStatus::Recovered)));
+}
+
+/// 40 CFR 82.154(d): what was recovered from two owners can be given back to neither.
+#[test]
+fn gas_of_two_owners_goes_to_a_reclaimer_alone() {
+    let plant = plant();
+    let app = &plant.app;
+    let facts = SiteFacts { owner: "Ice Rink Trust".to_owned(), ..SiteFacts::under(vec!["us-82f".to_owned()]) };
+    let rink = app.add_site(NewSite { name: "Rink".to_owned(), facts }).unwrap();
+    let new = NewAppliance {
+        site: rink,
+        name: "IR-1".to_owned(),
+        category: Category::IndustrialProcessRefrigeration,
+        refrigerant: "R-22".to_owned(),
+        full_charge: Some(lb("100")),
+    };
+    let sheet = app.add_appliance(&new).unwrap();
+    let visit = plant.begin();
+    app.recover(visit.id, plant.appliance, recover(plant.recovery, gross("25", "35"))).unwrap();
+    let other = app.begin_visit(rink, plant.ada).unwrap();
+    let input = recover(plant.recovery, gross("35", "40"));
+    let Err(AppError::Refused(refused)) = app.recover(other.id, sheet, input.clone()) else { panic!("refused") };
+    assert_eq!(refused.iter().map(|refusal| refusal.kind).collect::<Vec<_>>(), [Kind::OtherOwner]);
+    let common = Common { reason: "the only cylinder here; it goes for reclamation".to_owned(), ..Common::default() };
+    app.recover(other.id, sheet, RecoverInput { common: common.clone(), ..input }).unwrap();
+    let owners = app.cylinder_standing(plant.recovery, app.today()).unwrap().owners;
+    assert_eq!(owners.iter().map(String::as_str).collect::<Vec<_>>(), ["Harbour Fish Ltd", "Ice Rink Trust"]);
+    let back = ChargeInput { common, purpose: ChargePurpose::Returned, ..charge(plant.recovery, gross("40", "38")) };
+    let Err(AppError::Refused(refused)) = app.charge(visit.id, plant.appliance, back) else { panic!("refused") };
+    assert!(refused.iter().any(|refusal| refusal.kind == Kind::RecoveredGas && !refusal.judgement), "{refused:?}");
 }

@@ -245,18 +245,19 @@ impl<'a> Cylinders<'a> {
 
     fn before(&mut self, entry: EntryId, cylinder: Option<CylinderId>, date: NaiveDate) -> Option<&CylinderStanding> {
         let cylinder = *self.known.get(&cylinder?)?;
-        let HeldBefore { balance, recovered_from } = self.held.remove(&entry)?;
+        let HeldBefore { balance, recovered_from, owners } = self.held.remove(&entry)?;
         let facts: &CylinderFacts = cylinder.versions.on(date).unwrap_or_else(|| &cylinder.versions.first().facts);
         let standing = self.standing.entry(cylinder.id).or_insert_with(|| CylinderStanding {
             cylinder: cylinder.clone(),
             facts: facts.clone(),
             balance: balance.clone(),
             recovered_from: None,
+            owners: std::collections::BTreeSet::new(),
         });
         if standing.facts != *facts {
             standing.facts.clone_from(facts);
         }
-        (standing.balance, standing.recovered_from) = (balance, recovered_from);
+        (standing.balance, standing.recovered_from, standing.owners) = (balance, recovered_from, owners);
         Some(standing)
     }
 }

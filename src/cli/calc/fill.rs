@@ -286,6 +286,33 @@ mod tests {
     }
 
     #[test]
+    fn the_binding_limit_is_named() {
+        let binds = |gas: &str, water: &str| {
+            let answer = answer(&format!("--refrigerant {gas} --water-capacity {water}"));
+            (answer["binds"].as_str().unwrap_or("none").to_owned(), answer["permitted_net_kg"].as_str().unwrap_or("").to_owned())
+        };
+        let told = |name: &str, net: &str| (name.to_owned(), net.to_owned());
+        // 0.872 kg/l by P200; 80 % at 25 °C would allow 24.9 kg and burst it.
+        assert_eq!(binds("R-125", "26.2l"), told("ADR filling ratio", "22.848"));
+        assert_eq!(binds("R-125", "47.7lb"), told("not full of liquid at 55 °C", "20.044"));
+        for gas in ["R-404A", "R-410A", "R-507A", "R-143a"] {
+            assert_eq!(binds(gas, "26.2l").0, "ADR filling ratio", "{gas}");
+        }
+        for gas in ["R-32", "R-134a", "R-22", "R-1234yf"] {
+            assert_eq!(binds(gas, "26.2l").0, "80 % of the volume at 25 °C", "{gas}");
+        }
+        assert_eq!(binds("R-744", "20lb").0, "filling density for this gas");
+        assert_eq!(binds("R-23", "20lb"), told("none", ""));
+    }
+
+    #[test]
+    fn a_cylinder_that_a_table_names_for_the_gas() {
+        let rating = |words: &str| answer(&format!("--refrigerant R-744 --water-capacity 26.2l {words}"))["rating"]["suffices"].clone();
+        assert_eq!((rating("--test-pressure 250barg"), rating("--test-pressure 48barg")), (json!(true), json!(false)));
+        assert_eq!((rating("--law 49cfr --service-pressure 1800psig"), rating("--law 49cfr")), (json!(true), Value::Null));
+    }
+
+    #[test]
     fn unsound_cylinders_are_refused() {
         for line in [
             "--refrigerant R-22 --water-capacity 0l",

@@ -157,6 +157,8 @@ pub(super) fn cylinder_row(fields: &mut Fields) -> CylinderRow {
                 .number("test_pressure_bar", GaugePressure::from_bar_text)
                 .and_then(|pressure| decimal_text(pressure.bar())),
             requalify_by: fields.day("requalify_by"),
+            damage: String::new(),
+            tare_found: None,
             owner: fields.text("owner").to_owned(),
             gas_owner: fields.text("gas_owner").to_owned(),
             location: fields.text("where").to_owned(),

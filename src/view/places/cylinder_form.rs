@@ -89,10 +89,16 @@ impl Office {
         let name = form.trimmed("identification");
         let known = changed.and_then(|id| self.cylinders.all.iter().find(|known| known.cylinder.id == id));
         let facts = match known.map(|known| known.cylinder.versions.latest()) {
-            Some(last) if facts.gross.is_none() => {
-                CylinderFacts { gross: last.gross, gross_written: last.gross_written.clone(), weighed: last.weighed, ..facts }
+            None => facts,
+            // What this form does not ask for stays as it was.
+            Some(last) => {
+                let facts = CylinderFacts { damage: last.damage.clone(), tare_found: last.tare_found.clone(), ..facts };
+                if facts.gross.is_some() {
+                    facts
+                } else {
+                    CylinderFacts { gross: last.gross, gross_written: last.gross_written.clone(), weighed: last.weighed, ..facts }
+                }
             }
-            _ => facts,
         };
         let done = match changed {
             Some(id) => app.change_cylinder(id, facts, self.today, "").map(|()| id),
