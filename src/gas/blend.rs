@@ -7,6 +7,7 @@ use super::substance::{EuListing, GwpSet, Substance, substance};
 use super::table::{self, Row};
 use crate::quantity::{Ratio, parse_decimal};
 use num_traits::{One, Zero};
+use std::collections::HashMap;
 use std::sync::LazyLock;
 
 /// What a gas is in the catalogue for.
@@ -212,6 +213,10 @@ fn composition(row: &Row) -> Option<Composition> {
 static GASES: LazyLock<Vec<Gas>> =
     LazyLock::new(|| table::rows(include_str!("data/properties.csv")).iter().filter_map(Gas::read).collect());
 
+/// Whole stores are judged by names: each looks its gas up many times.
+static BY_DESIGNATION: LazyLock<HashMap<&'static str, &'static Gas>> =
+    LazyLock::new(|| GASES.iter().map(|gas| (gas.designation.as_str(), gas)).collect());
+
 /// The whole catalogue, pure gases first.
 pub fn all() -> &'static [Gas] {
     &GASES
@@ -220,7 +225,7 @@ pub fn all() -> &'static [Gas] {
 /// Finds a gas by its designation without regard to case, blanks and hyphens: `r448a`, `R 448 A`, `R-448A`.
 pub fn find(name: &str) -> Option<&'static Gas> {
     // Registers hold designations as the catalogue writes them; only what people type needs the second look.
-    GASES.iter().find(|gas| gas.designation == name).or_else(|| {
+    BY_DESIGNATION.get(name).copied().or_else(|| {
         let wanted = plain(name);
         GASES.iter().find(|gas| plain(&gas.designation) == wanted)
     })

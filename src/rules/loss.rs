@@ -85,15 +85,23 @@ pub fn loss_between(history: &History, weights: Weighting, from: NaiveDate, to: 
             _ => {}
         }
     }
+    // Each gas is weighed once: fractions are exact, and dear.
+    let mut by_gas: Vec<(String, Mass)> = Vec::new();
     for entry in loss_entries(history).into_iter().filter(|entry| within(entry.line)) {
         loss.lost += entry.mass;
         loss.assumed_full |= entry.assumed_full;
-        let gas = gas::find(&entry.refrigerant);
-        loss.odp_kg = loss.odp_kg.zip(gas).map(|(sum, gas)| sum + entry.mass.kg() * gas.odp());
+        match by_gas.iter_mut().find(|(name, _)| *name == entry.refrigerant) {
+            Some((_, sum)) => *sum += entry.mass,
+            None => by_gas.push((entry.refrigerant, entry.mass)),
+        }
+    }
+    for (name, mass) in by_gas {
+        let gas = gas::find(&name);
+        loss.odp_kg = loss.odp_kg.zip(gas).map(|(sum, gas)| sum + mass.kg() * gas.odp());
         loss.co2e_t = loss
             .co2e_t
             .zip(gas.and_then(|gas| gas.weight(weights)))
-            .map(|(sum, weight)| sum + entry.mass.kg() * weight / Ratio::from_integer(1000));
+            .map(|(sum, weight)| sum + mass.kg() * weight / Ratio::from_integer(1000));
     }
     loss
 }

@@ -34,7 +34,7 @@ fn main() {
     println!("assess            {judged:>10.2?}  {:>6.1}x the sum (aim 20x)", ratio(judged, sum));
 
     // 10,000 appliances and 500,000 entries in the end.
-    let (wide, deep) = if quick { ((20, 10), (10, 20)) } else { ((2_500, 50), (250, 125)) };
+    let (wide, deep) = if quick { ((100, 10), (20, 50)) } else { ((2_500, 50), (250, 125)) };
     println!("more appliances");
     growth(folder.path(), on, |times| (wide.0 * times, wide.1));
     println!("longer logs");
