@@ -38,7 +38,7 @@ pub struct RecordArgs {
     /// Print again a copy that was made; without it the filed original, which is copy 1
     #[arg(long, value_name = "NUMBER", conflicts_with_all = ["all", "new_copy"], value_parser = clap::value_parser!(u32).range(1..))]
     copy: Option<u32>,
-    /// Without it, letter at a site under United States rules, else A4
+    /// Without it, as set for the window, else letter at a site under United States rules and A4 elsewhere
     #[arg(long, value_enum)]
     paper: Option<PaperSize>,
 }

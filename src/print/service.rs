@@ -433,7 +433,7 @@ fn readings(flow: &mut Flow, fonts: &Fonts, part: &AppliancePart) {
     for (index, reading) in part.readings.iter().enumerate() {
         let line = statement(fonts, inner, &reading.text, &reading.source);
         if index == 0 {
-            flow.put_together(vec![heading(fonts, inner, "Readings of the law taken here", ""), line]);
+            flow.put_together(vec![heading(fonts, inner, "The law, as it is read here", ""), line]);
         } else {
             flow.put(line);
         }

@@ -1,13 +1,13 @@
 //! What stands on a record's paper, its copies, and telling a saved one later.
 
-use crate::support::plant::{Plant, charge, gross, lb, plant, plant_at, recover, signature};
+use crate::support::plant::{Plant, charge, gross, lb, plant, plant_at, plant_under, recover, signature};
 use bubblepoint::app::{
     ChargeInput, Common, Correction, KnownPrint, NewEntry, PressureInput, Recognised, RecoverInput, RetrofitInput, SimpleAct,
 };
 use bubblepoint::ledger::{ChargePurpose, Counterpart, Instrument, InstrumentId, InstrumentKind, RecoveryPurpose, VisitId};
 use bubblepoint::print::Paper;
 use bubblepoint::record::{EntryFacts, TransferFacts, Work};
-use bubblepoint::store::Since;
+use bubblepoint::store::{Since, Store};
 use chrono::Duration;
 
 fn transfers(entries: &[EntryFacts]) -> Vec<&TransferFacts> {
@@ -195,4 +195,38 @@ fn a_further_copy_says_which_it_is_and_prints_the_same_for_ever() {
     assert_eq!(app.further_copy(visit).unwrap(), 3);
     let Recognised::Print(print) = app.recognise(&second.bytes).unwrap() else { panic!("not known") };
     assert_eq!((print.copy, print.then.hand_overs, print.now.hand_overs), (2, 0, 1));
+}
+
+/// 82.157(l)(10), 84.106(l)(12): a seasonal variance is recorded with what was removed and what was added.
+#[test]
+fn a_seasonal_return_names_what_was_removed() {
+    let plant = plant();
+    let app = &plant.app;
+    let visit = plant.begin();
+    let removal = RecoverInput { purpose: RecoveryPurpose::Seasonal, ..recover(plant.recovery, gross("25", "35")) };
+    app.recover(visit.id, plant.appliance, removal).unwrap();
+    app.close_visit(visit.id, signature("Ada Quill"), Counterpart::NobodyPresent).unwrap();
+    plant.clock.forward(Duration::days(150));
+    let visit = plant.begin();
+    let back = ChargeInput { purpose: ChargePurpose::Seasonal, ..charge(plant.supply, gross("70", "62")) };
+    app.charge(visit.id, plant.appliance, back).unwrap();
+    let record = app.service_record(visit.id).unwrap();
+    let none = &record.appliances[0].no_rates[0];
+    assert_eq!(
+        (none.amount.as_str(), none.because.as_str()),
+        ("8 lb", "returned for the season; as much was recovered before: 10 lb on 3 Mar 2026")
+    );
+}
+
+/// Where no rate is due the record still says why the law asks for a check.
+#[test]
+fn a_text_without_a_rate_says_why_it_applies() {
+    let plant = plant_under(Store::in_memory().unwrap(), &["eu-590"]);
+    let visit = plant.begin();
+    let looked = Common { note: "looked".to_owned(), ..Common::default() };
+    plant.app.simple(visit.id, plant.appliance, SimpleAct::Note, looked).unwrap();
+    let record = plant.app.service_record(visit.id).unwrap();
+    let readings: Vec<&str> = record.appliances[0].readings.iter().map(|notice| notice.text.as_str()).collect();
+    let applies = readings.iter().find(|text| text.contains(" applies: "));
+    assert!(applies.is_some_and(|text| text.starts_with("Regulation (EU) 2024/590 applies: ") && text.contains("kg")), "{readings:?}");
 }

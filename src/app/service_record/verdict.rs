@@ -2,11 +2,11 @@
 
 use super::wording;
 use crate::gas::{self, Weighting};
-use crate::ledger::{Act, Appliance, ApplianceFacts, Entry, EntryId, Line, Site, TestKind};
+use crate::ledger::{Act, Appliance, ApplianceFacts, ChargePurpose, Entry, EntryId, Line, RecoveryPurpose, Site, TestKind};
 use crate::quantity::{Mass, MassUnit, Ratio, decimal_text, parse_decimal, rounded_text};
 use crate::record::{DutyFacts, DutyStep, LeakRate, NoRate, Notice, RateInput, Verdict, WeightedAmount};
 use crate::rules::{self, Assessment, Duty, DutyState, Judgement, assess, loss_entries};
-use chrono::{Days, NaiveDate};
+use chrono::{Days, Months, NaiveDate};
 use std::collections::{HashMap, HashSet};
 
 /// What [`judge`] finds.
@@ -118,12 +118,33 @@ impl Sight<'_> {
         let history = &self.assessment.history;
         let has_rates = self.assessment.rulebooks.iter().any(|judgement| judgement.method.is_some());
         let charges = history.lines.iter().enumerate().filter(|(index, _)| has_rates && self.is_here(*index) && !history.counted[*index]);
-        let no_rate = |(_, line): (usize, &&Line)| {
+        let no_rate = |(index, line): (usize, &&Line)| {
             let Act::Charge { purpose, transfer } = &line.act else { return None };
             let (because, source) = rules::why_no_rate(*purpose);
-            Some(NoRate { on: line.at.date, amount: self.mass(transfer.mass), because: because.to_owned(), source: source.to_owned() })
+            let removed = self.removed_for(*purpose, index);
+            let because = if removed.is_empty() { because.to_owned() } else { format!("{because}: {}", removed.join(", ")) };
+            Some(NoRate { on: line.at.date, amount: self.mass(transfer.mass), because, source: source.to_owned() })
         };
         charges.filter_map(no_rate).collect()
+    }
+
+    /// What was recovered before a return for the season or after mothballing,
+    /// as `60 lb on 7 May 2026`: 82.157(l)(8), (10) and 84.106(l)(10), (12) ask for both amounts.
+    fn removed_for(&self, purpose: ChargePurpose, charge: usize) -> Vec<String> {
+        let history = &self.assessment.history;
+        let on = history.date(charge);
+        let (wanted, from) = match purpose {
+            // Removal and return lie within one 12-month period.
+            ChargePurpose::Seasonal => (RecoveryPurpose::Seasonal, on.checked_sub_months(Months::new(12))),
+            ChargePurpose::Mothball => (RecoveryPurpose::Mothball, None),
+            _ => return Vec::new(),
+        };
+        let before = history.lines.iter().take(charge).filter(|line| from.is_none_or(|from| line.at.date >= from));
+        let removed = before.filter_map(|line| match &line.act {
+            Act::Recover { purpose, transfer } if *purpose == wanted => Some((line.at.date, transfer.mass)),
+            _ => None,
+        });
+        removed.map(|(day, mass)| format!("{} on {}", self.mass(mass), wording::day(day))).collect()
     }
 
     fn duties(&self) -> Vec<DutyFacts> {
@@ -231,15 +252,19 @@ impl Sight<'_> {
         notices
     }
 
-    /// How far the law itself was read, and how long this record is kept.
+    /// Why the text applies, where no leak rate says so; how far it was read, and how long this record is kept.
     fn of_the_text(&self, judgement: &Judgement) -> Vec<Notice> {
         let Some(book) = rules::rulebook(&judgement.id) else { return Vec::new() };
+        let applies = judgement
+            .rate()
+            .is_none()
+            .then(|| Notice { text: format!("{} applies: {}.", book.title, judgement.why), source: String::new() });
         let unread =
             (!book.confidence.is_empty()).then(|| Notice { text: wording::sentence(&book.confidence), source: book.title.clone() });
         let kept = book
             .retention(self.assessment.on)
             .map(|row| Notice { text: format!("Kept for {} years: {}.", row.years, row.what), source: row.source.clone() });
-        unread.into_iter().chain(kept).collect()
+        applies.into_iter().chain(unread).chain(kept).collect()
     }
 
     fn tests_that_do_not_count(&self) -> HashMap<EntryId, String> {

@@ -204,3 +204,37 @@ impl Desk {
         })
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::app::{Recognised, demonstration_in_memory};
+    use crate::ledger::VisitState;
+    use crate::store::VisitFilter;
+    use crate::view::{DeskOptions, Msg as DeskMsg};
+
+    #[test]
+    fn the_second_who_gets_the_record_gets_a_copy_of_its_own() {
+        let folder = tempfile::tempdir().unwrap();
+        let app = demonstration_in_memory("2026-12-01".parse().unwrap(), chrono_tz::UTC).unwrap();
+        let closed = VisitFilter { state: Some(VisitState::Closed), ..VisitFilter::default() };
+        let not_yet = |visit: &crate::ledger::Visit| app.store().hand_overs(visit.id).unwrap().is_empty();
+        let visit = app.store().visits(&closed).unwrap().into_iter().find(not_yet).unwrap().id;
+        let options = DeskOptions { documents: folder.path().to_owned(), open: Box::new(|_| Ok(())) };
+        let mut desk = Desk::new(app, options).unwrap();
+        desk.show_closed(visit).unwrap();
+        let mut hand_over = |way: &str| {
+            desk.update(DeskMsg::Closed(Msg::ToWhom("Otto Prins".to_owned())));
+            desk.update(DeskMsg::Closed(Msg::Way(way.to_owned())));
+            desk.update(DeskMsg::Closed(Msg::HandOver));
+            let file = desk.closed.as_ref().and_then(|state| state.file.clone()).unwrap();
+            let Recognised::Print(print) = desk.app.recognise(&std::fs::read(&file).unwrap()).unwrap() else { panic!("{file:?}") };
+            assert_eq!(print.then, print.now, "{way}: the paper says to whom it was handed over");
+            (print.copy, file.to_string_lossy().ends_with(&format!(" copy {}.pdf", print.copy)))
+        };
+        assert_eq!(hand_over("printed"), (1, false));
+        assert_eq!(hand_over("by mail"), (2, true));
+        assert_eq!(hand_over(READ_ON_SCREEN), (1, false));
+        assert_eq!(hand_over("as a file"), (3, true));
+    }
+}
