@@ -44,7 +44,7 @@ pub use inputs::{
 };
 pub use limits::LimitRules;
 pub use paper::{KnownPrint, Printed, Recognised, fit};
-pub use refusals::{Kind, Refusal};
+pub use refusals::{Kind, Refusal, of_condition};
 pub use settings::{Appearance, Look, Setting, Units, paper_name};
 pub use standing::{ApplianceStanding, CylinderStanding, WeighingGap};
 pub use visits::{OpenVisit, Unsaved};

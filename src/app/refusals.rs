@@ -302,7 +302,7 @@ pub fn of_recovery(
 }
 
 /// A cylinder that a look or its own weight says is not sound: tested first, never filled before.
-fn of_condition(cylinder: &CylinderStanding) -> Vec<Refusal> {
+pub fn of_condition(cylinder: &CylinderStanding) -> Vec<Refusal> {
     let mut refusals = Vec::new();
     let (name, facts) = (&cylinder.cylinder.name, &cylinder.facts);
     let damage = facts.damage.trim();

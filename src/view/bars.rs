@@ -3,7 +3,7 @@
 
 use super::shown::{Bar, MassBar, MassLimit, Rate, Verdict};
 use super::{format, words};
-use crate::measure::{CylinderLimit, LimitKind};
+use crate::measure::{CylinderLimit, LimitKind, Missing};
 use crate::quantity::{Mass, MassUnit, Ratio};
 use crate::rules::{self, LeakRate};
 use num_traits::ToPrimitive;
@@ -98,6 +98,9 @@ pub fn mass_bar(
         if most > 0.0 { most * 1.25 } else { 1.0 }
     });
     let at = |mass: Mass| (kg(mass) / end).clamp(0.0, 1.0) as f32;
+    // Without a water capacity that is what is missing; with one, the gas has no limit.
+    let capacity_known = limit.is_some_and(|limit| !limit.missing.contains(&Missing::WaterCapacity));
+    let without_limit = || if capacity_known { words::no_limit_for_gas() } else { words::no_limit() };
     let limits = limit.map_or(&[][..], |limit| &limit.limits).iter().filter(|limit| limit.counts);
     MassBar {
         heel: content.and(heel).map_or(0.0, at),
@@ -106,7 +109,7 @@ pub fn mass_bar(
             .map(|limit| MassLimit { name: short(limit.kind).to_owned(), at: at(limit.net), binding: Some(limit) == binding })
             .collect(),
         words: content.map_or_else(words::not_weighed, |content| rounded(content, unit)),
-        binding: binding.map_or_else(words::no_limit, |binding| words::limit_binds(&rounded(binding.net, unit), &binding.name())),
+        binding: binding.map_or_else(without_limit, |binding| words::limit_binds(&rounded(binding.net, unit), &binding.name())),
     }
 }
 

@@ -3,7 +3,7 @@
 
 use super::Office;
 use super::cylinders::bar;
-use crate::app::{App, AppError, CylinderStanding};
+use crate::app::{App, AppError, CylinderStanding, of_condition};
 use crate::ledger::{Act, CylinderAct, CylinderId, CylinderKind};
 use crate::measure::{CylinderLimit, Rating};
 use crate::quantity::{Mass, rounded_text};
@@ -41,6 +41,9 @@ fn refused(cylinder: &CylinderStanding, limit: Option<&CylinderLimit>, today: ch
     }
     if let Some(by) = facts.requalify_by.filter(|by| *by < today) {
         return say::refuse_overdue(&format::full_day(by));
+    }
+    if let Some(unsound) = of_condition(cylinder).first() {
+        return format!("{} ({})", unsound.sentence, unsound.source);
     }
     if cylinder.balance.is_mixed() {
         return say::refuse_mixed();

@@ -295,6 +295,20 @@ fn a_cylinder_shows_its_limits_and_is_scrapped() {
     // 47.7 lb of water: 50 lb of gas is more than it may ever hold.
     assert!(bar.limits.iter().any(|limit| limit.binding), "{bar:?}");
     assert_eq!(page.refused, "No room is left up to the limit that binds.");
+    // A dent is written down, and stays when the form changes something else.
+    let id = bench.app.store().registers().unwrap().cylinders[0].id;
+    let known = bench.app.store().cylinder(id).unwrap().unwrap().versions.latest().clone();
+    let dented = crate::ledger::CylinderFacts { damage: "dent at the foot".to_owned(), ..known };
+    bench.app.change_cylinder(id, dented, bench.app.today(), "").unwrap();
+    bench.tell(Msg::Cylinders(Cylinders::Open(id.to_string())));
+    let page = bench.office.cylinders.cylinder.clone().unwrap();
+    assert!(page.refused.contains("dent at the foot") && page.refused.contains("180.205(d)"), "{}", page.refused);
+    bench.tell(Msg::Cylinders(Cylinders::Edit));
+    bench.tell(cylinder(FormMsg::Save));
+    let page = bench.office.cylinders.cylinder.clone().unwrap();
+    assert!(page.refused.contains("dent at the foot"), "{}", page.refused);
+    // Saved without a gross, it was not weighed.
+    assert_eq!(bench.app.store().cylinder(id).unwrap().unwrap().versions.latest().weighed.map(|mark| mark.after), Some(0));
     bench.tell(Msg::Cylinders(Cylinders::Edit));
     bench.type_in(cylinder, &[("scrapped", "valve bent"), ("requalify-by", "2029-06")]);
     bench.tell(cylinder(FormMsg::Save));

@@ -1,7 +1,7 @@
 //! Which cylinder: those that fit come first, the others say why not.
 
 use super::{Panel, id};
-use crate::app::{AppError, ApplianceStanding, CylinderStanding};
+use crate::app::{AppError, ApplianceStanding, CylinderStanding, Kind, of_condition};
 use crate::gas;
 use crate::ledger::{CylinderFacts, CylinderId, CylinderKind, GasStatus};
 use crate::quantity::MassUnit;
@@ -77,6 +77,11 @@ fn unfit(panel: Panel, standing: &ApplianceStanding, cylinder: &CylinderStanding
         return format!("out of use: {why}");
     }
     if panel == Panel::Recover {
+        match of_condition(cylinder).first().map(|refusal| refusal.kind) {
+            Some(Kind::Damaged) => return words::damaged(cylinder.facts.damage.trim()),
+            Some(_) => return words::tare_lost(),
+            None => {}
+        }
         return match (cylinder.facts.kind, holds) {
             (CylinderKind::NonRefillable, _) => "non-refillable".to_owned(),
             (_, Some(other)) if holds_some && other != gas => words::another_gas(),

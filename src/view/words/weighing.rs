@@ -65,6 +65,18 @@ pub fn limit_binds(mass: &str, name: &str) -> String {
     format!("limit {mass}, {name}")
 }
 
+pub fn damaged(what: &str) -> String {
+    format!("damaged: {what}")
+}
+
+pub fn tare_lost() -> String {
+    "5 % or more of its tare lost: to be requalified".to_owned()
+}
+
+pub fn no_limit_for_gas() -> String {
+    "no limit is known for this gas".to_owned()
+}
+
 pub fn no_limit() -> String {
     "limit unknown: water capacity to complete".to_owned()
 }
