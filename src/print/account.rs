@@ -175,8 +175,8 @@ fn gases(flow: &mut Flow, fonts: &Fonts, account: &AnnualAccount) {
     flow.space(4.0);
     let mut notes = vec![paragraph(
         fonts,
-        "Opening to closing is what the cylinders held: opening + bought + recovered \u{2212} charged \u{2212} sent away = closing. \
-         Lost is what appliances lost.",
+        "Opening to closing is what the cylinders held: opening + bought + recovered \u{2212} charged \u{2212} sent away = \
+         closing, and what is told below of each gas. Lost is what appliances lost.",
         Style::CAPTION,
         inner,
     )];

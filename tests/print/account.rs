@@ -41,6 +41,23 @@ fn every_figure_is_on_paper() {
     assert!(!text.contains("R-448A does not balance"));
 }
 
+/// Gas that left cylinders otherwise, or never was in one, is told, and the rest is what nobody explains.
+#[test]
+fn losses_from_cylinders_and_charges_without_one_are_told() {
+    let mut account = fixtures::account();
+    let kg = |text: &str| bubblepoint::quantity::Mass::parse(text, bubblepoint::quantity::MassUnit::Kilogram).unwrap();
+    account.gases[0].line.lost_from_cylinders = Some(kg("0.6"));
+    account.gases[0].line.past_cylinders = kg("0.5");
+    let text: String = text(&account).split_whitespace().collect::<Vec<_>>().join(" ");
+    for fact in
+        ["R-22: 0.600 kg lost from cylinders, with the reason written down.", "R-22: 0.500 kg charged, less recovered, without a cylinder"]
+    {
+        assert!(text.contains(fact), "{fact}: {text}");
+    }
+    // 20 + 30 + 4 − 12.5 + 0.5 − 4 − 0.6 is 37.4, and so is the closing.
+    assert!(!text.contains("R-22 does not balance"), "{text}");
+}
+
 #[test]
 fn pounds_are_shown_where_they_are_asked_for() {
     let account = AnnualAccount { unit: bubblepoint::quantity::MassUnit::Pound, ..fixtures::account() };
