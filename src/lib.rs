@@ -1,4 +1,4 @@
-//! Bubblepoint: a leak-check log, service records and refrigerant accounts.
+//! Bubblepoint: leak rates, duties, service records and refrigerant accounts.
 //!
 //! The layers, lowest first; each may use only those before it (`tests/architecture.rs` holds them to it):
 //!

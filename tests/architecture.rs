@@ -108,37 +108,6 @@ fn exact_layers_have_no_float() {
 }
 
 #[test]
-fn screens_hold_no_literal_colour_and_no_raw_text() {
-    fn slint_files(folder: &Path) -> Vec<PathBuf> {
-        let mut files = Vec::new();
-        for entry in fs::read_dir(folder).unwrap() {
-            let path = entry.unwrap().path();
-            if path.is_dir() {
-                files.extend(slint_files(&path));
-            } else if path.extension().is_some_and(|ending| ending == "slint") {
-                files.push(path);
-            }
-        }
-        files
-    }
-    let mut faults = Vec::new();
-    let screens = slint_files(&root().join("ui"))
-        .into_iter()
-        .filter(|path| path.strip_prefix(root()).is_ok_and(|path| path.starts_with("ui/places")));
-    for file in screens {
-        for (number, line) in fs::read_to_string(&file).unwrap().lines().enumerate() {
-            let line = line.split("//").next().unwrap_or_default();
-            let colour = line.split('#').skip(1).any(|rest| rest.len() >= 3 && rest.chars().take(3).all(|c| c.is_ascii_hexdigit()));
-            let raw_text = line.trim_start().starts_with("Text {") || line.contains(":= Text {");
-            if colour || raw_text {
-                faults.push(format!("{}:{}: {}", file.display(), number + 1, line.trim()));
-            }
-        }
-    }
-    assert!(faults.is_empty(), "{}", faults.join("\n"));
-}
-
-#[test]
 fn every_test_file_is_named_in_a_module() {
     let mut faults = Vec::new();
     for file in rust_files(&root().join("tests")) {

@@ -14,6 +14,7 @@ mod edits;
 mod entries;
 mod error;
 mod file;
+mod forms;
 mod import;
 mod inputs;
 mod installation;

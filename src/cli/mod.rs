@@ -20,7 +20,7 @@ use clap::{Parser, Subcommand, ValueEnum};
 use std::path::{Path, PathBuf};
 use std::process::ExitCode;
 
-/// Leak-check log, service records and refrigerant accounts.
+/// Leak rates, duties, service records and refrigerant accounts.
 ///
 /// Without a command the window opens.
 #[derive(Debug, Parser)]

@@ -1,4 +1,4 @@
-//! Paper: service records and annual accounts as PDF, on A4 and Letter.
+//! Paper: service records, annual accounts and lists of duties as PDF, on A4 and Letter.
 //!
 //! Pages are composed as marks in points (`sheet`), put on pages (`layout`) and
 //! written by `pdf`, the only file that names printpdf. The same record on the
@@ -6,6 +6,7 @@
 
 mod account;
 mod chart;
+mod due;
 mod entry;
 mod fonts;
 mod layout;
@@ -18,6 +19,7 @@ mod signing;
 mod words;
 
 pub use account::annual_account;
+pub use due::due_list;
 pub use service::{print_id, service_record};
 pub use sheet::Paper;
 

@@ -7,6 +7,7 @@ use chrono::{Datelike, NaiveDate};
 
 pub(super) const SERVICE_RECORD: &str = "Service record";
 pub(super) const ANNUAL_ACCOUNT: &str = "Annual account";
+pub(super) const DUE_LIST: &str = "Due";
 pub(super) const TO_COMPLETE: &str = "to complete";
 pub(super) const CONTINUED: &str = "continued";
 pub(super) const DRAFT: &str = "draft";

@@ -1,9 +1,10 @@
-//! What a service record and an annual account contain, as data, without layout.
+//! What a service record, an annual account and a list of duties contain, as data, without layout.
 
 mod account;
 mod canonical;
 mod cautions;
 mod closed;
+mod due_list;
 mod exact;
 mod service;
 
@@ -13,6 +14,7 @@ pub use account::{
 pub use canonical::{NotCanonical, canonical_json};
 pub use cautions::{CATALOGUE, CautionText, CautiousAct, Circumstances, caution, fitting, glides};
 pub use closed::{Closed, ClosedEntry, ClosedVisit, FORMAT, NotClosed, VisitFacts, close, fingerprint, read_closed};
+pub use due_list::{DueGroup, DueList, DueRow};
 pub use service::{
     AppliancePart, ApplianceText, Caution, Counterparty, DutyFacts, DutyStep, EntryFacts, Finding, Fingerprint, LeakRate, Named, NoRate,
     Notice, OpenLeak, Party, PersonAtWork, RateInput, RecordState, RepairFacts, Rulebook, ServiceRecord, SignedBy, SiteText, TestFacts,

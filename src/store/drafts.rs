@@ -79,6 +79,43 @@ fn clear(c: &rusqlite::Connection, visit: VisitId, action: &str) -> rusqlite::Re
     c.prepare_cached("DELETE FROM drafts WHERE visit = ?1 AND action = ?2")?.execute(params![visit, action]).map(drop)
 }
 
+/// Before the name of a form, among the settings of this device.
+const FORM: &str = "draft of ";
+
+impl Store {
+    /// What was being typed in a form of the registers.
+    ///
+    /// # Errors
+    /// The store's own.
+    pub fn form(&self, form: &str) -> Result<Option<String>, StoreError> {
+        self.setting(&format!("{FORM}{form}"))
+    }
+}
+
+impl Writing<'_> {
+    /// # Errors
+    /// The store's own.
+    pub fn put_form(&self, form: &str, body: &str) -> Result<(), StoreError> {
+        self.run(|c| put_form(c, form, body))
+    }
+
+    /// # Errors
+    /// The store's own.
+    pub fn clear_form(&self, form: &str) -> Result<(), StoreError> {
+        self.run(|c| clear_form(c, form))
+    }
+}
+
+fn put_form(c: &rusqlite::Connection, form: &str, body: &str) -> rusqlite::Result<()> {
+    c.prepare_cached("INSERT INTO settings (key, value) VALUES (?1, ?2) ON CONFLICT (key) DO UPDATE SET value = excluded.value")?
+        .execute(params![format!("{FORM}{form}"), body])
+        .map(drop)
+}
+
+fn clear_form(c: &rusqlite::Connection, form: &str) -> rusqlite::Result<()> {
+    c.prepare_cached("DELETE FROM settings WHERE key = ?1")?.execute([format!("{FORM}{form}")]).map(drop)
+}
+
 /// The longest a draft waits for further typing before it is written; with
 /// the writing itself it stays under a quarter of a second.
 const WAIT: Duration = Duration::from_millis(100);
@@ -86,6 +123,8 @@ const WAIT: Duration = Duration::from_millis(100);
 enum Order {
     Put(Draft),
     Clear(VisitId, String),
+    /// A form of the registers; `None` clears it.
+    Form(String, Option<String>),
     Flush(Sender<Option<StoreError>>),
 }
 
@@ -121,6 +160,15 @@ impl DraftWriter {
         self.order(Order::Clear(visit, action.to_owned()));
     }
 
+    /// As [`DraftWriter::put`], of a form of the registers.
+    pub fn put_form(&self, form: &str, body: &str) {
+        self.order(Order::Form(form.to_owned(), Some(body.to_owned())));
+    }
+
+    pub fn clear_form(&self, form: &str) {
+        self.order(Order::Form(form.to_owned(), None));
+    }
+
     /// Waits until all is written that was put before.
     ///
     /// # Errors
@@ -150,11 +198,16 @@ impl Drop for DraftWriter {
     }
 }
 
-/// Draft by visit and action; `None` clears it.
-type Held = BTreeMap<(VisitId, String), Option<Draft>>;
+/// What waits to be written; `None` clears it.
+#[derive(Default)]
+struct Held {
+    /// By visit and action.
+    drafts: BTreeMap<(VisitId, String), Option<Draft>>,
+    forms: BTreeMap<String, Option<String>>,
+}
 
 fn keep(store: &Store, orders: &Receiver<Order>) {
-    let mut held = Held::new();
+    let mut held = Held::default();
     while let Ok(first) = orders.recv() {
         let until = Tick::now() + WAIT;
         let mut waiting = Vec::new();
@@ -175,7 +228,7 @@ fn keep(store: &Store, orders: &Receiver<Order>) {
         // written too, nothing has failed any more.
         let mut failed = write(store, &held).err();
         if failed.is_none() {
-            held.clear();
+            held = Held::default();
         }
         for answer in waiting {
             // Whoever asked may have gone.
@@ -189,21 +242,28 @@ fn keep(store: &Store, orders: &Receiver<Order>) {
 
 fn take(order: Order, held: &mut Held, waiting: &mut Vec<Sender<Option<StoreError>>>) {
     match order {
-        Order::Put(draft) => drop(held.insert((draft.visit, draft.action.clone()), Some(draft))),
-        Order::Clear(visit, action) => drop(held.insert((visit, action), None)),
+        Order::Put(draft) => drop(held.drafts.insert((draft.visit, draft.action.clone()), Some(draft))),
+        Order::Clear(visit, action) => drop(held.drafts.insert((visit, action), None)),
+        Order::Form(form, body) => drop(held.forms.insert(form, body)),
         Order::Flush(answer) => waiting.push(answer),
     }
 }
 
 fn write(store: &Store, held: &Held) -> Result<(), StoreError> {
-    if held.is_empty() {
+    if held.drafts.is_empty() && held.forms.is_empty() {
         return Ok(());
     }
     let (_turn, transaction) = store.begin_writing()?;
-    for ((visit, action), draft) in held {
+    for ((visit, action), draft) in &held.drafts {
         store.read(|c| match draft {
             Some(draft) => put(c, draft),
             None => clear(c, *visit, action),
+        })?;
+    }
+    for (form, body) in &held.forms {
+        store.read(|c| match body {
+            Some(body) => put_form(c, form, body),
+            None => clear_form(c, form),
         })?;
     }
     transaction.commit().map_err(|e| store.told(e))
@@ -235,6 +295,12 @@ mod tests {
         writer.clear(ids::VISIT, "charge");
         writer.flush().unwrap();
         assert_eq!(store.drafts_of(ids::VISIT).unwrap(), []);
+
+        writer.put_form("site", "half");
+        writer.put_form("cylinder", "other");
+        writer.clear_form("cylinder");
+        writer.flush().unwrap();
+        assert_eq!((store.form("site").unwrap().as_deref(), store.form("cylinder").unwrap()), (Some("half"), None));
 
         writer.put(draft("14"));
         drop(writer);

@@ -61,6 +61,18 @@ impl Store {
         self.read_moment(|c| Ok(read_visits(c, "v.id = ?", &[&visit])?.pop()))
     }
 
+    /// Who began the visit of each appliance's latest entry.
+    pub fn last_people(&self) -> Result<HashMap<ApplianceId, PersonId>, StoreError> {
+        self.read(|c| {
+            // With max() the other columns are those of its row.
+            let mut statement = c.prepare_cached(
+                "SELECT e.appliance, p.person, max(e.position) FROM entries e \
+                 JOIN visit_people p ON p.visit = e.visit AND p.number = 1 GROUP BY e.appliance",
+            )?;
+            statement.query_map([], |row| Ok((row.get(0)?, row.get(1)?)))?.collect()
+        })
+    }
+
     /// Cautions acknowledged in a visit, in order of time.
     pub fn cautions_seen(&self, visit: VisitId) -> Result<Vec<CautionSeen>, StoreError> {
         self.read(|c| {

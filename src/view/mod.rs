@@ -13,6 +13,7 @@ pub mod parse;
 pub mod places;
 pub mod shown;
 pub mod visit;
+mod why;
 pub mod words;
 
 pub use desk::{Desk, DeskOptions, Msg, Page};

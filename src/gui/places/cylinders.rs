@@ -27,6 +27,7 @@ pub fn connect(window: &AppWindow, send: &Send) {
     on!(a, send, on_choose_gas, |key| form(FormMsg::Chosen("gas", key.into())));
     on!(a, send, on_choose_status, |key| form(FormMsg::Chosen("status", key.into())));
     on!(a, send, on_edited, |field, text| form(FormMsg::Edited(field.into(), text.into())));
+    on!(a, send, on_begin_anew, || form(FormMsg::Anew));
     on!(a, send, on_save, || form(FormMsg::Save));
 }
 
@@ -76,6 +77,8 @@ fn show_form(window: &AppWindow, office: &Office, open: bool) {
     let form = &office.cylinders.form;
     let ready = office.cylinder_form_ready();
     a.set_changing(form.changing);
+    a.set_taken_up_again(form.taken_up_again);
+    a.set_last_gross(office.last_gross_words().into());
     a.set_identification(form.text("identification").into());
     a.set_identification_error(form.error("identification").into());
     list!(a.get_kinds, set_kinds, rows::choices(&kinds()));

@@ -6,7 +6,8 @@ use crate::app::App;
 use crate::app::Appearance as Light;
 use crate::store::StoreError;
 use crate::view::Message;
-use crate::view::places::{Go, Look, Msg, Office, Overview, Place};
+use crate::view::places::{Go, Look, Msg, Office, Overview, Place, plant, signing};
+use crate::view::visit::close::InkMsg;
 use bubblepoint_ui::{AppWindow, Appearance, Page, Shell, Theme};
 use slint::{ComponentHandle, Timer, TimerMode};
 use std::cell::{Cell, Ref, RefCell};
@@ -89,10 +90,11 @@ impl Places {
     }
 
     pub fn update(self: &Rc<Self>, msg: Msg) {
-        // The screen itself laid the choice over the account: back takes it away.
-        if matches!(msg, Msg::Back) && self.window.upgrade().is_some_and(|window| super::account::stop_choosing(&window)) {
+        // The screen itself laid its choices over the place: back takes them away.
+        if matches!(msg, Msg::Back) && self.window.upgrade().is_some_and(|window| self.stop_choosing(&window)) {
             return;
         }
+        let shows = !matches!(msg, Msg::Plant(plant::Msg::Signing(signing::Msg::Ink(InkMsg::Point { .. }))));
         let mut msg = Some(msg);
         let mut next = Vec::new();
         (self.with_app)(&mut |app| {
@@ -100,6 +102,10 @@ impl Places {
                 next = self.office.borrow_mut().update(app, msg);
             }
         });
+        // The ink field draws its own points; the page is shown again when the pen is lifted.
+        if !shows {
+            return;
+        }
         self.show();
         let front = self.office.borrow().place;
         if let Some((_, changes)) = self.arrived.get().filter(|(at, _)| *at != front) {
@@ -108,6 +114,14 @@ impl Places {
         }
         for go in next {
             self.go(go);
+        }
+    }
+
+    fn stop_choosing(&self, window: &AppWindow) -> bool {
+        match self.office.borrow().place {
+            Place::Due => super::due::stop_choosing(window),
+            Place::Account => super::account::stop_choosing(window),
+            _ => false,
         }
     }
 

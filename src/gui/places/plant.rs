@@ -8,7 +8,8 @@ use crate::view::places::appliance_form::{categories, charge_methods, equipment}
 use crate::view::places::plant::{FormMsg, Msg as Plant, Pane};
 use crate::view::places::record::RecordPage;
 use crate::view::places::site_form::methods;
-use crate::view::places::{Msg, Office, RateStep, SitePage};
+use crate::view::places::{Msg, Office, RateStep, SitePage, signing};
+use crate::view::visit::close::{InkMsg, path};
 use bubblepoint_ui as ui;
 use bubblepoint_ui::{
     AppWindow, ApplianceAdapter, ApplianceFormAdapter, PlantAdapter, PlantPane, RecordAdapter, SiteAdapter, SiteFormAdapter,
@@ -38,6 +39,13 @@ pub fn connect(window: &AppWindow, send: &Send) {
     let a = window.global::<RecordAdapter>();
     on!(a, send, on_open_record, || Msg::Plant(Plant::OpenRecordFile));
     on!(a, send, on_open_folder, || Msg::Plant(Plant::OpenRecordFolder));
+    let sign = |msg| Msg::Plant(Plant::Signing(msg));
+    on!(a, send, on_begin_signing, || sign(signing::Msg::Begin));
+    on!(a, send, on_signer_edited, |text| sign(signing::Msg::Name(text.into())));
+    on!(a, send, on_point, |x, y, first| sign(signing::Msg::Ink(InkMsg::Point { x, y, first })));
+    on!(a, send, on_lifted, || sign(signing::Msg::Ink(InkMsg::Lifted)));
+    on!(a, send, on_cleared, || sign(signing::Msg::Ink(InkMsg::Cleared)));
+    on!(a, send, on_sign, || sign(signing::Msg::Sign));
     on!(a, send, on_open_entry, |key| Msg::Plant(Plant::OpenEntry(key.into())));
 
     let a = window.global::<ApplianceFormAdapter>();
@@ -48,6 +56,7 @@ pub fn connect(window: &AppWindow, send: &Send) {
     on!(a, send, on_choose_equipment, |key| form(FormMsg::Chosen("equipment", key.into())));
     on!(a, send, on_edited, |field, text| form(FormMsg::Edited(field.into(), text.into())));
     on!(a, send, on_switched, |field, is_on| form(FormMsg::Switched(field.into(), is_on)));
+    on!(a, send, on_begin_anew, || form(FormMsg::Anew));
     on!(a, send, on_save, || form(FormMsg::Save));
 
     let a = window.global::<SiteFormAdapter>();
@@ -55,6 +64,7 @@ pub fn connect(window: &AppWindow, send: &Send) {
     on!(a, send, on_edited, |field, text| form(FormMsg::Edited(field.into(), text.into())));
     on!(a, send, on_switch_rulebook, |key| form(FormMsg::Chosen("rulebook", key.into())));
     on!(a, send, on_choose_method, |key| form(FormMsg::Chosen("method", key.into())));
+    on!(a, send, on_begin_anew, || form(FormMsg::Anew));
     on!(a, send, on_save, || form(FormMsg::Save));
 }
 
@@ -71,7 +81,7 @@ pub fn show(window: &AppWindow, office: &Office) {
         Pane::None => {}
         Pane::Site(_) => office.plant.site.iter().for_each(|page| show_site(window, page)),
         Pane::Appliance(_) => office.plant.appliance.iter().for_each(|page| show_appliance(window, page)),
-        Pane::Record(..) => office.plant.record.iter().for_each(|page| show_record(window, page)),
+        Pane::Record(..) => office.plant.record.iter().for_each(|page| show_record(window, page, office.plant.signing.as_ref())),
         Pane::ApplianceForm => show_appliance_form(window, office, a.get_pane() == PlantPane::ApplianceForm),
         Pane::SiteForm => show_site_form(window, office),
     }
@@ -101,6 +111,7 @@ fn show_appliance(window: &AppWindow, page: &AppliancePage) {
     a.set_name((&page.name).into());
     a.set_state((&page.state).into());
     list!(a.get_rates, set_rates, rows::rates(&page.rates));
+    list!(a.get_reasons, set_reasons, rows::reasons(&page.reasons));
     a.set_has_history(page.history.is_some());
     if let Some(history) = &page.history {
         let step =
@@ -122,7 +133,7 @@ fn show_appliance(window: &AppWindow, page: &AppliancePage) {
     list!(a.get_changes, set_changes, rows::lines(&page.changes));
 }
 
-fn show_record(window: &AppWindow, page: &RecordPage) {
+fn show_record(window: &AppWindow, page: &RecordPage, signing: Option<&signing::State>) {
     let a = window.global::<RecordAdapter>();
     a.set_title((&page.title).into());
     a.set_subject((&page.subject).into());
@@ -131,6 +142,15 @@ fn show_record(window: &AppWindow, page: &RecordPage) {
     list!(a.get_facts, set_facts, rows::facts(&page.facts));
     list!(a.get_entries, set_entries, rows::lines(&page.entries));
     list!(a.get_corrections, set_corrections, rows::facts(&page.corrections));
+    a.set_can_sign(page.can_sign);
+    if let Some(signing) = signing {
+        let ready = signing.ready();
+        a.set_signer((&signing.name).into());
+        a.set_strokes(path(&signing.ink).into());
+        a.set_sign_ready(ready.ready);
+        a.set_sign_why_not(ready.why_not.into());
+    }
+    a.set_signing(signing.is_some());
 }
 
 /// `open`: what the screen itself has unfolded stays so.
@@ -139,6 +159,7 @@ fn show_appliance_form(window: &AppWindow, office: &Office, open: bool) {
     let form = &office.plant.appliance_form;
     let ready = office.appliance_form_ready();
     a.set_changing(form.changing);
+    a.set_taken_up_again(form.taken_up_again);
     a.set_subject(office.appliance_form_subject().into());
     a.set_identification(form.text("identification").into());
     a.set_identification_error(form.error("identification").into());
@@ -181,6 +202,7 @@ fn show_site_form(window: &AppWindow, office: &Office) {
     let form = &office.plant.site_form;
     let ready = office.site_form_ready();
     a.set_changing(form.changing);
+    a.set_taken_up_again(form.taken_up_again);
     a.set_name(form.text("name").into());
     a.set_name_error(form.error("name").into());
     a.set_address(form.text("address").into());

@@ -203,5 +203,4 @@ fn show_store(window: &AppWindow, office: &Office) {
     list!(a.get_facts, set_facts, rows::facts(&page.facts));
     a.set_answer((&page.answer).into());
     a.set_answer_grave(page.grave);
-    a.set_busy(false);
 }

@@ -3,7 +3,7 @@
 use super::plant;
 use super::{Go, Office, Place};
 use crate::app::{App, account_file_name, file_away};
-use crate::ledger::VisitState;
+use crate::ledger::{Visit, VisitState};
 use crate::quantity::{Mass, MassUnit, Ratio, rounded_text};
 use crate::record::{AccountLine, AnnualAccount, GasAccount, account_csv, account_json};
 use crate::rules::rulebook;
@@ -112,19 +112,27 @@ impl Office {
     pub(super) fn refresh_account(&mut self, app: &App) {
         let year = self.account.year.unwrap_or_else(|| self.today.year());
         let owner = Some(self.account.owner.as_str()).filter(|owner| !owner.is_empty());
-        let read = app.annual_account(year, owner).and_then(|account| {
-            let all = app.store().visits(&VisitFilter::default())?;
-            Ok((account, all))
-        });
+        let read = app
+            .annual_account(year, owner)
+            .and_then(|account| Ok((account, app.store().visits(&VisitFilter::default())?, app.store().registers()?)));
         match read {
-            Ok((account, visits)) => {
+            Ok((account, visits, registers)) => {
                 let to = account.to;
-                let done = visits.iter().filter(|visit| visit.state != VisitState::Open);
+                let whose = |visit: &&Visit| {
+                    let site = registers.site(visit.site);
+                    let facts = site.map(|site| site.versions.on(visit.date).unwrap_or_else(|| site.versions.latest()));
+                    owner.is_none_or(|owner| facts.is_some_and(|facts| facts.owner == owner))
+                };
+                let done = visits.iter().filter(|visit| visit.state != VisitState::Open).filter(whose);
                 self.account.visits = done.filter(|visit| visit.date.year() == year && visit.date <= to).count();
                 self.account.first_year = visits.iter().map(|visit| visit.date.year()).min();
                 self.account.account = Some(account);
             }
-            Err(error) => self.fail(&error),
+            Err(error) => {
+                // Another owner's or year's account must not stand under this choice.
+                self.account.account = None;
+                self.fail(&error);
+            }
         }
     }
 

@@ -9,8 +9,8 @@ use crate::ledger::{Act, ApplianceFacts, ApplianceId, Entry, VisitState};
 use crate::quantity::{MassUnit, Ratio};
 use crate::rules::{self, DutyState};
 use crate::store::VisitFilter;
-use crate::view::shown::{Fact, Line, Rate};
-use crate::view::{format, words};
+use crate::view::shown::{Fact, Line, Rate, Reason};
+use crate::view::{format, why, words};
 use words::office as say;
 
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -20,6 +20,7 @@ pub struct AppliancePage {
     pub name: String,
     pub state: String,
     pub rates: Vec<Rate>,
+    pub reasons: Vec<Reason>,
     pub history: Option<RateHistory>,
     pub duties: Vec<Line>,
     pub leaks: Vec<Line>,
@@ -90,6 +91,13 @@ impl Office {
                 LifeState::Retired => say::retired(),
             },
             rates: self.rates(judged),
+            reasons: {
+                let rates = judged
+                    .books
+                    .iter()
+                    .flat_map(|book| why::of_rate(book, book.rate(), judged.readings_for(&book.id, book.rate()), self.units.mass));
+                rates.chain(why::of_points(&judged.points)).collect()
+            },
             history: rates::history(judged),
             duties: duties.map(|duty| Line { facts: duty.source.clone(), ..due::duty_row(judged, duty, self.today, soon) }).collect(),
             leaks: judged.leaks.iter().map(|leak| due::leak_row(judged, leak, self.today)).collect(),

@@ -29,9 +29,9 @@ pub fn charge_methods() -> Vec<Choice> {
 
 impl Office {
     /// Opens the form; without an appliance one is added at the site that is open, or at the first.
-    pub(super) fn begin_appliance_form(&mut self, appliance: Option<ApplianceId>) {
+    pub(super) fn begin_appliance_form(&mut self, app: &App, appliance: Option<ApplianceId>) {
         let Some(overview) = &self.overview else { return };
-        let mut form = Form::default().with("category", Category::CommercialRefrigeration.name());
+        let mut form = new_appliance();
         if let Some(judged) = appliance.and_then(|id| overview.judged(id)) {
             form = filled(judged.appliance.name.as_str(), judged.appliance.versions.latest());
             form.set("valid-from", self.today.to_string());
@@ -45,12 +45,12 @@ impl Office {
             self.plant.form_site = open.or_else(|| overview.registers.sites.first().map(|site| site.id));
             if self.plant.form_site.is_none() {
                 self.say(say::choose_site_first());
-                self.begin_site_form(None);
+                self.begin_site_form(app, None);
                 return;
             }
         }
         self.plant.form_appliance = appliance;
-        self.plant.appliance_form = form;
+        self.plant.appliance_form = self.taken_up(app, &self.appliance_draft(), form);
         self.plant.show(Pane::ApplianceForm);
     }
 
@@ -85,9 +85,22 @@ impl Office {
             FormMsg::Chosen(field, key) => form.set(field, key),
             FormMsg::Switched(field, on) => form.switch(&field, on),
             FormMsg::More(more) => form.more = more,
+            FormMsg::Anew => {
+                self.forget(app, &self.appliance_draft());
+                let fresh = self.taken_up(app, &self.appliance_draft(), new_appliance());
+                self.plant.appliance_form = fresh;
+                return Vec::new();
+            }
             FormMsg::Save => return self.save_appliance(app),
         }
+        let kept = self.plant.appliance_form.keep(app, &self.appliance_draft());
+        self.tell(kept);
         Vec::new()
+    }
+
+    /// The name under which what is being typed is kept: one for each site.
+    fn appliance_draft(&self) -> String {
+        format!("appliance at {}", self.plant.form_site.map(|site| site.to_string()).unwrap_or_default())
     }
 
     fn save_appliance(&mut self, app: &App) -> Vec<Go> {
@@ -118,6 +131,7 @@ impl Office {
             Ok(id) => {
                 self.plant.back();
                 if changed.is_none() {
+                    self.forget(app, &self.appliance_draft());
                     self.plant.show(Pane::Appliance(id));
                 }
                 self.written(app)
@@ -130,6 +144,10 @@ impl Office {
             }
         }
     }
+}
+
+fn new_appliance() -> Form {
+    Form::default().with("category", Category::CommercialRefrigeration.name())
 }
 
 fn filled(name: &str, facts: &ApplianceFacts) -> Form {

@@ -8,9 +8,12 @@ use crate::app::App;
 use crate::ledger::{CylinderFacts, CylinderId, CylinderKind, GasStatus};
 use crate::quantity::{GaugePressure, MassUnit};
 use crate::view::gases::gas_named;
-use crate::view::parse;
 use crate::view::shown::{Choice, Ready};
 use crate::view::words::office as say;
+use crate::view::{format, parse};
+
+/// The name under which what is being typed is kept.
+const DRAFT: &str = "cylinder";
 
 const FIELDS: [(&str, &str); 5] =
     [("name", "identification"), ("refrigerant", "gas"), ("gas", "gas"), ("tare", "tare"), ("gross", "gross")];
@@ -25,14 +28,23 @@ pub fn states() -> Vec<Choice> {
 }
 
 impl Office {
-    pub(super) fn begin_cylinder_form(&mut self, cylinder: Option<CylinderId>) {
+    pub(super) fn begin_cylinder_form(&mut self, app: &App, cylinder: Option<CylinderId>) {
         let known = cylinder.and_then(|id| self.cylinders.all.iter().find(|known| known.cylinder.id == id));
-        self.cylinders.form = match known {
+        let form = match known {
             Some(known) => filled(&known.cylinder.name, known.cylinder.versions.latest()),
             None => Form::default().with("kind", CylinderKind::Supply.name()).with("status", GasStatus::Virgin.name()),
         };
+        self.cylinders.form = self.taken_up(app, DRAFT, form);
         self.cylinders.changed = cylinder;
         self.cylinders.pane = Pane::Form;
+    }
+
+    /// What the cylinder that is changed weighed last, and when; empty where that is not known.
+    pub fn last_gross_words(&self) -> String {
+        let known = self.cylinders.changed.and_then(|id| self.cylinders.all.iter().find(|known| known.cylinder.id == id));
+        let last = known.and_then(|known| known.balance.last_gross);
+        let day = |last: &crate::ledger::KnownGross| last.at.map(|at| format::full_day(at.date)).unwrap_or_default();
+        last.map(|last| say::last_gross(&format::mass(last.gross, self.units.mass), &day(&last))).unwrap_or_default()
     }
 
     pub fn cylinder_form_ready(&self) -> Ready {
@@ -69,8 +81,15 @@ impl Office {
             FormMsg::Chosen(field, key) => form.set(field, key),
             FormMsg::Switched(field, on) => form.switch(&field, on),
             FormMsg::More(more) => form.more = more,
+            FormMsg::Anew => {
+                self.forget(app, DRAFT);
+                self.begin_cylinder_form(app, None);
+                return Vec::new();
+            }
             FormMsg::Save => return self.save_cylinder(app),
         }
+        let kept = self.cylinders.form.keep(app, DRAFT);
+        self.tell(kept);
         Vec::new()
     }
 
@@ -106,6 +125,9 @@ impl Office {
         };
         match done {
             Ok(id) => {
+                if changed.is_none() {
+                    self.forget(app, DRAFT);
+                }
                 self.cylinders.changed = None;
                 self.cylinders.pane = Pane::Cylinder(id);
                 let go = self.written(app);

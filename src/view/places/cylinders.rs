@@ -101,10 +101,10 @@ impl Office {
                     self.refresh_cylinders(app);
                 }
             }
-            Msg::Add => self.begin_cylinder_form(None),
+            Msg::Add => self.begin_cylinder_form(app, None),
             Msg::Edit => {
                 if let Pane::Cylinder(cylinder) = self.cylinders.pane {
-                    self.begin_cylinder_form(Some(cylinder));
+                    self.begin_cylinder_form(app, Some(cylinder));
                 }
             }
             Msg::OpenMovement(key) => {

@@ -1,36 +1,41 @@
-//! Due: what is late, what is due within the chosen days, what comes later,
-//! open leaks, what was met lately; the open visits on top.
+//! Due: the open visits, the list of what is due, and one duty or leak read in full.
 
+use super::due_list::{Group, Grouping};
 use super::overview::Judged;
 use super::{First, Go, Office, Place, id, plant};
 use crate::app::App;
 use crate::ledger::{OpenLeak, VisitId};
 use crate::rules::{self, Duty, DutyKind, DutyState, InForce as _};
-use crate::view::shown::{Choice, Fact, Line, Verdict};
-use crate::view::{format, words};
+use crate::view::shown::{Choice, Fact, Line, Reason, Verdict};
+use crate::view::{format, why, words};
 use chrono::{Days, NaiveDate};
 use words::office as say;
 
 const HORIZONS: [u32; 3] = [7, 30, 90];
-/// Days for which a met duty stays on the day's page.
-const LATELY: i64 = 30;
 
 #[derive(Debug, Clone)]
 pub struct State {
+    pub grouping: Grouping,
     pub horizon: u32,
     /// Key of the duty or leak that is read in full.
     pub open: Option<String>,
+    /// Where the list or the calendar was written, or why not.
+    pub written: String,
+    pub written_grave: bool,
 }
 
 impl Default for State {
     fn default() -> Self {
-        Self { horizon: HORIZONS[0], open: None }
+        Self { grouping: Grouping::Day, horizon: HORIZONS[0], open: None, written: String::new(), written_grave: false }
     }
 }
 
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub enum Msg {
+    Grouping(String),
     Horizon(String),
+    PrintList,
+    WriteCalendar,
     Open(String),
     OpenVisit(String),
     Begin,
@@ -43,6 +48,11 @@ pub struct Page {
     pub today: String,
     pub summary: String,
     pub visits: Vec<Line>,
+    pub groupings: Vec<Choice>,
+    pub grouping: String,
+    pub list_words: String,
+    pub written: String,
+    pub written_grave: bool,
     pub horizons: Vec<Choice>,
     pub horizon: String,
     pub lines: Vec<Line>,
@@ -63,6 +73,8 @@ pub struct Item {
     pub facts: Vec<Fact>,
     pub text: String,
     pub source: String,
+    /// The facts used, the sum worked through, the reading taken.
+    pub reasons: Vec<Reason>,
 }
 
 /// A duty's key outlives a new reading of the store.
@@ -75,7 +87,7 @@ pub fn leak_key(judged: &Judged, leak: &OpenLeak) -> String {
     format!("leak|{}|{}|{}", judged.appliance.id, leak.found_by, leak.place)
 }
 
-fn subject(judged: &Judged) -> String {
+pub fn subject(judged: &Judged) -> String {
     say::at_site(&judged.appliance.name, &judged.site.name)
 }
 
@@ -104,6 +116,11 @@ fn no_day(duty: &Duty) -> String {
     if duty.kind == DutyKind::RepairOfFoundLeak { words::without_undue_delay() } else { words::no_day_yet() }
 }
 
+/// `2 Apr 2026`, or why there is no day.
+pub fn dated(duty: &Duty) -> String {
+    duty.due.map_or_else(|| no_day(duty), format::full_day)
+}
+
 /// `repair 2 Apr`, `repair late`.
 pub fn by_words(duty: &Duty, on: NaiveDate, today: NaiveDate) -> String {
     let name = say::duty_short(duty.kind).to_lowercase();
@@ -130,6 +147,19 @@ fn share_asked(duty: &Duty) -> String {
 impl Office {
     pub(super) fn update_due(&mut self, app: &App, msg: Msg) -> Vec<Go> {
         match msg {
+            Msg::Grouping(key) => {
+                self.due.grouping = Grouping::of_key(&key);
+                self.due.written.clear();
+                Vec::new()
+            }
+            Msg::PrintList => {
+                self.print_due_list(app);
+                Vec::new()
+            }
+            Msg::WriteCalendar => {
+                self.write_calendar(app);
+                Vec::new()
+            }
             Msg::Horizon(days) => {
                 self.due.horizon = days.parse().ok().filter(|days| HORIZONS.contains(days)).unwrap_or(HORIZONS[0]);
                 Vec::new()
@@ -173,13 +203,14 @@ impl Office {
             facts: vec![Fact::new("since", format::full_day(leak.since)), Fact::new("gas", judged.facts.refrigerant.clone())],
             text: say::leak_asks(),
             source: String::new(),
+            reasons: Vec::new(),
         })
     }
 
     fn duty_item(&self, judged: &Judged, index: usize) -> Item {
         let duty = &judged.duties[index];
         let row = duty_row(judged, duty, self.today, self.soon());
-        let mut facts = vec![Fact::new("due", duty.due.map_or_else(|| no_day(duty), format::full_day))];
+        let mut facts = vec![Fact::new("due", dated(duty))];
         let from = judged.origins.get(index).copied().flatten();
         facts.push(Fact::new(
             "from",
@@ -191,6 +222,10 @@ impl Office {
         if let Some(rate) = judged.rate_behind(duty) {
             facts.push(Fact::new("leak rate then", format!("{} {}", format::percent(rate.percent), words::percent_a_year())));
             facts.push(Fact::new("trigger", format::trigger(rate.trigger)));
+        }
+        let same: Vec<String> = judged.pending().filter(|other| other.kind == duty.kind && *other != duty).map(dated).collect();
+        if !same.is_empty() {
+            facts.push(Fact::new("also open", same.join(", ")));
         }
         let title = rules::rulebook(&duty.rulebook).map_or_else(|| duty.rulebook.clone(), |book| book.title.clone());
         facts.push(Fact::new("rulebook", title));
@@ -207,7 +242,15 @@ impl Office {
             facts,
             text: say::duty_asks(duty.kind, &share_asked(duty)),
             source: duty.source.clone(),
+            reasons: self.why(judged, duty),
         }
+    }
+
+    /// The rate that a duty follows from, worked through, and why its rulebook applies.
+    fn why(&self, judged: &Judged, duty: &Duty) -> Vec<Reason> {
+        let Some(judgement) = judged.books.iter().find(|book| book.id == duty.rulebook) else { return Vec::new() };
+        let rate = judged.rate_behind(duty);
+        why::of_rate(judgement, rate, judged.readings_for(&duty.rulebook, rate), self.units.mass)
     }
 
     /// Last day of the chosen horizon.
@@ -220,6 +263,11 @@ impl Office {
             today: say::weekday(self.today),
             horizons: HORIZONS.iter().map(|days| Choice::new(days.to_string(), say::days(*days), "")).collect(),
             horizon: self.due.horizon.to_string(),
+            groupings: Grouping::ALL.iter().map(|grouping| Choice::word(grouping.key())).collect(),
+            grouping: self.due.grouping.key().to_owned(),
+            list_words: say::list_words(self.due.grouping.key(), (self.due.grouping == Grouping::Day).then_some(self.due.horizon)),
+            written: self.due.written.clone(),
+            written_grave: self.due.written_grave,
             begin_words: say::begin(),
             ..Page::default()
         };
@@ -237,9 +285,9 @@ impl Office {
                 Line::new(open.visit.id.to_string(), &open.site, facts).state(words::entries(open.entries), "")
             })
             .collect();
-        let groups = self.groups(overview.appliances.as_slice());
-        page.summary = say::due_summary(groups.late.len(), groups.soon.len(), &format::day(self.soon(), self.today));
-        page.lines = groups.rows(&format::day(self.soon(), self.today));
+        let (late, soon) = self.due_counts(overview);
+        page.summary = say::due_summary(late, soon, &format::day(self.soon(), self.today));
+        page.lines = self.due_groups(overview).into_iter().flat_map(Group::lines).collect();
         (page.empty_words, page.begin_words) = match self.first() {
             First::Company => say::first_company(),
             First::Person => say::first_person(),
@@ -254,73 +302,5 @@ impl Office {
             page.item = Some(item);
         }
         page
-    }
-
-    /// A leak's row among those of other appliances.
-    fn leak_at(&self, judged: &Judged, leak: &OpenLeak) -> Line {
-        Line { name: say::leak_of(&judged.appliance.name), ..leak_row(judged, leak, self.today) }
-    }
-
-    fn groups(&self, appliances: &[Judged]) -> Groups {
-        let soon = self.soon();
-        let mut groups = Groups::default();
-        for judged in appliances {
-            for duty in &judged.duties {
-                let row = Line { facts: subject(judged), ..duty_row(judged, duty, self.today, soon) };
-                match duty.state(judged.on) {
-                    DutyState::Late => groups.late.push((duty.due, row)),
-                    DutyState::Open if duty.due.is_none_or(|due| due <= soon) => groups.soon.push((duty.due, row)),
-                    DutyState::Open => groups.later.push((duty.due, row)),
-                    DutyState::Suspended => groups.suspended.push((duty.due, row)),
-                    DutyState::Met | DutyState::MetLate if duty.met_on.is_some_and(|met| (judged.on - met).num_days() <= LATELY) => {
-                        groups.met.push((duty.met_on, row));
-                    }
-                    _ => {}
-                }
-            }
-            for leak in &judged.leaks {
-                groups.leaks.push((Some(leak.since), self.leak_at(judged, leak)));
-            }
-        }
-        groups
-    }
-}
-
-type Dated = Vec<(Option<NaiveDate>, Line)>;
-
-#[derive(Default)]
-struct Groups {
-    late: Dated,
-    soon: Dated,
-    later: Dated,
-    suspended: Dated,
-    leaks: Dated,
-    met: Dated,
-}
-
-impl Groups {
-    fn rows(mut self, soon: &str) -> Vec<Line> {
-        let mut rows = Vec::new();
-        // What was met last stands first.
-        self.met.sort_by_key(|(day, _)| std::cmp::Reverse(*day));
-        let named = [
-            (say::late(), self.late, true),
-            (format::capital(&words::by_day(soon)), self.soon, true),
-            (say::open_leaks(), self.leaks, true),
-            (say::later(), self.later, true),
-            (format::capital(&words::suspended()), self.suspended, true),
-            (say::met_lately(), self.met, false),
-        ];
-        for (name, mut group, sort) in named {
-            if group.is_empty() {
-                continue;
-            }
-            if sort {
-                group.sort_by_key(|(day, _)| *day);
-            }
-            rows.push(Line::group(name, group.len().to_string()));
-            rows.extend(group.into_iter().map(|(_, row)| row));
-        }
-        rows
     }
 }

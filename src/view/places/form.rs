@@ -1,15 +1,22 @@
 //! What is being typed in a form: texts by field, switches, and what is wrong.
 
+use crate::app::{App, AppError};
+use serde::{Deserialize, Serialize};
 use std::collections::{BTreeMap, BTreeSet};
 
 /// Fields have the names that the screens give them.
-#[derive(Debug, Clone, Default, PartialEq, Eq)]
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(default)]
 pub struct Form {
     /// Something known is changed; otherwise something is added.
     pub changing: bool,
     /// The facts beyond the first few are shown.
     pub more: bool,
+    /// What was being typed when the form was left is back in it.
+    #[serde(skip)]
+    pub taken_up_again: bool,
     texts: BTreeMap<String, String>,
+    #[serde(skip)]
     errors: BTreeMap<String, String>,
     on: BTreeSet<String>,
 }
@@ -67,6 +74,28 @@ impl Form {
 
     pub fn clear_errors(&mut self) {
         self.errors.clear();
+    }
+
+    /// What was being typed in the form of this name, or `fresh`.
+    ///
+    /// # Errors
+    /// The store's own.
+    pub fn kept(app: &App, name: &str, fresh: Self) -> Result<Self, AppError> {
+        // What this program cannot read is left aside; it is no fact yet.
+        let kept: Option<Self> = app.kept_form(name)?.and_then(|body| serde_json::from_str(&body).ok());
+        Ok(kept.map_or(fresh, |form| Self { taken_up_again: true, ..form }))
+    }
+
+    /// Keeps what is being typed, where something is added: a change begins from what is known.
+    ///
+    /// # Errors
+    /// The store's own.
+    pub fn keep(&self, app: &App, name: &str) -> Result<(), AppError> {
+        match serde_json::to_string(self) {
+            Ok(body) if !self.changing => app.keep_form(name, &body),
+            // Forms are plain words: they always can be written.
+            _ => Ok(()),
+        }
     }
 
     /// Keeps what parses; else says what is wrong at the field.

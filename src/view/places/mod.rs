@@ -11,6 +11,7 @@ pub mod cylinder;
 pub mod cylinder_form;
 pub mod cylinders;
 pub mod due;
+mod due_list;
 mod form;
 mod overview;
 pub mod plant;
@@ -18,6 +19,7 @@ mod rates;
 pub mod record;
 pub mod setup;
 pub mod setup_forms;
+pub mod signing;
 mod site;
 pub mod site_form;
 #[cfg(test)]
@@ -195,6 +197,29 @@ impl Office {
 
     pub(super) fn fail(&mut self, error: &dyn std::fmt::Display) {
         self.message = Some(Message::grave(words::sentence(&error.to_string())));
+    }
+
+    fn tell(&mut self, outcome: Result<(), AppError>) {
+        if let Err(error) = outcome {
+            self.fail(&error);
+        }
+    }
+
+    /// What was being typed in the form of this name; a form that changes something known, and one
+    /// of which nothing is kept, stay as they are.
+    fn taken_up(&mut self, app: &App, name: &str, form: Form) -> Form {
+        if form.changing {
+            return form;
+        }
+        Form::kept(app, name, form.clone()).unwrap_or_else(|error| {
+            self.fail(&error);
+            form
+        })
+    }
+
+    fn forget(&mut self, app: &App, name: &str) {
+        let forgotten = app.forget_form(name);
+        self.tell(forgotten);
     }
 
     pub(super) fn say(&mut self, text: String) {

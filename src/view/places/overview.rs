@@ -6,7 +6,7 @@ use crate::ledger::{
     Act, Appliance, ApplianceFacts, ApplianceId, Line, OpenLeak, Registers, Site, TestResult, Visit, VisitId, by_appliance, open_leaks,
 };
 use crate::quantity::Ratio;
-use crate::rules::{self, Duty, DutyState, Judgement, LeakRate, assess};
+use crate::rules::{self, Duty, DutyState, Judgement, LeakRate, Point, assess, points, readings};
 use crate::store::{Store, StoreError};
 use chrono::{DateTime, NaiveDate, Utc};
 use chrono_tz::Tz;
@@ -49,6 +49,12 @@ pub struct Judged {
     pub repairs: Vec<NaiveDate>,
     pub jobs: BTreeSet<String>,
     pub state: LifeState,
+    /// Readings of the law taken for the rates that are shown: rulebook, charge, texts.
+    pub readings: Vec<(String, usize, Vec<String>)>,
+    /// What else the rulebooks ask of it.
+    pub points: Vec<Point>,
+    /// Who worked on it last; empty where nobody is known.
+    pub person: String,
 }
 
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -67,6 +73,7 @@ impl Overview {
         let registers = store.registers()?;
         let lines = by_appliance(store.lines()?);
         let sites: HashMap<_, &Site> = registers.sites.iter().map(|site| (site.id, site)).collect();
+        let people = store.last_people()?;
         let mut appliances = Vec::with_capacity(registers.appliances.len());
         for appliance in &registers.appliances {
             let Some(site) = sites.get(&appliance.site) else { continue };
@@ -74,6 +81,8 @@ impl Overview {
             let on = zone.map_or(today, |zone| now.with_timezone(&zone).date_naive());
             let own = lines.get(&appliance.id).map(Vec::as_slice).unwrap_or_default();
             let mut judged = Judged::of(site, appliance, own, on);
+            let person = people.get(&appliance.id).and_then(|id| registers.person(*id));
+            judged.person = person.map(|person| person.name.clone()).unwrap_or_default();
             let leaked = |line: &Line| matches!(line.act, Act::Test { result: Some(TestResult::LeakFound), .. });
             if own.iter().any(leaked) {
                 judged.leaks = open_leaks(&store.entries_of_appliance(appliance.id)?, on);
@@ -122,11 +131,25 @@ impl Judged {
             repairs: repairs.collect(),
             jobs: lines.iter().filter_map(|line| line.job.as_deref().map(str::to_owned)).collect(),
             state: life(lines, on),
+            readings: Vec::new(),
+            points: Vec::new(),
+            person: String::new(),
         };
         if let Some(assessment) = assess(site, appliance, lines, on) {
             let origin =
                 |duty: &Duty| duty.from_line.map(|line| (assessment.history.lines[line].act.name(), assessment.history.date(line)));
             judged.origins = assessment.duties.iter().map(origin).collect();
+            let shown = |judgement: &&Judgement, rate: &&LeakRate| {
+                judgement.rates.last() == Some(*rate) || assessment.duties.iter().any(|duty| duty.from_line == Some(rate.charge))
+            };
+            for judgement in &assessment.rulebooks {
+                for rate in judgement.rates.iter().filter(|rate| shown(&judgement, rate)) {
+                    // The first reading is the method's own, which the window says anyway.
+                    let texts = readings(&assessment.history, rate).into_iter().skip(1).map(|reading| reading.text).collect();
+                    judged.readings.push((judgement.id.clone(), rate.charge, texts));
+                }
+            }
+            judged.points = points(&assessment);
             judged.facts = assessment.facts;
             judged.duties = assessment.duties;
             judged.books = assessment.rulebooks;
@@ -163,6 +186,12 @@ impl Judged {
     pub fn rate_behind(&self, duty: &Duty) -> Option<&LeakRate> {
         let line = duty.from_line?;
         self.books.iter().filter(|book| book.id == duty.rulebook).flat_map(|book| &book.rates).find(|rate| rate.charge == line)
+    }
+
+    /// The readings of the law that were taken for a rate.
+    pub fn readings_for(&self, rulebook: &str, rate: Option<&LeakRate>) -> &[String] {
+        let own = self.readings.iter().find(|(id, charge, _)| id == rulebook && rate.is_some_and(|rate| rate.charge == *charge));
+        own.map_or(&[], |(.., texts)| texts.as_slice())
     }
 
     /// The titles of the rulebooks that apply.

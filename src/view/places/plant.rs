@@ -4,7 +4,7 @@ use super::appliance::AppliancePage;
 use super::overview::{Judged, LifeState, Overview};
 use super::record::RecordPage;
 use super::site::SitePage;
-use super::{Form, Go, Office, Place, due, id};
+use super::{Form, Go, Office, Place, due, id, signing};
 use crate::app::App;
 use crate::ledger::{ApplianceId, EntryId, SiteId, VisitId};
 use crate::view::bars::{small_rate_bar, verdict};
@@ -40,6 +40,8 @@ pub struct State {
     pub site: Option<SitePage>,
     pub appliance: Option<AppliancePage>,
     pub record: Option<RecordPage>,
+    /// The record that is open is being signed.
+    pub signing: Option<signing::State>,
 }
 
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -60,6 +62,7 @@ pub enum Msg {
     OpenEntry(String),
     OpenRecordFile,
     OpenRecordFolder,
+    Signing(signing::Msg),
     ApplianceForm(FormMsg),
     SiteForm(FormMsg),
 }
@@ -71,6 +74,8 @@ pub enum FormMsg {
     Chosen(&'static str, String),
     Switched(String, bool),
     More(bool),
+    /// Empties a form that was taken up again.
+    Anew,
     Save,
 }
 
@@ -85,6 +90,9 @@ impl State {
     }
 
     pub(super) fn back(&mut self) -> bool {
+        if self.signing.take().is_some() {
+            return true;
+        }
         let moved = self.pane != Pane::None;
         self.pane = self.trail.pop().unwrap_or_default();
         moved
@@ -138,16 +146,16 @@ impl Office {
         match msg {
             Msg::Search(text) => self.plant.search = text,
             Msg::Open(key) => self.open_in_plant(app, &key),
-            Msg::AddSite => self.begin_site_form(None),
-            Msg::AddAppliance => self.begin_appliance_form(None),
+            Msg::AddSite => self.begin_site_form(app, None),
+            Msg::AddAppliance => self.begin_appliance_form(app, None),
             Msg::EditAppliance => {
                 if let Pane::Appliance(appliance) = self.plant.pane {
-                    self.begin_appliance_form(Some(appliance));
+                    self.begin_appliance_form(app, Some(appliance));
                 }
             }
             Msg::EditSite => {
                 if let Pane::Site(site) = self.plant.pane {
-                    self.begin_site_form(Some(site));
+                    self.begin_site_form(app, Some(site));
                 }
             }
             Msg::BeginAtAppliance => {
@@ -173,6 +181,7 @@ impl Office {
             }
             Msg::OpenRecordFile => return self.record_file(app, true),
             Msg::OpenRecordFolder => return self.record_file(app, false),
+            Msg::Signing(msg) => return self.update_signing(app, msg),
             Msg::ApplianceForm(msg) => return self.update_appliance_form(app, msg),
             Msg::SiteForm(msg) => return self.update_site_form(app, msg),
         }

@@ -2,9 +2,10 @@
 
 use super::appliance::{short_print, told};
 use super::plant::Pane;
+use super::signing::may_sign;
 use super::{Go, Office};
 use crate::app::{App, AppError, file_away};
-use crate::ledger::{Act, ApplianceId, Counterpart, VisitId};
+use crate::ledger::{Act, ApplianceId, Counterpart, Moment, VisitId};
 use crate::view::format;
 use crate::view::shown::{Fact, Line};
 use crate::view::words;
@@ -20,6 +21,10 @@ pub struct RecordPage {
     pub facts: Vec<Fact>,
     pub entries: Vec<Line>,
     pub corrections: Vec<Fact>,
+    /// The representative has not signed, and still may.
+    pub can_sign: bool,
+    /// Who that would be, as far as it was said at closing.
+    pub signer: String,
 }
 
 impl Office {
@@ -29,12 +34,17 @@ impl Office {
         let Some(appliance) = overview.registers.appliance(appliance) else { return Ok(None) };
         let site = overview.registers.site(visit.site).map(|site| site.name.clone()).unwrap_or_default();
         let person = |id| overview.registers.person(id).map(|person| person.name.clone()).unwrap_or_default();
+        let later = app.store().countersignature(visit.id)?;
         let mut facts = Vec::new();
         let people: Vec<String> = visit.people.iter().map(|id| person(*id)).collect();
         if let Some(closing) = &visit.closing {
             facts.push(Fact::new("technician", format!("{}, signed", closing.technician.name)));
-            facts.push(Fact::new("representative", counterpart(&closing.counterpart)));
-            let at = crate::ledger::Moment { date: closing.date, minute: Some(closing.minute) };
+            let signed_later = later.as_ref().map(|later| {
+                let at = Moment { date: later.date, minute: Some(later.minute) };
+                say::signed_later(&later.signature.name, &format!("{} {}", format::full_day(at.date), format::clock(at.minute)))
+            });
+            facts.push(Fact::new("representative", signed_later.unwrap_or_else(|| counterpart(&closing.counterpart))));
+            let at = Moment { date: closing.date, minute: Some(closing.minute) };
             facts.push(Fact::new("closed", format!("{} {}", format::full_day(at.date), format::clock(at.minute))));
             facts.push(Fact::new("handed over", if closing.handed_over.is_empty() { "not yet" } else { &closing.handed_over }));
         } else {
@@ -88,6 +98,8 @@ impl Office {
             facts,
             entries: rows,
             corrections,
+            can_sign: may_sign(&visit, later.is_some()),
+            signer: visit.closing.map(|closing| named(&closing.counterpart)).unwrap_or_default(),
         }))
     }
 
@@ -121,6 +133,15 @@ fn short_act(act: &Act) -> String {
         Act::Test { kind: crate::ledger::TestKind::LeakInspection, .. } => "Inspection".to_owned(),
         Act::DetectionSystemCheck => "Detection system check".to_owned(),
         act => format::capital(act.name()),
+    }
+}
+
+/// The representative's name, where one was written down.
+fn named(counterpart: &Counterpart) -> String {
+    match counterpart {
+        Counterpart::Signed { signature } => signature.name.clone(),
+        Counterpart::SignsLater { name } | Counterpart::Refused { name, .. } => name.clone(),
+        Counterpart::NobodyPresent => String::new(),
     }
 }
 

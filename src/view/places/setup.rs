@@ -153,7 +153,7 @@ impl Office {
                     Pane::Instruments => self.begin_instrument_form(Some(InstrumentId(id))),
                     Pane::Rulebooks => {
                         self.place = Place::Plant;
-                        self.begin_site_form(Some(SiteId(id)));
+                        self.begin_site_form(app, Some(SiteId(id)));
                     }
                     _ => {}
                 }

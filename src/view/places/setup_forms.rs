@@ -49,6 +49,7 @@ fn typed(form: &mut Form, msg: FormMsg) -> bool {
         FormMsg::Chosen(field, key) => form.set(field, key),
         FormMsg::Switched(field, on) => form.switch(&field, on),
         FormMsg::More(more) => form.more = more,
+        FormMsg::Anew => {}
         FormMsg::Save => return true,
     }
     false

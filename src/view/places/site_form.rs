@@ -9,6 +9,9 @@ use crate::rules::{self, known};
 use crate::view::shown::{Choice, Ready};
 use crate::view::words::office as say;
 
+/// The name under which what is being typed is kept.
+const DRAFT: &str = "site";
+
 const FIELDS: [(&str, &str); 3] = [("name", "name"), ("rulebooks", "rulebooks"), ("time zone", "time-zone")];
 
 /// A rulebook that a site can be judged by.
@@ -39,7 +42,7 @@ pub fn methods() -> Vec<Choice> {
 }
 
 impl Office {
-    pub(super) fn begin_site_form(&mut self, site: Option<SiteId>) {
+    pub(super) fn begin_site_form(&mut self, app: &App, site: Option<SiteId>) {
         let mut form = Form::default().with("method", RateMethod::Annualizing.name());
         let registers = self.overview.as_ref().map(|overview| &overview.registers);
         if let Some(site) = site.and_then(|id| registers?.site(id)) {
@@ -62,7 +65,7 @@ impl Office {
             }
         }
         self.plant.changed_site = site;
-        self.plant.site_form = form;
+        self.plant.site_form = self.taken_up(app, DRAFT, form);
         self.plant.show(Pane::SiteForm);
     }
 
@@ -105,8 +108,15 @@ impl Office {
             FormMsg::Chosen(field, key) => form.set(field, key),
             FormMsg::Switched(field, on) => form.switch(&field, on),
             FormMsg::More(more) => form.more = more,
+            FormMsg::Anew => {
+                self.forget(app, DRAFT);
+                self.begin_site_form(app, None);
+                return Vec::new();
+            }
             FormMsg::Save => return self.save_site(app),
         }
+        let kept = self.plant.site_form.keep(app, DRAFT);
+        self.tell(kept);
         Vec::new()
     }
 
@@ -138,6 +148,9 @@ impl Office {
         };
         match done {
             Ok(site) => {
+                if self.plant.changed_site.is_none() {
+                    self.forget(app, DRAFT);
+                }
                 self.plant.back();
                 self.plant.show(Pane::Site(site));
                 self.written(app)

@@ -4,13 +4,17 @@ use super::cylinders::Msg as Cylinders;
 use super::due::Msg as Due;
 use super::plant::{FormMsg, Msg as Plant, Pane};
 use super::setup::{Msg as Setup, Pane as SetupPane};
-use super::{First, Go, Look, Msg, Office, Overview, Place};
+use super::{First, Go, Look, Msg, Office, Overview, Place, signing};
 use crate::app::testing::{CountedIds, SetClock};
 use crate::app::{App, Appearance, ChargeInput, Common, NewEntry, Setting, TestInput};
-use crate::ledger::{ApplianceId, ChargePurpose, LeakPlace, Reading, Scope, SiteId, TestKind, TestResult, Visit, WeighingMode};
+use crate::ledger::{
+    ApplianceId, ChargePurpose, Counterpart, Ink, LeakPlace, Reading, Scope, Signature, SiteId, TestKind, TestResult, Visit, VisitId,
+    WeighingMode,
+};
 use crate::quantity::{MassUnit, Weighing};
 use crate::store::{OpenMode, Store};
-use crate::view::shown::Verdict;
+use crate::view::shown::{Line, Verdict};
+use crate::view::visit::close::InkMsg;
 use chrono_tz::Tz;
 
 struct Bench {
@@ -380,4 +384,177 @@ fn the_account_follows_the_charges_and_is_exported() {
     }
     bench.tell(Msg::Account(super::account::Msg::Gas("R-410A".to_owned())));
     assert_eq!(bench.office.account_page().plates, []);
+}
+
+fn signature(name: &str) -> Signature {
+    Signature { name: name.to_owned(), ink: Ink(vec![vec![(10, 20), (30, 40)]]) }
+}
+
+/// A visit with one charge, closed with a representative who signs later, and its record's page.
+fn closed_for_later() -> (Bench, VisitId) {
+    let mut bench = led();
+    let (_, id) = bench.ids();
+    let visit = bench.begin();
+    bench.charge(&visit, id, "70", "50");
+    let later = Counterpart::SignsLater { name: "Teodora Vance".to_owned() };
+    bench.app.close_visit(visit.id, signature("Ada Quill"), later).unwrap();
+    bench.office.look(&bench.app);
+    bench.tell(Msg::Go(Place::Plant));
+    bench.tell(Msg::Plant(Plant::Open(id.to_string())));
+    bench.tell(Msg::Plant(Plant::OpenRecord(visit.id.to_string())));
+    (bench, visit.id)
+}
+
+#[test]
+fn who_signs_later_signs_on_the_record() {
+    let (mut bench, visit) = closed_for_later();
+    let page = bench.office.plant.record.clone().unwrap();
+    assert!(page.can_sign && page.facts.iter().any(|fact| fact.value == "Teodora Vance, signs later"), "{:?}", page.facts);
+    let opened = |bench: &mut Bench| match bench.tell(Msg::Plant(Plant::OpenRecordFile)).as_slice() {
+        [Go::Open(path)] => std::fs::read(path).unwrap(),
+        other => panic!("{other:?}"),
+    };
+    let unsigned = opened(&mut bench);
+
+    bench.tell(Msg::Plant(Plant::Signing(signing::Msg::Begin)));
+    assert_eq!(bench.office.plant.signing.as_ref().unwrap().name, "Teodora Vance");
+    assert!(!bench.office.plant.signing.as_ref().unwrap().ready().ready, "nothing is drawn yet");
+    // Back leaves the signature, not the record.
+    assert_eq!(bench.tell(Msg::Back), []);
+    assert!(bench.office.plant.signing.is_none() && matches!(bench.office.plant.pane, Pane::Record(..)));
+
+    bench.tell(Msg::Plant(Plant::Signing(signing::Msg::Begin)));
+    for (x, first) in [(100, true), (900, false)] {
+        bench.tell(Msg::Plant(Plant::Signing(signing::Msg::Ink(InkMsg::Point { x, y: 500, first }))));
+    }
+    bench.tell(Msg::Plant(Plant::Signing(signing::Msg::Sign)));
+    assert_eq!(bench.office.message, None);
+    assert_eq!(bench.app.store().countersignature(visit).unwrap().unwrap().signature.name, "Teodora Vance");
+    let page = bench.office.plant.record.clone().unwrap();
+    assert!(!page.can_sign && bench.office.plant.signing.is_none());
+    assert!(page.facts.iter().any(|fact| fact.value.starts_with("Teodora Vance, signed later, 3 Mar 2026")), "{:?}", page.facts);
+    // The same name opens the record as it now stands.
+    let signed = opened(&mut bench);
+    assert_ne!(signed, unsigned);
+    assert_eq!(signed, bench.app.print_record(visit, None).unwrap().bytes);
+}
+
+#[test]
+fn what_is_half_typed_in_a_form_outlives_the_program() {
+    let folder = tempfile::tempdir().unwrap();
+    let path = folder.path().join("s.db");
+    {
+        let mut bench = bench_on(Store::open(&path, OpenMode::Create).unwrap());
+        bench.tell(Msg::Plant(Plant::AddSite));
+        bench.type_in(site, &[("name", "Ice ri")]);
+        bench.tell(site(FormMsg::Chosen("rulebook", "us-82f".to_owned())));
+        bench.tell(Msg::Cylinders(Cylinders::Add));
+        bench.type_in(cylinder, &[("identification", "S-2")]);
+        bench.app.flush_drafts().unwrap();
+    }
+    let mut bench = bench_on(Store::open(&path, OpenMode::MustExist).unwrap());
+    bench.tell(Msg::Cylinders(Cylinders::Add));
+    assert_eq!(bench.office.cylinders.form.text("identification"), "S-2");
+    bench.tell(Msg::Plant(Plant::AddSite));
+    let form = &bench.office.plant.site_form;
+    assert!(form.taken_up_again && form.text("name") == "Ice ri" && form.is_on("rulebook us-82f"), "{form:?}");
+    bench.type_in(site, &[("name", "Ice rink")]);
+    bench.tell(site(FormMsg::Save));
+    assert_eq!(bench.app.store().registers().unwrap().sites.len(), 1);
+    bench.tell(Msg::Plant(Plant::AddSite));
+    assert!(!bench.office.plant.site_form.taken_up_again, "what was saved is no draft any more");
+
+    bench.tell(Msg::Plant(Plant::AddAppliance));
+    bench.type_in(appliance, &[("identification", "H-")]);
+    bench.tell(Msg::Back);
+    bench.tell(Msg::Plant(Plant::AddAppliance));
+    assert_eq!(bench.office.plant.appliance_form.text("identification"), "H-");
+    bench.tell(appliance(FormMsg::Anew));
+    let form = &bench.office.plant.appliance_form;
+    assert!(!form.taken_up_again && form.text("identification").is_empty() && !form.text("category").is_empty(), "{form:?}");
+}
+
+#[test]
+fn one_row_stands_for_all_duties_of_a_kind() {
+    let mut bench = led();
+    let (_, id) = bench.ids();
+    let visit = bench.begin();
+    bench.charge(&visit, id, "70", "50");
+    bench.clock.forward(chrono::Duration::days(10));
+    bench.charge(&visit, id, "50", "40");
+    bench.clock.forward(chrono::Duration::days(10));
+    bench.charge(&visit, id, "40", "30");
+    bench.office.look(&bench.app);
+    let pending = |bench: &Bench, name: &str| {
+        let judged = &bench.office.overview.as_ref().unwrap().appliances[0];
+        judged.pending().filter(|duty| duty.kind.name() == name).count()
+    };
+    let repairs = pending(&bench, "repair");
+    assert!(repairs > 1, "two rates over the trigger, each with its repair: {repairs}");
+    let page = bench.office.due_page();
+    let rows: Vec<&Line> = page.lines.iter().filter(|row| row.name.starts_with("Repair")).collect();
+    assert_eq!((rows.len(), rows[0].name.as_str()), (1, format!("Repair ({repairs})").as_str()));
+    let item = {
+        bench.tell(Msg::Due(Due::Open(rows[0].key.clone())));
+        bench.office.due_page().item.unwrap()
+    };
+    assert!(item.facts.iter().any(|fact| fact.caption == "also open"), "{:?}", item.facts);
+    // The sum is worked through, with its article.
+    let sum = item.reasons.iter().flat_map(|reason| &reason.inputs).find(|fact| fact.caption == "sum").expect("a sum");
+    assert!(sum.value.contains("365") && item.reasons.iter().any(|reason| reason.source.contains("82.152")), "{:?}", item.reasons);
+
+    for (grouping, heading, facts) in
+        [("site", "Fish market", "R-1"), ("person", "Ada Quill", "R-1, Fish market"), ("month", "April 2026", "R-1, Fish market")]
+    {
+        bench.tell(Msg::Due(Due::Grouping(grouping.to_owned())));
+        let lines = bench.office.due_page().lines;
+        assert!(lines.iter().any(|row| row.heading && row.name == heading), "{grouping}: {lines:?}");
+        assert!(lines.iter().any(|row| row.name.starts_with("Repair") && row.facts == facts), "{grouping}: {lines:?}");
+    }
+    bench.tell(Msg::Due(Due::PrintList));
+    let printed = bench.office.documents.join("due 2026-03-23 by month.pdf");
+    assert!(std::fs::read(&printed).unwrap().starts_with(b"%PDF-"), "{}", bench.office.due.written);
+    bench.tell(Msg::Due(Due::WriteCalendar));
+    let calendar = std::fs::read_to_string(bench.office.documents.join("duties.ics")).unwrap();
+    assert!(calendar.starts_with("BEGIN:VCALENDAR") && calendar.contains("R-1"), "{calendar}");
+}
+
+#[test]
+fn an_account_of_one_owner_counts_that_owners_visits() {
+    let mut bench = led();
+    let (_, id) = bench.ids();
+    let visit = bench.begin();
+    bench.charge(&visit, id, "70", "50");
+    bench.app.close_visit(visit.id, signature("Ada Quill"), Counterpart::NobodyPresent).unwrap();
+    bench.tell(Msg::Plant(Plant::AddSite));
+    bench.type_in(site, &[("name", "Ice rink"), ("owner", "Rink Ltd")]);
+    bench.tell(site(FormMsg::Save));
+    bench.tell(Msg::Plant(Plant::AddAppliance));
+    bench.type_in(appliance, &[("identification", "H-1"), ("gas", "R-22")]);
+    bench.tell(appliance(FormMsg::Save));
+    bench.tell(Msg::Go(Place::Account));
+    assert!(bench.office.account_page().extent.ends_with("from 1 visit"), "{}", bench.office.account_page().extent);
+    bench.tell(Msg::Account(super::account::Msg::Owner("Rink Ltd".to_owned())));
+    assert!(bench.office.account_page().extent.ends_with("from 0 visits"), "{}", bench.office.account_page().extent);
+    bench.tell(Msg::Account(super::account::Msg::Owner("Harbour Fish Ltd".to_owned())));
+    assert!(bench.office.account_page().extent.ends_with("from 1 visit"), "{}", bench.office.account_page().extent);
+}
+
+#[test]
+fn a_cylinder_is_weighed_anew_beside_what_was_last_known() {
+    let mut bench = led();
+    let key = bench.office.cylinders_page().lines[1].key.clone();
+    bench.tell(Msg::Cylinders(Cylinders::Open(key)));
+    bench.tell(Msg::Cylinders(Cylinders::Edit));
+    assert_eq!(bench.office.cylinders.form.text("gross"), "");
+    assert!(bench.office.last_gross_words().starts_with("last known 31.75"), "{}", bench.office.last_gross_words());
+}
+
+#[test]
+fn a_chronic_leak_is_reported_at_the_laws_own_share() {
+    let asks = crate::view::words::office::duty_asks(crate::rules::DutyKind::ChronicLeakReport, "125 %");
+    assert!(asks.contains("125 %"), "{asks}");
+    let rows = &crate::rules::rulebook("us-82f").unwrap().duties;
+    let row = rows.iter().find(|row| row.duty == crate::rules::DutyKind::ChronicLeakReport).unwrap();
+    assert_eq!(row.percent.map(crate::view::format::trigger).as_deref(), Some("125 %"), "the window shows the row's own share");
 }

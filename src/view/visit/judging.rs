@@ -1,12 +1,12 @@
 //! What the rules make of an appliance, as bars, rows and reasons.
 
 use crate::app::ApplianceStanding;
-use crate::ledger::{Act, EntryId, Line, RateMethod};
+use crate::ledger::{Act, EntryId, Line};
 use crate::quantity::MassUnit;
-use crate::rules::{self, Assessment, Duty, DutyKind, DutyState, Judgement, LeakRate, assess, points, readings, rulebook};
+use crate::rules::{self, Assessment, Duty, DutyKind, DutyState, Judgement, LeakRate, assess, points, readings};
 use crate::view::bars::{rate_bar, verdict};
 use crate::view::shown::{Fact, Rate, Reason, Verdict};
-use crate::view::{format, shown, words};
+use crate::view::{format, shown, why, words};
 use chrono::NaiveDate;
 
 /// What the page and the charge page show of an appliance.
@@ -112,7 +112,7 @@ impl Sight<'_> {
         };
         match rate {
             Some(rate) => Rate {
-                rulebook: title(&judgement.id),
+                rulebook: why::title(&judgement.id),
                 figure: format::percent(rate.percent),
                 unit: words::percent_a_year(),
                 trigger: format::trigger(rate.trigger),
@@ -122,7 +122,7 @@ impl Sight<'_> {
                 ..rate_bar(rate)
             },
             None => Rate {
-                rulebook: title(&judgement.id),
+                rulebook: why::title(&judgement.id),
                 word: words::no_rate_due(),
                 consequence: self.why_no_rate(judgement),
                 ..Rate::default()
@@ -157,59 +157,14 @@ impl Sight<'_> {
     }
 
     fn reasons(&self) -> Vec<Reason> {
-        let mut reasons = Vec::new();
-        for judgement in &self.assessment.rulebooks {
+        let of = |judgement: &Judgement| {
             let rate = judgement.rate();
-            if let Some(rate) = rate {
-                reasons.push(self.working(rate));
-                reasons.push(Reason {
-                    title: words::trigger_title(&format::trigger(rate.trigger)),
-                    text: words::sentence(&judgement.why),
-                    source: rate.trigger_source.clone(),
-                    ..Reason::default()
-                });
-            } else {
-                reasons.push(Reason {
-                    title: words::applies_because(&title(&judgement.id), judgement.applies),
-                    text: words::sentence(&judgement.why),
-                    ..Reason::default()
-                });
-            }
-        }
-        // What else the rulebooks ask: detection systems, records, later due days, gas that may not be used.
-        reasons.extend(points(self.assessment).into_iter().map(|point| Reason {
-            title: title(&point.rulebook),
-            text: words::sentence(&point.text),
-            source: point.source,
-            ..Reason::default()
-        }));
-        reasons
-    }
-
-    fn working(&self, rate: &LeakRate) -> Reason {
-        let (title, text) = match rate.method {
-            RateMethod::Annualizing => (words::annualizing_title(), words::annualizing_text()),
-            RateMethod::RollingAverage => (words::rolling_title(), words::rolling_text()),
+            // The first reading is the method's own, which the text says already.
+            let taken = rate.iter().flat_map(|rate| readings(&self.assessment.history, rate).into_iter().skip(1));
+            why::of_rate(judgement, rate, &taken.map(|reading| reading.text).collect::<Vec<_>>(), self.unit)
         };
-        let mut inputs = vec![
-            Fact::new("added", format::mass(rate.added, self.unit)),
-            Fact::new("full charge", format::mass(rate.full_charge, self.unit)),
-        ];
-        if let Some(days) = rate.days {
-            inputs.push(Fact::new("days", days.to_string()));
-        }
-        if let Some(from) = rate.window_from {
-            inputs.push(Fact::new("counted from", format::full_day(from)));
-        }
-        inputs.extend(rate.notes.iter().map(|note| Fact::new("taken for granted", note)));
-        // The first reading is the method's own, which the text says already.
-        let readings = readings(&self.assessment.history, rate).into_iter().skip(1);
-        inputs.extend(readings.map(|reading| Fact::new("reading taken", reading.text)));
-        inputs.push(Fact::new("leak rate", format!("{} %", format::percent(rate.percent))));
-        if let Some(band) = &rate.error {
-            inputs.push(Fact::new("weighing error, k = 2", words::plus_minus(&format!("{} %", band.percent))));
-        }
-        Reason { title, text, inputs, source: rate.source.clone() }
+        let rates = self.assessment.rulebooks.iter().flat_map(of);
+        rates.chain(why::of_points(&points(self.assessment))).collect()
     }
 
     fn follows(&self) -> Vec<Fact> {
@@ -221,10 +176,6 @@ impl Sight<'_> {
             .chain(met.map(|duty| Fact::new(words::met(duty.kind.name()), &duty.source)))
             .collect()
     }
-}
-
-fn title(id: &str) -> String {
-    rulebook(id).map_or_else(|| id.to_owned(), |book| book.title.clone())
 }
 
 fn within_error(rate: &LeakRate) -> bool {

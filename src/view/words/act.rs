@@ -82,6 +82,14 @@ pub fn rolling_text() -> String {
     "Gas added on the last 365 days, or since the last follow-up test that counts, over full charge.".to_owned()
 }
 
+/// The sum of a rate, as the window works it through.
+pub fn sum(year: i64, added: &str, full_charge: &str, days: Option<i64>) -> String {
+    match days {
+        Some(days) => format!("100 \u{d7} {year} \u{d7} {added} / ({full_charge} \u{d7} {days})"),
+        None => format!("100 \u{d7} {added} / {full_charge}"),
+    }
+}
+
 pub fn applies_because(rulebook: &str, applies: bool) -> String {
     if applies { format!("{rulebook} applies") } else { format!("{rulebook} does not apply") }
 }

@@ -2,6 +2,7 @@
 
 use crate::quantity::days_between;
 use crate::rules::DutyKind;
+use crate::view::format;
 use chrono::NaiveDate;
 
 /// The same in the few letters of a row.
@@ -359,6 +360,36 @@ pub fn paper_by_law() -> String {
 
 pub fn look(appearance: &str, text_size: u32) -> String {
     format!("{appearance}, text {text_size} %")
+}
+
+pub fn last_gross(gross: &str, day: &str) -> String {
+    format::commas([format!("last known {gross}").as_str(), day])
+}
+
+pub fn signed_later(name: &str, at: &str) -> String {
+    format!("{name}, signed later, {at}")
+}
+
+/// `Inspection (3)`.
+pub fn counted(name: &str, count: usize) -> String {
+    format!("{name} ({count})")
+}
+
+pub fn nobody_yet() -> String {
+    "nobody yet".to_owned()
+}
+
+pub fn without_a_day() -> String {
+    "Without a day".to_owned()
+}
+
+pub fn grouped_by(grouping: &str) -> String {
+    format!("by {grouping}")
+}
+
+pub fn list_words(grouping: &str, days_ahead: Option<u32>) -> String {
+    let grouped = format::capital(&grouped_by(grouping));
+    days_ahead.map_or(grouped.clone(), |ahead| format!("{grouped}, {} ahead", days(ahead)))
 }
 
 pub fn and_more() -> String {

@@ -15,5 +15,5 @@ pub use office::{OFFICE_PAGES, OfficePage, OfficeWindow, demonstration, empty, o
 pub use picture::{Picture, draw, save};
 pub use scenes::{Scene, scenes};
 pub use sources::{SlintFile, literals, raw_text, screens};
-pub use sweep::{Acting, Fault, acting, sweep};
+pub use sweep::{Acting, Fault, acting, sweep, texts};
 pub use window::{DESK, PHONE, SIZES, Size, TABLET, TABLET_UPRIGHT, drag, field, open, prepare, press, press_key, settle};

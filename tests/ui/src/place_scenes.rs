@@ -3,8 +3,8 @@
 
 use crate::scenes::Scene;
 use bubblepoint_ui::{
-    AccountAdapter, AppWindow, ApplianceFormAdapter, CylindersAdapter, CylindersPane, DueAdapter, Page, Place, PlantAdapter, PlantPane,
-    RecordAdapter, SetupAdapter, SetupPane, Shell, SiteFormAdapter,
+    AccountAdapter, AppWindow, ApplianceFormAdapter, CylinderFormAdapter, CylindersAdapter, CylindersPane, DueAdapter, Page, Place,
+    PlantAdapter, PlantPane, RecordAdapter, SetupAdapter, SetupPane, Shell, SiteFormAdapter,
 };
 use slint::{ComponentHandle, ModelRc};
 
@@ -12,6 +12,13 @@ use slint::{ComponentHandle, ModelRc};
 pub const PLACE_SCENES: &[Scene] = &[
     Scene { name: "due", set: |w| due(w, false) },
     Scene { name: "due-item", set: |w| due(w, true) },
+    Scene {
+        name: "due-list",
+        set: |w| {
+            w.global::<DueAdapter>().set_choosing(true);
+            due(w, false);
+        },
+    },
     Scene { name: "due-empty", set: due_empty },
     Scene { name: "plant", set: |w| plant(w, PlantPane::None) },
     Scene { name: "plant-empty", set: plant_empty },
@@ -19,9 +26,9 @@ pub const PLACE_SCENES: &[Scene] = &[
     Scene { name: "appliance", set: |w| plant(w, PlantPane::Appliance) },
     Scene { name: "record", set: |w| plant(w, PlantPane::Record) },
     Scene {
-        name: "record-entry",
+        name: "record-signing",
         set: |w| {
-            w.global::<RecordAdapter>().set_entry_open(true);
+            w.global::<RecordAdapter>().set_signing(true);
             plant(w, PlantPane::Record);
         },
     },
@@ -49,7 +56,15 @@ pub const PLACE_SCENES: &[Scene] = &[
     Scene { name: "cylinders", set: |w| cylinders(w, CylindersPane::None) },
     Scene { name: "cylinders-empty", set: cylinders_empty },
     Scene { name: "cylinder", set: |w| cylinders(w, CylindersPane::Cylinder) },
-    Scene { name: "cylinder-form", set: |w| cylinders(w, CylindersPane::Form) },
+    Scene {
+        name: "cylinder-form",
+        set: |w| {
+            let form = w.global::<CylinderFormAdapter>();
+            form.set_taken_up_again(true);
+            form.set_last_gross("last known 24.18 kg, 3 Mar 2026".into());
+            cylinders(w, CylindersPane::Form);
+        },
+    },
     Scene { name: "account", set: |w| page(w, Place::Account, Page::Account) },
     Scene {
         name: "account-choosing",

@@ -76,6 +76,11 @@ pub fn acting(window: &AppWindow) -> Vec<Acting> {
         .collect()
 }
 
+/// Every text of the page, as a screen reader says it.
+pub fn texts(window: &AppWindow) -> Vec<String> {
+    every_element(window).into_iter().filter_map(|element| element.accessible_label()).map(|label| label.to_string()).collect()
+}
+
 /// All faults of the page that is shown.
 pub fn sweep(window: &AppWindow) -> Vec<Fault> {
     let size = window.window().size().to_logical(window.window().scale_factor());

@@ -7,6 +7,7 @@ mod flow;
 mod keyboard;
 mod pages;
 mod places;
+mod previews;
 mod rules;
 
 use std::panic::{AssertUnwindSafe, catch_unwind};
@@ -17,7 +18,8 @@ type Check = (&'static str, fn());
 fn main() -> ExitCode {
     let words: Vec<String> = std::env::args().skip(1).filter(|a| !a.starts_with('-')).collect();
     let checks: Vec<Check> =
-        [contrast::CHECKS, rules::CHECKS, pages::CHECKS, keyboard::CHECKS, acts::CHECKS, flow::CHECKS, places::CHECKS].concat();
+        [contrast::CHECKS, rules::CHECKS, pages::CHECKS, keyboard::CHECKS, acts::CHECKS, flow::CHECKS, places::CHECKS, previews::CHECKS]
+            .concat();
     if std::env::args().any(|a| a == "--list") {
         for (name, _) in &checks {
             println!("{name}: test");
