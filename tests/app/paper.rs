@@ -2,9 +2,9 @@
 
 use crate::support::plant::{Plant, charge, gross, lb, plant, plant_at, plant_under, recover, signature};
 use bubblepoint::app::{
-    ChargeInput, Common, Correction, KnownPrint, NewEntry, PressureInput, Recognised, RecoverInput, RetrofitInput, SimpleAct,
+    ChargeInput, Common, Correction, KnownPrint, NewAppliance, NewEntry, PressureInput, Recognised, RecoverInput, RetrofitInput, SimpleAct,
 };
-use bubblepoint::ledger::{ChargePurpose, Counterpart, Instrument, InstrumentId, InstrumentKind, RecoveryPurpose, VisitId};
+use bubblepoint::ledger::{Category, ChargePurpose, Counterpart, Instrument, InstrumentId, InstrumentKind, RecoveryPurpose, VisitId};
 use bubblepoint::print::Paper;
 use bubblepoint::record::{EntryFacts, TransferFacts, Work};
 use bubblepoint::store::{Since, Store};
@@ -229,4 +229,24 @@ fn a_text_without_a_rate_says_why_it_applies() {
     let readings: Vec<&str> = record.appliances[0].readings.iter().map(|notice| notice.text.as_str()).collect();
     let applies = readings.iter().find(|text| text.contains(" applies: "));
     assert!(applies.is_some_and(|text| text.starts_with("Regulation (EU) 2024/590 applies: ") && text.contains("kg")), "{readings:?}");
+}
+
+/// How far a text was read is said once, with the reason why it applies.
+#[test]
+fn how_far_the_law_was_read_is_said_once() {
+    let plant = plant_under(Store::in_memory().unwrap(), &["us-84c"]);
+    let facts = NewAppliance {
+        site: plant.site,
+        name: "R-2".to_owned(),
+        category: Category::CommercialRefrigeration,
+        refrigerant: "R-448A".to_owned(),
+        full_charge: Some(lb("100")),
+    };
+    let appliance = plant.app.add_appliance(&facts).unwrap();
+    let visit = plant.begin();
+    let looked = Common { note: "looked".to_owned(), ..Common::default() };
+    plant.app.simple(visit.id, appliance, SimpleAct::Note, looked).unwrap();
+    let record = plant.app.service_record(visit.id).unwrap();
+    let all: String = record.appliances[0].readings.iter().map(|notice| format!("{} ", notice.text)).collect();
+    assert_eq!(all.matches("84.102").count(), 1, "{all}");
 }

@@ -260,7 +260,8 @@ impl Sight<'_> {
             .is_none()
             .then(|| Notice { text: format!("{} applies: {}.", book.title, judgement.why), source: String::new() });
         let unread =
-            (!book.confidence.is_empty()).then(|| Notice { text: wording::sentence(&book.confidence), source: book.title.clone() });
+            // The reason why the text applies, which is always printed, may say it already.
+            (!book.confidence.is_empty() && !judgement.why.contains(&book.confidence)).then(|| Notice { text: wording::sentence(&book.confidence), source: book.title.clone() });
         let kept = book
             .retention(self.assessment.on)
             .map(|row| Notice { text: format!("Kept for {} years: {}.", row.years, row.what), source: row.source.clone() });
