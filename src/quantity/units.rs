@@ -1,11 +1,12 @@
 //! Units in which pressures and temperatures are shown and typed.
 
 use super::{GaugePressure, Ratio};
+use serde::{Deserialize, Serialize};
 
 macro_rules! units {
     ($($(#[$doc:meta])* $name:ident { $first:ident = $first_word:literal, $($variant:ident = $word:literal,)* })*) => {$(
         $(#[$doc])*
-        #[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+        #[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
         pub enum $name { #[default] $first, $($variant,)* }
 
         impl $name {

@@ -1,9 +1,9 @@
 //! Pressure or vacuum: readings on a gauge in order of time.
 
 use super::{Panel, id};
-use crate::app::{AppError, PressureInput};
+use crate::app::{AppError, PressureInput, Units};
 use crate::ledger::{ApplianceId, InstrumentId, InstrumentKind};
-use crate::quantity::{Ratio, parse_decimal};
+use crate::quantity::{PressureUnit, Ratio, TemperatureUnit, VacuumUnit, parse_decimal};
 use crate::view::desk::Desk;
 use crate::view::shown::{Choice, Fact, Line, Reading, Ready};
 use crate::view::{format, parse, words};
@@ -33,6 +33,12 @@ pub struct Form {
     pub temperature: String,
     pub active: String,
     pub taken: Vec<Taken>,
+    /// As set on this device when the series began.
+    #[serde(default)]
+    pub temperature_unit: TemperatureUnit,
+    /// The units that a hold and a rise begin with.
+    #[serde(skip)]
+    usual: (PressureUnit, VacuumUnit),
 }
 
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -69,16 +75,18 @@ pub struct Shown {
 }
 
 impl Form {
-    fn new(appliance: ApplianceId, gauge: Option<InstrumentId>) -> Self {
+    fn new(appliance: ApplianceId, gauge: Option<InstrumentId>, units: &Units) -> Self {
         Self {
             appliance,
             kind: HOLD.to_owned(),
             gauge,
-            unit: "bar".to_owned(),
+            unit: units.pressure.name().to_owned(),
             pressure: String::new(),
             temperature: String::new(),
             active: PRESSURE.to_owned(),
             taken: Vec::new(),
+            temperature_unit: units.temperature,
+            usual: (units.pressure, units.vacuum),
         }
     }
 
@@ -90,7 +98,8 @@ impl Form {
         match msg {
             Msg::Kind(key) if key != self.kind => {
                 self.kind = key;
-                self.units()[0].clone_into(&mut self.unit);
+                let usual = if self.kind == RISE { self.usual.1.name() } else { self.usual.0.name() };
+                usual.clone_into(&mut self.unit);
                 self.taken.clear();
             }
             Msg::Unit(key) if key != self.unit => {
@@ -135,7 +144,11 @@ impl Form {
     /// The series as one line of the record.
     fn series(&self) -> String {
         let reading = |taken: &Taken| {
-            let temperature = if taken.temperature.is_empty() { String::new() } else { format!(" at {} °C", taken.temperature) };
+            let temperature = if taken.temperature.is_empty() {
+                String::new()
+            } else {
+                format!(" at {} {}", taken.temperature, self.temperature_unit.name())
+            };
             format!("{} {} {}{temperature}", taken.time, taken.pressure, self.unit)
         };
         self.taken.iter().map(reading).collect::<Vec<_>>().join("; ")
@@ -147,7 +160,7 @@ impl Desk {
         let appliance = self.appliance_in_hand()?;
         if self.work()?.pressure.as_ref().is_none_or(|form| form.appliance != appliance) {
             let gauge = self.registers.instruments.iter().find(|instrument| instrument.kind == InstrumentKind::Gauge);
-            let form = Form::new(appliance, gauge.map(|gauge| gauge.id));
+            let form = Form::new(appliance, gauge.map(|gauge| gauge.id), &self.app.units()?);
             self.work_mut()?.pressure = Some(form);
         }
         self.open_panel(Panel::Pressure)
@@ -199,7 +212,8 @@ impl Desk {
         let reading = |key: &str, caption: &str, unit: &str, text: &str| Reading {
             key: key.to_owned(),
             caption: caption.to_owned(),
-            unit: unit.to_owned(),
+            // Temperatures are in the unit of the series.
+            unit: if key == TEMPERATURE { form.temperature_unit.name() } else { unit }.to_owned(),
             text: text.to_owned(),
             ..Reading::default()
         };
@@ -207,7 +221,11 @@ impl Desk {
             key: index.to_string(),
             time: taken.time.clone(),
             name: format!("{} {}", taken.pressure, form.unit),
-            facts: if taken.temperature.is_empty() { String::new() } else { format!("{} °C", taken.temperature) },
+            facts: if taken.temperature.is_empty() {
+                String::new()
+            } else {
+                format!("{} {}", taken.temperature, form.temperature_unit.name())
+            },
             ..Line::default()
         };
         let caption = if form.kind == RISE { "pressure, absolute" } else { "pressure, gauge" };
@@ -245,9 +263,27 @@ fn figures(form: &Form) -> Vec<Fact> {
 mod tests {
     use super::*;
 
+    fn units(pressure: PressureUnit) -> Units {
+        let mass = crate::quantity::MassUnit::Kilogram;
+        Units { mass, pressure, vacuum: VacuumUnit::Micron, temperature: TemperatureUnit::Fahrenheit, paper: None }
+    }
+
+    #[test]
+    fn a_series_begins_in_the_units_that_are_set() {
+        let mut form = Form::new(ApplianceId(uuid::Uuid::nil()), None, &units(PressureUnit::Psi));
+        assert_eq!(form.unit, "psi");
+        (form.pressure, form.temperature) = ("150".to_owned(), "68".to_owned());
+        form.take("10:12".to_owned(), 612);
+        assert_eq!(form.series(), "10:12 150 psi at 68 \u{b0}F");
+        form.update(Msg::Kind(RISE.to_owned()));
+        assert_eq!(form.unit, "micron");
+        form.update(Msg::Kind(HOLD.to_owned()));
+        assert_eq!(form.unit, "psi");
+    }
+
     #[test]
     fn a_series_is_kept_as_read() {
-        let mut form = Form::new(ApplianceId(uuid::Uuid::nil()), None);
+        let mut form = Form::new(ApplianceId(uuid::Uuid::nil()), None, &units(PressureUnit::Bar));
         for (time, minute, keys) in [("10:12", 612, "10.45"), ("10:42", 642, "10.40")] {
             for key in keys.chars() {
                 form.update(Msg::Key(key.to_string()));
