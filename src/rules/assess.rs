@@ -5,7 +5,7 @@ use super::duty::{Duty, DutySource, duties};
 use super::history::History;
 use super::loss::{Loss, loss_between};
 use super::own::rulebook;
-use super::rate::{LeakRate, leak_rates};
+use super::rate::{LeakRate, Verdict, leak_rates};
 use super::scope::applicability;
 use crate::gas::Weighting;
 use crate::ledger::{Appliance, ApplianceFacts, Line, RateMethod, Site, SiteFacts};
@@ -59,7 +59,8 @@ pub fn assess<'a>(site: &'a Site, appliance: &'a Appliance, lines: &'a [Line], o
         let at_site = |day: NaiveDate| site.versions.on(day).is_some_and(|facts| names(facts, &book.id));
         let method = |day: NaiveDate| site.versions.on(day).map(|facts| (names(facts, &book.id), facts.rate_method));
         let rates = leak_rates(book, &history, &method);
-        all_duties.extend(duties(&DutySource { book, history: &history, rates: &rates, on, at_site: &at_site }));
+        let over: Vec<NaiveDate> = rates.iter().filter(|rate| rate.verdict == Verdict::Over).map(|rate| rate.on).collect();
+        all_duties.extend(duties(&DutySource { book, history: &history, rates: &rates, over: &over, on, at_site: &at_site }));
         if names(site_now, &book.id) {
             let answer = applicability(book, &facts, on);
             rulebooks.push(Judgement {

@@ -5,6 +5,7 @@ mod exceedance;
 
 use super::book::{DutyKind, DutyRow, Extension, InForce, Rulebook};
 use super::history::History;
+use super::marks::Mark;
 use super::rate::{LeakRate, Verdict};
 use super::scope::taking;
 use crate::ledger::{Act, ApplianceFacts, TestKind};
@@ -115,6 +116,8 @@ pub struct DutySource<'a> {
     pub book: &'static Rulebook,
     pub history: &'a History<'a>,
     pub rates: &'a [LeakRate],
+    /// Days with a rate over the trigger, in order.
+    pub over: &'a [NaiveDate],
     pub on: NaiveDate,
     /// Whether the site is under this rulebook on a day.
     pub at_site: &'a dyn Fn(NaiveDate) -> bool,
@@ -183,9 +186,9 @@ impl DutySource<'_> {
     /// is done meanwhile is done in time.
     fn stop_clock(&self, duty: &mut Duty) {
         let history = self.history;
-        for &line in history.mothballs() {
+        for &line in history.marks().all(Mark::Mothball) {
             let day = history.date(line);
-            let resumed = history.first_after(Some(line), |after| history.is_charge(after));
+            let resumed = history.marks().next(Mark::Charge, Some(line));
             let over_before_it_began = resumed.is_some_and(|charge| history.date(charge) <= duty.clock_from);
             let done_before = duty.met_by.is_some_and(|met| met < line) || duty.ended_on.or(duty.rule_ends).is_some_and(|end| end < day);
             let late = duty.due.is_some_and(|due| due < day);

@@ -3,6 +3,7 @@
 //! Where the law allows two readings, `DEVELOPERS.md` says which was taken.
 
 use super::book::season_months;
+use super::marks::{Mark, Marks};
 use crate::ledger::{Act, Appliance, ApplianceFacts, ChargePurpose, Line, RecoveryPurpose, TestKind, TestResult, Transfer};
 use crate::quantity::{Mass, add_months};
 use chrono::NaiveDate;
@@ -25,7 +26,7 @@ pub struct History<'a> {
     pub works: Vec<Work>,
     /// Per line: a follow-up verification test that counts.
     follow_up_counts: Vec<bool>,
-    mothballs: Vec<usize>,
+    marks: Marks,
     retired_on: Option<NaiveDate>,
     /// Facts that hold from a place in `lines` on, by place.
     facts: Vec<(NaiveDate, Option<usize>, ApplianceFacts)>,
@@ -53,6 +54,7 @@ impl<'a> History<'a> {
         let lines = in_order(lines.iter().filter(|line| line.at.date <= on).collect());
         let count = lines.len();
         let facts = facts_over_time(appliance, &lines);
+        let follow_up_counts = follow_ups_that_count(&lines);
         let mut history = Self {
             appliance,
             added: vec![Mass::ZERO; count],
@@ -60,8 +62,8 @@ impl<'a> History<'a> {
             same_leak: vec![false; count],
             work_of: vec![0; count],
             works: Vec::new(),
-            follow_up_counts: follow_ups_that_count(&lines),
-            mothballs: (0..count).filter(|&index| matches!(lines[index].act, Act::Mothball)).collect(),
+            marks: Marks::of(&lines, &follow_up_counts),
+            follow_up_counts,
             retired_on: lines.iter().find(|line| matches!(line.act, Act::Retire)).map(|line| line.at.date),
             lines,
             facts,
@@ -132,7 +134,7 @@ impl<'a> History<'a> {
 
     /// The last charge, of any purpose, before a line.
     pub fn last_charge_before(&self, index: usize) -> Option<usize> {
-        (0..index).rev().find(|&i| self.is_charge(i))
+        self.marks.last_before(Mark::Charge, index)
     }
 
     pub fn is_charge(&self, index: usize) -> bool {
@@ -173,9 +175,9 @@ impl<'a> History<'a> {
         self.retired_on
     }
 
-    /// The lines that mothball the appliance.
-    pub fn mothballs(&self) -> &[usize] {
-        &self.mothballs
+    /// Where each kind of line stands.
+    pub fn marks(&self) -> &Marks {
+        &self.marks
     }
 
     fn gather_works(&mut self) {

@@ -6,6 +6,7 @@ mod book;
 mod duty;
 mod history;
 mod loss;
+mod marks;
 mod own;
 mod rate;
 mod readings;

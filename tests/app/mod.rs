@@ -6,5 +6,6 @@ mod cylinders;
 mod import;
 mod installation;
 mod paper;
+mod readings;
 mod refusals;
 mod visits;

@@ -6,6 +6,7 @@ mod assess;
 mod bad_input;
 mod calendar;
 mod demo;
+mod explain;
 mod import;
 mod own_rulebook;
 mod record;

@@ -1,10 +1,11 @@
 //! What follows from a leak rate over its trigger: repair, tests, inspections,
 //! a plan; and the report on a chronic leak.
 
-use super::{Duty, DutySource, after_days, is_inspection};
+use super::{Duty, DutySource, after_days};
 use crate::ledger::{Act, ApplianceFacts};
 use crate::quantity::{Mass, Ratio, add_months};
 use crate::rules::book::{CountedFrom, DutyKind, DutyRow};
+use crate::rules::marks::Mark;
 use crate::rules::rate::{LeakRate, Verdict};
 use crate::rules::scope::taking;
 use chrono::{Datelike, Days, NaiveDate};
@@ -35,12 +36,11 @@ impl DutySource<'_> {
         let before = history.last_charge_before(start);
         let jobs: Vec<&str> = history.chain(rate.charge).flat_map(|work| work.lines.iter()).filter_map(|&line| history.job(line)).collect();
         let earliest = self.earliest_repair(rate, facts);
-        let repair = history.first_after(before, |line| {
-            history.is_lasting_repair(line) && (history.date(line) >= earliest || history.job(line).is_some_and(|job| jobs.contains(&job)))
-        });
-        let initial = repair.and_then(|repair| history.first_after(Some(repair), |line| history.is_passed_initial_test(line)));
-        let follow_up =
-            initial.and_then(|initial| history.first_after(Some(initial.max(rate.charge)), |line| history.is_follow_up_that_counts(line)));
+        let marks = history.marks();
+        let answers = |line: usize| history.date(line) >= earliest || history.job(line).is_some_and(|job| jobs.contains(&job));
+        let repair = marks.after(Mark::LastingRepair, before).iter().copied().find(|&line| answers(line));
+        let initial = repair.and_then(|repair| marks.next(Mark::InitialTestPassed, Some(repair)));
+        let follow_up = initial.and_then(|initial| marks.next(Mark::FollowUpThatCounts, Some(initial.max(rate.charge))));
         Answer { repair, initial, follow_up, ends: self.scope_ends(facts, rate.on) }
     }
 
@@ -90,7 +90,7 @@ impl DutySource<'_> {
     /// and, where gas was recovered in between, the charge that followed.
     fn follow_up_from(&self, rate: &LeakRate, initial: usize) -> NaiveDate {
         let history = self.history;
-        let normal = history.first_after(Some(initial), |line| matches!(history.lines[line].act, Act::NormalOperation));
+        let normal = history.marks().next(Mark::NormalOperation, Some(initial));
         let recharge = self.recharge(rate, initial).flatten();
         [Some(initial), normal, recharge].into_iter().flatten().map(|line| history.date(line)).fold(rate.on, NaiveDate::max)
     }
@@ -103,10 +103,9 @@ impl DutySource<'_> {
     /// Where gas was recovered between the exceedance and the test: the charge
     /// after the test, if there was one yet.
     fn recharge(&self, rate: &LeakRate, initial: usize) -> Option<Option<usize>> {
-        let history = self.history;
-        (rate.charge + 1..initial)
-            .any(|line| history.is_recovery(line))
-            .then(|| history.first_after(Some(initial), |line| history.is_charge(line)))
+        let marks = self.history.marks();
+        let emptied = marks.next(Mark::Recovery, Some(rate.charge)).is_some_and(|recovery| recovery < initial);
+        emptied.then(|| marks.next(Mark::Charge, Some(initial)))
     }
 
     /// Inspections at set periods, until enough of them in a row had no rate over.
@@ -125,6 +124,7 @@ impl DutySource<'_> {
         let Some(row) = self.row(DutyKind::LeakInspection, facts, rate.on) else { return };
         let periods = self.inspection_periods(row, from);
         let series_ends = periods.ends;
+        let inspections = history.marks().after(Mark::LeakInspection, Some(start));
         for (number, (after, end)) in periods.days.into_iter().enumerate() {
             let begins = if number == 0 { from } else { after_days(after, Some(1)) };
             if begins > self.on || answer.ends.is_some_and(|last| begins > last) {
@@ -134,11 +134,8 @@ impl DutySource<'_> {
             duty.period = u32::try_from(number + 1).unwrap_or(u32::MAX);
             // A calendar year's clock starts with the year.
             duty.clock_from = if row.calendar_year { begins } else { from };
-            let inspected = history.first_after(Some(start), |line| {
-                let day = history.date(line);
-                is_inspection(history, line) && day <= end && (number == 0 || day > after)
-            });
-            duty.meet(history, inspected);
+            let first = if number == 0 { 0 } else { inspections.partition_point(|&line| history.date(line) <= after) };
+            duty.meet(history, inspections.get(first).copied().filter(|&line| history.date(line) <= end));
             if series_ends <= self.on {
                 duty.end(series_ends);
             }
@@ -149,8 +146,10 @@ impl DutySource<'_> {
 
     /// The periods of a series that begins on a day, and the day it ends on.
     fn inspection_periods(&self, row: &DutyRow, from: NaiveDate) -> Periods {
-        let over: Vec<NaiveDate> = self.rates.iter().filter(|rate| rate.verdict == Verdict::Over).map(|rate| rate.on).collect();
-        let over_within = |after: NaiveDate, end: NaiveDate| over.iter().copied().filter(|&day| after < day && day <= end).max();
+        let over_within = |after: NaiveDate, end: NaiveDate| {
+            let until = self.over.partition_point(|&day| day <= end);
+            self.over[..until].last().copied().filter(|&day| day > after)
+        };
         if let (Some(needed), Some(months)) = (row.clean_periods, row.months) {
             let (mut days, mut clean, mut after) = (Vec::new(), 0, from);
             for period in 1..=MOST_PERIODS {
@@ -195,7 +194,7 @@ impl DutySource<'_> {
         let Some(row) = self.row(DutyKind::Plan, facts, rate.on) else { return };
         let due = Some(after_days(rate.on, row.days));
         let mut duty = self.answering(rate, answer, self.duty(row, rate.on, Some(rate.charge), due));
-        let made = history.first_after(Some(rate.charge), |line| matches!(history.lines[line].act, Act::PlanMade));
+        let made = history.marks().next(Mark::PlanMade, Some(rate.charge));
         duty.meet(history, made);
         self.stop_clock(&mut duty);
         if self.over_again(rate, row) {
@@ -220,14 +219,18 @@ impl DutySource<'_> {
     fn over_again(&self, rate: &LeakRate, row: &DutyRow) -> bool {
         let history = self.history;
         let Some(within) = row.months else { return false };
-        let test = (0..rate.charge).rev().find(|&line| history.is_follow_up_that_counts(line));
-        let Some(test) = test else { return false };
-        let Some(repair) = (0..test).rev().find(|&line| history.is_lasting_repair(line)) else { return false };
+        let marks = history.marks();
+        let Some(test) = marks.last_before(Mark::FollowUpThatCounts, rate.charge) else { return false };
+        let Some(repair) = marks.last_before(Mark::LastingRepair, test) else { return false };
         let counted = if row.counted_from == Some(CountedFrom::FollowUpVerification) { test } else { repair };
-        let over_before = self.rates.iter().any(|earlier| earlier.verdict == Verdict::Over && earlier.charge < test);
-        let under_since =
-            self.rates.iter().any(|between| between.verdict == Verdict::Under && (test..rate.charge).contains(&between.charge));
-        over_before && !under_since && rate.on <= add_months(history.date(counted), within)
+        if rate.on > add_months(history.date(counted), within) {
+            return false;
+        }
+        // Rates stand in order of their charges.
+        let (before, since) = self.rates.split_at(self.rates.partition_point(|other| other.charge < test));
+        let since = since.iter().take_while(|other| other.charge < rate.charge);
+        let over_before = before.iter().any(|earlier| earlier.verdict == Verdict::Over);
+        over_before && !since.into_iter().any(|between| between.verdict == Verdict::Under)
     }
 
     pub(super) fn chronic_leaks(&self, duties: &mut Vec<Duty>) {
