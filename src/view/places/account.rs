@@ -105,7 +105,7 @@ fn signed(mass: Mass, sign: char, unit: MassUnit) -> String {
 }
 
 fn weighted(value: Option<Ratio>, places: u32, unit: &str) -> String {
-    value.map_or_else(|| "not known".to_owned(), |value| format!("{} {unit}", rounded_text(value, places)))
+    value.map_or_else(|| words::not_known(), |value| format!("{} {unit}", rounded_text(value, places)))
 }
 
 impl Office {
@@ -214,7 +214,7 @@ impl Office {
         let sum = |part: fn(&GasAccount) -> Option<Ratio>| gases.iter().try_fold(zero, |sum, gas| part(gas).map(|value| sum + value));
         page.lost = figure(gases.iter().map(|gas| gas.line.lost).sum(), unit);
         page.lost_unit = format::unit(unit).to_owned();
-        let bare = |value: Option<Ratio>, places| value.map_or_else(|| "not known".to_owned(), |value| rounded_text(value, places));
+        let bare = |value: Option<Ratio>, places| value.map_or_else(|| words::not_known(), |value| rounded_text(value, places));
         page.co2e = bare(sum(|gas| gas.loss.co2e_t), 1);
         page.odp = bare(sum(|gas| gas.loss.odp_kg), 2);
         let tables = |part: fn(&GasAccount) -> &str| {
@@ -249,7 +249,7 @@ impl Office {
 fn plate(gas: &GasAccount, unit: MassUnit) -> Plate {
     let line = &gas.line;
     let known = |mass: Option<Mass>, sign: Option<char>| match (mass, sign) {
-        (None, _) => "not known".to_owned(),
+        (None, _) => words::not_known(),
         (Some(mass), Some(sign)) => signed(mass, sign, unit),
         (Some(mass), None) => figure(mass, unit),
     };
@@ -266,7 +266,7 @@ fn plate(gas: &GasAccount, unit: MassUnit) -> Plate {
         figures.push(("without a cylinder".to_owned(), signed(line.past_cylinders.magnitude(), sign, unit), false));
     }
     // What nobody keeps takes no line.
-    figures.retain(|(caption, value, _)| value != "not known" || caption == "opening");
+    figures.retain(|(caption, value, _)| *value != words::not_known() || caption == "opening");
     // Purchases, charges from elsewhere, gaps: told, so that the column adds up.
     if let Some(gap) = not_explained(line).filter(|gap| !gap.is_zero()) {
         let sign = if gap.is_negative() { '\u{2212}' } else { '+' };
@@ -301,9 +301,9 @@ fn tally(tally: &crate::record::DutyTally) -> Option<Tally> {
     (whole > 0).then(|| Tally {
         name: format::capital(&tally.duty),
         source: rulebook(&tally.rulebook).map_or_else(|| tally.rulebook.clone(), |book| book.title.clone()),
-        in_time: told(counts.in_time, "in time"),
-        late: told(counts.late, "late"),
-        not_done: told(counts.not_done, "not done"),
+        in_time: told(counts.in_time, &say::in_time()),
+        late: told(counts.late, &say::too_late()),
+        not_done: told(counts.not_done, &say::not_done()),
         shares: [part(counts.in_time), part(counts.late), part(counts.not_done)],
     })
 }

@@ -126,10 +126,10 @@ impl Office {
             let facts: Vec<String> = own.filter(|entry| entry.strikes.is_none()).map(|entry| told(entry, self.units.mass)).collect();
             let state = match (&visit.fingerprint, visit.state) {
                 (Some(fingerprint), _) => short_print(fingerprint),
-                (None, VisitState::Imported) => "from a file".to_owned(),
+                (None, VisitState::Imported) => say::from_a_file(),
                 (None, state) => state.name().to_owned(),
             };
-            let aside = if corrected { "corrected" } else { "" };
+            let aside = if corrected { say::corrected_later() } else { String::new() };
             Line::new(visit.id.to_string(), format::full_day(visit.date), facts.join(", ")).state(state, aside)
         };
         Ok(visits.iter().rev().map(row).collect())

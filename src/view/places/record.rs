@@ -43,7 +43,7 @@ impl Office {
                 let at = Moment { date: later.date, minute: Some(later.minute) };
                 say::signed_later(&later.signature.name, &format!("{} {}", format::full_day(at.date), format::clock(at.minute)))
             });
-            facts.push(Fact::new("representative", signed_later.unwrap_or_else(|| counterpart(&closing.counterpart))));
+            facts.push(Fact::new("representative", signed_later.unwrap_or_else(|| words::counterpart(&closing.counterpart))));
             let at = Moment { date: closing.date, minute: Some(closing.minute) };
             facts.push(Fact::new("closed", format!("{} {}", format::full_day(at.date), format::clock(at.minute))));
             facts.push(Fact::new("handed over", if closing.handed_over.is_empty() { "not yet" } else { &closing.handed_over }));
@@ -142,14 +142,5 @@ fn named(counterpart: &Counterpart) -> String {
         Counterpart::Signed { signature } => signature.name.clone(),
         Counterpart::SignsLater { name } | Counterpart::Refused { name, .. } => name.clone(),
         Counterpart::NobodyPresent => String::new(),
-    }
-}
-
-fn counterpart(counterpart: &Counterpart) -> String {
-    match counterpart {
-        Counterpart::Signed { signature } => format!("{}, signed", signature.name),
-        Counterpart::NobodyPresent => "nobody present".to_owned(),
-        Counterpart::Refused { name, reason } => format!("{name}, refused: {reason}"),
-        Counterpart::SignsLater { name } => format!("{name}, signs later"),
     }
 }

@@ -8,6 +8,7 @@ use crate::rules;
 use crate::store::VisitFilter;
 use crate::view::format;
 use crate::view::shown::{Fact, Line};
+use crate::view::words::office as say;
 use std::collections::{BTreeSet, HashMap};
 
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -47,7 +48,7 @@ impl Office {
             let entries = app.store().entries_of_visit(visit.id)?;
             let at: BTreeSet<&str> = entries.iter().filter_map(|entry| names.get(&entry.line.appliance).copied()).collect();
             let facts = at.into_iter().collect::<Vec<_>>().join(", ");
-            let state = if visit.state == VisitState::Imported { "from a file" } else { visit.state.name() };
+            let state = if visit.state == VisitState::Imported { say::from_a_file() } else { visit.state.name().to_owned() };
             visits.push(Line::new(visit.id.to_string(), format::full_day(visit.date), facts).state(state, ""));
         }
         Ok(Some(SitePage {

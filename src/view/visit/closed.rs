@@ -1,7 +1,7 @@
 //! The visit is closed: its service record, opened and handed over.
 
 use crate::app::{AppError, Printed, file_away};
-use crate::ledger::{Counterpart, Moment, VisitId};
+use crate::ledger::{Moment, VisitId};
 use crate::record::Fingerprint;
 use crate::view::desk::{Desk, Page};
 use crate::view::shown::{Choice, Fact, Message, Ready};
@@ -165,12 +165,7 @@ impl Desk {
         let closing = visit.closing.as_ref();
         let closed =
             closing.map(|closing| format::moment(Moment { date: closing.date, minute: Some(closing.minute) }, today)).unwrap_or_default();
-        let counterpart = closing.map(|closing| match &closing.counterpart {
-            Counterpart::Signed { signature } => format!("{}, signed", signature.name),
-            Counterpart::NobodyPresent => "nobody present".to_owned(),
-            Counterpart::Refused { reason, .. } => format!("refused: {reason}"),
-            Counterpart::SignsLater { name } => format!("{name} signs later"),
-        });
+        let counterpart = closing.map(|closing| words::counterpart(&closing.counterpart));
         let mut facts = Vec::new();
         if let Some(full) = visit.fingerprint.clone() {
             facts.push(Fact::new("fingerprint", Fingerprint { full }.short()));

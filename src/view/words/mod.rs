@@ -11,6 +11,8 @@ pub use act::*;
 pub use visit::*;
 pub use weighing::*;
 
+use crate::ledger::Counterpart;
+
 /// A cause as a sentence: capital first, full stop last.
 pub fn sentence(cause: &str) -> String {
     let text = super::format::capital(cause.trim());
@@ -31,6 +33,20 @@ pub fn cannot_write(path: &str, cause: &str) -> String {
 
 pub fn demonstration() -> String {
     "Demonstration: invented people and places".to_owned()
+}
+
+pub fn not_known() -> String {
+    "not known".to_owned()
+}
+
+/// How the owner's or operator's side ended a visit.
+pub fn counterpart(counterpart: &Counterpart) -> String {
+    match counterpart {
+        Counterpart::Signed { signature } => format!("{}, signed", signature.name),
+        Counterpart::NobodyPresent => "nobody present".to_owned(),
+        Counterpart::Refused { name, reason } => super::format::commas([name.as_str(), &format!("refused: {reason}")]),
+        Counterpart::SignsLater { name } => format!("{name}, signs later"),
+    }
 }
 
 pub fn to_complete() -> String {

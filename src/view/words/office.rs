@@ -370,6 +370,26 @@ pub fn signed_later(name: &str, at: &str) -> String {
     format!("{name}, signed later, {at}")
 }
 
+pub fn in_time() -> String {
+    "in time".to_owned()
+}
+
+pub fn too_late() -> String {
+    "late".to_owned()
+}
+
+pub fn not_done() -> String {
+    "not done".to_owned()
+}
+
+pub fn from_a_file() -> String {
+    "from a file".to_owned()
+}
+
+pub fn corrected_later() -> String {
+    "corrected".to_owned()
+}
+
 /// `Inspection (3)`.
 pub fn counted(name: &str, count: usize) -> String {
     format!("{name} ({count})")
