@@ -11,6 +11,7 @@ mod entry;
 mod fonts;
 mod layout;
 mod mark;
+mod part;
 mod pdf;
 mod plate;
 mod service;
