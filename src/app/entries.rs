@@ -2,7 +2,8 @@
 //! are asked, and the entry is on disk when this returns.
 
 use super::inputs::{
-    ChargeInput, Common, NewEntry, PressureInput, RecoverInput, RecycleInput, RepairInput, RetrofitInput, SimpleAct, TestInput,
+    ChargeInput, Common, GapAnswerInput, NewEntry, PressureInput, RecoverInput, RecycleInput, RepairInput, RetrofitInput, SimpleAct,
+    TestInput,
 };
 use super::refusals::{self, Refusal};
 use super::standing::{ApplianceStanding, CylinderStanding, WeighingGap, appliance_standing, cylinder_standing};
@@ -10,12 +11,12 @@ use super::weighing::{Weighed, weigh};
 use super::{App, AppError, Setting};
 use crate::gas;
 use crate::ledger::{
-    Act, ApplianceId, CylinderId, Detail, Entry, EntryId, GasStatus, InstrumentId, Line, Moment, Reading, Transfer, Visit, VisitId,
-    VisitState,
+    Act, ApplianceId, CylinderFacts, CylinderId, Dated, Detail, Entry, EntryId, GAP_UNKNOWN, GasStatus, InstrumentId, Line, Moment,
+    PersonId, Reading, Transfer, Visit, VisitId, VisitState, open_gaps,
 };
 use crate::measure::{Direction, Uncertainty, default_oil_factor};
 use crate::quantity::{Mass, Ratio, parse_decimal};
-use crate::store::Store;
+use crate::store::{Store, Writing};
 use chrono::NaiveDate;
 
 /// An entry worked out and judged, not saved.
@@ -53,16 +54,43 @@ impl App {
     /// # Errors
     /// [`AppError::Refused`] with every reason; [`AppError::Input`]; the store's own.
     pub fn enter(&self, visit: VisitId, appliance: ApplianceId, new: &NewEntry) -> Result<Entry, AppError> {
-        let entry = self.store.write(self.now(), |tx| {
-            let prepared = self.prepare_in(tx, visit, appliance, new, None)?;
-            let entry = allowed(prepared)?;
-            let position = tx.add_entry(&entry)?;
-            tx.clear_draft(visit, new.action())?;
-            Ok::<_, AppError>(Entry { line: Line { position, ..entry.line }, ..entry })
+        let mut entered = self.enter_all(visit, appliance, std::slice::from_ref(new))?;
+        entered.pop().ok_or(AppError::Unknown { what: "entry" })
+    }
+
+    /// Saves entries that belong together in their order: all of them or none.
+    ///
+    /// # Errors
+    /// As [`App::enter`], for the first one that something stands against.
+    pub fn enter_all(&self, visit: VisitId, appliance: ApplianceId, new: &[NewEntry]) -> Result<Vec<Entry>, AppError> {
+        let entered = self.store.write(self.now(), |tx| {
+            let mut entered = Vec::new();
+            for new in new {
+                let prepared = self.prepare_in(tx, visit, appliance, new, None)?;
+                let entry = allowed(prepared)?;
+                let position = tx.add_entry(&entry)?;
+                keep_gas_source(tx, &entry)?;
+                tx.clear_draft(visit, new.action())?;
+                entered.push(Entry { line: Line { position, ..entry.line }, ..entry });
+            }
+            Ok::<_, AppError>(entered)
         })?;
-        // What the drafts' thread still holds is older than the entry.
-        self.clear_draft(visit, new.action())?;
-        Ok(entry)
+        // What the drafts' thread still holds is older than the entries.
+        for new in new {
+            self.clear_draft(visit, new.action())?;
+        }
+        Ok(entered)
+    }
+
+    /// Why nothing can be entered on an appliance for this moment: what a page
+    /// shows while day and time are chosen.
+    ///
+    /// # Errors
+    /// Unknown visit or appliance; the store's own.
+    pub fn refusals_at(&self, visit: VisitId, appliance: ApplianceId, at: Moment) -> Result<Vec<Refusal>, AppError> {
+        let visit = open_visit(&self.store, visit)?;
+        let standing = appliance_standing(&self.store, appliance, at.date, None)?;
+        Ok(refusals::of_entry(&standing, &Act::Note, at, self.moment_of(&visit)))
     }
 
     /// # Errors
@@ -103,10 +131,11 @@ impl App {
     }
 
     /// Strikes a wrong entry of an open visit: it stays, struck through, and counts no more.
+    /// `by` is who strikes it; `None` is the one who began the visit.
     ///
     /// # Errors
     /// A reason is missing; the entry is of a closed visit, or struck already.
-    pub fn strike(&self, entry: EntryId, why: &str) -> Result<Entry, AppError> {
+    pub fn strike(&self, entry: EntryId, why: &str, by: Option<PersonId>) -> Result<Entry, AppError> {
         let why = why.trim();
         if why.is_empty() {
             return Err(AppError::input("why", "Write why this entry is struck."));
@@ -127,7 +156,7 @@ impl App {
                 written: self.now(),
                 strikes: Some(entry),
                 struck_by: None,
-                detail: Detail { person: visit.people.first().copied(), reason: why.to_owned(), ..Detail::default() },
+                detail: Detail { person: by.or(visit.people.first().copied()), reason: why.to_owned(), ..Detail::default() },
             };
             let position = tx.add_entry(&strike)?;
             Ok(Entry { line: Line { position, ..strike.line }, ..strike })
@@ -158,8 +187,7 @@ impl App {
         };
         let desk = Desk { store, standing: &standing, at, without, oil_factor: self.oil_factor()? };
         let mut work = desk.work(new)?;
-        let today = self.moment_of(&visit).date;
-        let mut refused = refusals::of_entry(&standing, &work.act, at, today);
+        let mut refused = refusals::of_entry(&standing, &work.act, at, self.moment_of(&visit));
         refused.append(&mut work.refusals);
         // The gravest first.
         refused.sort_by_key(|refusal| refusal.judgement);
@@ -238,28 +266,34 @@ impl Desk<'_> {
             NewEntry::Charge(input) => self.charge(input),
             NewEntry::Recover(input) => self.recover(input),
             NewEntry::Recycle(input) => self.recycle(input),
-            NewEntry::Test(input) => test(input),
-            NewEntry::Repair(input) => Ok(repair(input)),
+            NewEntry::Test(input) => self.test(input),
+            NewEntry::Repair(input) => self.repair(input),
             NewEntry::Retrofit(input) => retrofit(input),
             NewEntry::Pressure(input) => pressure(input),
+            NewEntry::GapAnswer(input) => self.gap_answer(input),
             NewEntry::Simple(act, common) => simple(*act, common),
         }
     }
 
     fn charge(&self, input: &ChargeInput) -> Result<Work, AppError> {
         let cylinder = input.cylinder.map(|id| self.cylinder(id)).transpose()?;
-        if cylinder.is_none() && input.purpose != crate::ledger::ChargePurpose::FactoryCharge {
+        if self.is_new() && cylinder.is_none() && input.purpose != crate::ledger::ChargePurpose::FactoryCharge {
             return Err(AppError::input("cylinder", "Choose the cylinder; only a factory charge comes without one."));
         }
         let weighed = self.weighed(&input.reading, Direction::Out, cylinder.is_some() && self.without.is_none(), input.full_hoses)?;
         let mut refused =
             refusals::of_charge(self.standing, cylinder.as_ref(), input.purpose, weighed.transfer.mass, weighed.gross_after, self.at.date);
         let gap = self.gap(cylinder.as_ref(), &weighed, &input.weighing_gap, &mut refused);
-        let balance = cylinder.as_ref().map(|cylinder| &cylinder.balance);
+        let gas_status = cylinder.as_ref().and_then(|cylinder| cylinder.balance.status);
+        let gas_source = cylinder.as_ref().map(|cylinder| source_of(cylinder, &input.gas_source)).unwrap_or_default();
+        if self.is_new() {
+            refused.extend(refusals::missing::of_charge(input, gas_status, &gas_source));
+        }
+        self.same_leak(input.same_leak_as)?;
         let detail = Detail {
             reading: Some(input.reading.clone()),
-            gas_status: balance.and_then(|balance| balance.status),
-            gas_source: cylinder.as_ref().map(source_of).unwrap_or_default(),
+            gas_status,
+            gas_source,
             phase: input.phase.clone(),
             short_by: input.short_by.clone(),
             same_leak_as: input.same_leak_as,
@@ -292,6 +326,57 @@ impl Desk<'_> {
         let detail = Detail { method: input.method.trim().to_owned(), instrument: input.instrument, ..Detail::default() };
         let refused = refusals::of_recycling(&cylinder);
         Ok(Work { refusals: refused, ..Work::plain(Act::Recycle { cylinder: Some(input.cylinder) }, detail) })
+    }
+
+    fn test(&self, input: &TestInput) -> Result<Work, AppError> {
+        let mut refused = Vec::new();
+        if self.is_new() {
+            refusals::missing::of_test(input)?;
+            refused.extend(refusals::of_inspection(input.kind, &input.method));
+        }
+        if let Some(repair) = input.repair {
+            self.earlier("repair", repair, |act| matches!(act, Act::Repair { .. }))?;
+        }
+        Ok(Work { refusals: refused, ..test(input)? })
+    }
+
+    fn repair(&self, input: &RepairInput) -> Result<Work, AppError> {
+        if self.is_new() {
+            refusals::missing::of_repair(input)?;
+        }
+        Ok(repair(input))
+    }
+
+    fn same_leak(&self, charge: Option<EntryId>) -> Result<(), AppError> {
+        charge.map_or(Ok(()), |charge| self.earlier("charge of the same leak", charge, |act| matches!(act, Act::Charge { .. })))
+    }
+
+    /// What is named is an entry of this appliance, and of the right act.
+    fn earlier(&self, what: &'static str, entry: EntryId, is_right: impl Fn(&Act) -> bool) -> Result<(), AppError> {
+        let found = self.store.entry(entry)?;
+        let fits = |entry: &Entry| entry.line.appliance == self.standing.appliance.id && is_right(&entry.line.act);
+        if found.as_ref().is_some_and(fits) { Ok(()) } else { Err(AppError::Unknown { what }) }
+    }
+
+    /// A gap that was left open is explained by an entry of its own.
+    fn gap_answer(&self, input: &GapAnswerInput) -> Result<Work, AppError> {
+        let why = input.why.trim();
+        if why.is_empty() || why == GAP_UNKNOWN {
+            return Err(AppError::input("why", "Say why the cylinder weighed otherwise."));
+        }
+        let entries = self.store.entries_of_appliance(self.standing.appliance.id)?;
+        let asked = open_gaps(&entries).into_iter().find(|entry| entry.line.entry == input.entry);
+        let asked = asked.ok_or(AppError::Unknown { what: "open weighing gap" })?;
+        let cylinder = asked.line.act.cylinder().map(|id| self.store.cylinder(id)).transpose()?.flatten();
+        let name = cylinder.map(|cylinder| cylinder.name).unwrap_or_default();
+        let note = format!("cylinder {name} weighed otherwise on {}: {why}", asked.line.at.date);
+        let detail = Detail { weighing_gap: why.to_owned(), answers: Some(input.entry), ..Detail::default() };
+        Ok(Work { note, ..Work::plain(Act::Note, detail) })
+    }
+
+    /// Not a correction.
+    fn is_new(&self) -> bool {
+        self.without.is_none()
     }
 
     fn cylinder(&self, id: CylinderId) -> Result<CylinderStanding, AppError> {
@@ -339,17 +424,32 @@ impl Desk<'_> {
 }
 
 /// Facility, batch and certificate belong to recycled and reclaimed gas alone.
-fn source_of(cylinder: &CylinderStanding) -> String {
+fn source_of(cylinder: &CylinderStanding, typed: &str) -> String {
     let used = matches!(cylinder.balance.status, Some(GasStatus::Recycled | GasStatus::Reclaimed));
-    if used { cylinder.facts.gas_source.clone() } else { String::new() }
+    let known = cylinder.facts.gas_source.trim();
+    match (used, typed.trim()) {
+        (false, _) => String::new(),
+        (true, "") => known.to_owned(),
+        (true, typed) => typed.to_owned(),
+    }
+}
+
+/// What was written of the gas is a fact of its cylinder from then on.
+fn keep_gas_source(tx: &Writing<'_>, entry: &Entry) -> Result<(), AppError> {
+    let (source, day) = (&entry.detail.gas_source, entry.line.at.date);
+    let Some(cylinder) = entry.line.act.cylinder().filter(|_| !source.is_empty()) else { return Ok(()) };
+    let facts = cylinder_standing(tx, cylinder, day, None)?.facts;
+    if facts.gas_source.trim() == source {
+        return Ok(());
+    }
+    let facts = CylinderFacts { gas_source: source.clone(), ..facts };
+    let reason = Some("written down when it was charged from".to_owned());
+    Ok(tx.add_cylinder_version(cylinder, &Dated { from: Some(day), reason, facts })?)
 }
 
 fn test(input: &TestInput) -> Result<Work, AppError> {
     let hours = input.running_hours.trim();
     let running_hundredths = if hours.is_empty() { None } else { Some(hundredths(hours)?) };
-    if input.result == Some(crate::ledger::TestResult::LeakFound) && input.leaks.is_empty() {
-        return Err(AppError::input("leaks", "Write down where the leak is."));
-    }
     let act = Act::Test { kind: input.kind, result: input.result, scope: input.scope, partial: input.partial, running_hundredths };
     let detail = Detail {
         method: input.method.trim().to_owned(),

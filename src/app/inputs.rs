@@ -33,6 +33,8 @@ pub struct ChargeInput {
     pub short_by: Option<Weighing>,
     /// The earlier charge whose leak this is.
     pub same_leak_as: Option<EntryId>,
+    /// Recycled or reclaimed gas: facility, address, batch, certificate. Empty: as the cylinder has it.
+    pub gas_source: String,
     /// Why the first gross differs from the last one known.
     pub weighing_gap: String,
 }
@@ -109,6 +111,15 @@ pub struct PressureInput {
     pub place: String,
 }
 
+/// Why a cylinder had weighed otherwise, said later.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct GapAnswerInput {
+    pub common: Common,
+    /// The entry that left it open.
+    pub entry: EntryId,
+    pub why: String,
+}
+
 /// Acts that say all by their name.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum SimpleAct {
@@ -131,6 +142,7 @@ pub enum NewEntry {
     Repair(RepairInput),
     Retrofit(RetrofitInput),
     Pressure(PressureInput),
+    GapAnswer(GapAnswerInput),
     Simple(SimpleAct, Common),
 }
 
@@ -145,6 +157,7 @@ impl NewEntry {
             Self::Repair(_) => "repair",
             Self::Retrofit(_) => "retrofit",
             Self::Pressure(_) => "pressure",
+            Self::GapAnswer(_) => "gap answer",
             Self::Simple(_, _) => "note",
         }
     }
@@ -158,6 +171,7 @@ impl NewEntry {
             Self::Repair(input) => &input.common,
             Self::Retrofit(input) => &input.common,
             Self::Pressure(input) => &input.common,
+            Self::GapAnswer(input) => &input.common,
             Self::Simple(_, common) => common,
         }
     }

@@ -19,7 +19,6 @@ mod import;
 mod inputs;
 mod installation;
 mod limits;
-mod methods;
 mod paper;
 mod refusals;
 mod service_record;
@@ -41,7 +40,8 @@ pub use error::AppError;
 pub use file::{file_away, write_whole};
 pub use import::{ImportError, Imported, Remark};
 pub use inputs::{
-    ChargeInput, Common, NewEntry, PressureInput, RecoverInput, RecycleInput, RepairInput, RetrofitInput, SimpleAct, TestInput,
+    ChargeInput, Common, GapAnswerInput, NewEntry, PressureInput, RecoverInput, RecycleInput, RepairInput, RetrofitInput, SimpleAct,
+    TestInput,
 };
 pub use limits::LimitRules;
 pub use paper::{KnownPrint, Printed, Recognised, fit};

@@ -3,12 +3,13 @@
 //!
 //! History that is imported is taken as it happened and does not pass here.
 
+pub(super) mod missing;
+
 use super::cylinder_entries::RETURNED;
 use super::limits::LimitRules;
-use super::methods::is_direct;
 use super::standing::{ApplianceStanding, CylinderStanding};
 use crate::gas::{self, Gas};
-use crate::ledger::{Act, ChargePurpose, CylinderAct, CylinderKind, GasStatus, Line, Moment, TestKind};
+use crate::ledger::{Act, ChargePurpose, CylinderAct, CylinderKind, GAP_REASONS, GasStatus, LeakMethod, Line, Moment, TestKind};
 use crate::measure::{CylinderLimit, Limit, Missing, Rating, is_near_critical};
 use crate::quantity::{GaugePressure, Mass, Ratio, rounded_text};
 use crate::rules::service_bans;
@@ -42,6 +43,8 @@ pub enum Kind {
     NotRated,
     RatingUnknown,
     NothingToRecycle,
+    /// Something that the entry has to say is missing.
+    NotSaid,
     WeighingGap,
     IndirectMethod,
 }
@@ -91,11 +94,16 @@ const OVERDUE: &str = "49 CFR 180.205(c), 173.301(a)(6)";
 const NON_REFILLABLE: &str = "49 CFR 178.65";
 
 /// What holds for every entry on an appliance.
-pub fn of_entry(standing: &ApplianceStanding, act: &Act, at: Moment, today: NaiveDate) -> Vec<Refusal> {
+pub fn of_entry(standing: &ApplianceStanding, act: &Act, at: Moment, now: Moment) -> Vec<Refusal> {
     let mut refusals = Vec::new();
     let name = &standing.appliance.name;
-    if at.date > today {
-        let sentence = format!("{} has not come yet at this site; today is {today}. Correct the date.", at.date);
+    if at.date > now.date {
+        let sentence = format!("{} has not come yet at this site; today is {}. Correct the date.", at.date, now.date);
+        refusals.push(Refusal::firm(Kind::InTheFuture, sentence, ""));
+    } else if let (Some(minute), Some(this)) = (at.minute.filter(|_| at.date == now.date), now.minute)
+        && minute > this
+    {
+        let sentence = format!("{} has not come yet at this site; it is {}. Correct the time.", clock(minute), clock(this));
         refusals.push(Refusal::firm(Kind::InTheFuture, sentence, ""));
     }
     if let Some(installed) = standing.installed_on.filter(|installed| at.date < *installed) {
@@ -142,6 +150,10 @@ fn before_what_is_known(standing: &ApplianceStanding, act: &Act, at: Moment) -> 
         }
         _ => None,
     }
+}
+
+fn clock(minute: u16) -> String {
+    format!("{:02}:{:02}", minute / 60, minute % 60)
 }
 
 /// What holds for gas that goes into an appliance. `cylinder` is `None` for a factory charge.
@@ -207,7 +219,7 @@ pub(super) fn banned(standing: &ApplianceStanding, status: Option<GasStatus>, da
 /// What holds for a leak inspection: it looks for the place of a leak. A
 /// method that nobody knows is taken at its word.
 pub fn of_inspection(kind: TestKind, method: &str) -> Option<Refusal> {
-    let indirect = kind == TestKind::LeakInspection && is_direct(method) == Some(false);
+    let indirect = kind == TestKind::LeakInspection && LeakMethod::is_direct(method) == Some(false);
     indirect.then(|| {
         let sentence = format!(
             "\u{201c}{}\u{201d} is an indirect method: it shows that gas is missing, not where. It is no leak inspection.",
@@ -520,10 +532,11 @@ pub fn of_recycling(cylinder: &CylinderStanding) -> Vec<Refusal> {
 pub fn of_gap(cylinder: &CylinderStanding, before: Mass, division: Mass, explained: bool) -> Option<Refusal> {
     let gap = cylinder.gap(before, division).filter(|_| !explained)?;
     let sentence = format!(
-        "Cylinder {} weighed {} kg when last known, now {} kg. Say why: used elsewhere, wrong weight, leaking cylinder, cap or hose, or do not know.",
+        "Cylinder {} weighed {} kg when last known, now {} kg. Say why: {}.",
         cylinder.cylinder.name,
         gap.known.gross.kg_text(),
         before.kg_text(),
+        GAP_REASONS.join(", "),
     );
     Some(Refusal::judgement(Kind::WeighingGap, sentence, ""))
 }
@@ -633,7 +646,9 @@ pub(super) mod tests {
     #[test]
     fn days_that_cannot_be_are_refused() {
         let standing = ApplianceStanding { retired_on: Some(day("2026-04-01")), ..standing("us-82f", "R-22") };
-        let on = |act: &Act, text| kinds(of_entry(&standing, act, Moment { date: day(text), minute: None }, day("2026-06-01")));
+        let on = |act: &Act, text| {
+            kinds(of_entry(&standing, act, Moment { date: day(text), minute: None }, Moment { date: day("2026-06-01"), minute: Some(600) }))
+        };
         let repair = Act::Repair { temporary: false };
         assert_eq!(on(&repair, "2026-06-02"), [(Kind::InTheFuture, false), (Kind::Retired, false)]);
         assert_eq!(on(&repair, "2020-04-30"), [(Kind::BeforeInstallation, false)]);
@@ -654,7 +669,12 @@ pub(super) mod tests {
         };
         let on = |lines: Vec<Line>, act: Act| {
             let standing = ApplianceStanding { lines, ..standing("us-82f", "R-22") };
-            kinds(of_entry(&standing, &act, Moment { date: day("2026-04-01"), minute: None }, day("2026-06-01")))
+            kinds(of_entry(
+                &standing,
+                &act,
+                Moment { date: day("2026-04-01"), minute: None },
+                Moment { date: day("2026-06-01"), minute: None },
+            ))
         };
         assert_eq!(on(vec![line("2026-05-01", Act::NormalOperation)], Act::Retire), [(Kind::Retired, false)]);
         assert_eq!(on(vec![line("2026-05-01", Act::ReportSent), line("2026-03-01", Act::NormalOperation)], Act::Retire), []);

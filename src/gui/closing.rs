@@ -21,17 +21,25 @@ pub fn connect(window: &AppWindow, gui: &Rc<Gui>) {
     on!(gui, closes.on_lifted(who) => Msg::Close(close::Msg::Ink(signer(who), InkMsg::Lifted)));
     on!(gui, closes.on_cleared(who) => Msg::Close(close::Msg::Ink(signer(who), InkMsg::Cleared)));
     on!(gui, closes.on_edited(field, typed) => Msg::Close(close::Msg::Edited(field.into(), typed.into())));
+    on!(gui, closes.on_acknowledge(key) => Msg::Close(close::Msg::Acknowledge(key.into())));
     on!(gui, closes.on_close_visit() => Msg::Close(close::Msg::Close));
     on!(gui, closes.on_back() => Msg::Back);
 
     let entries = window.global::<EntryAdapter>();
     on!(gui, entries.on_edited(field, typed) => Msg::Entry(entry::Msg::Edited(field.into(), typed.into())));
+    on!(gui, entries.on_set_never(never) => Msg::Entry(entry::Msg::Never(never)));
+    on!(gui, entries.on_choose_result(key) => Msg::Entry(entry::Msg::Result(key.into())));
+    on!(gui, entries.on_choose_answer(key) => Msg::Entry(entry::Msg::Answer(key.into())));
+    on!(gui, entries.on_choose_counterpart(key) => Msg::Entry(entry::Msg::Counterpart(key.into())));
     let drawing = Rc::clone(gui);
-    entries.on_point(move |x, y, first| drawing.tell_silently(Msg::Entry(entry::Msg::Ink(InkMsg::Point { x, y, first }))));
-    on!(gui, entries.on_lifted() => Msg::Entry(entry::Msg::Ink(InkMsg::Lifted)));
-    on!(gui, entries.on_cleared() => Msg::Entry(entry::Msg::Ink(InkMsg::Cleared)));
+    entries.on_point(move |who, x, y, first| {
+        drawing.tell_silently(Msg::Entry(entry::Msg::Ink(signer(who), InkMsg::Point { x, y, first })));
+    });
+    on!(gui, entries.on_lifted(who) => Msg::Entry(entry::Msg::Ink(signer(who), InkMsg::Lifted)));
+    on!(gui, entries.on_cleared(who) => Msg::Entry(entry::Msg::Ink(signer(who), InkMsg::Cleared)));
     on!(gui, entries.on_strike() => Msg::Entry(entry::Msg::Strike));
     on!(gui, entries.on_correct() => Msg::Entry(entry::Msg::Correct));
+    on!(gui, entries.on_save_answer() => Msg::Entry(entry::Msg::SaveAnswer));
     on!(gui, entries.on_back() => Msg::Back);
 
     let record = window.global::<VisitClosedAdapter>();
@@ -55,6 +63,7 @@ fn step(step: EntryStep) -> entry::Step {
         EntryStep::Read => entry::Step::Read,
         EntryStep::Strike => entry::Step::Strike,
         EntryStep::Correct => entry::Step::Correct,
+        EntryStep::Answer => entry::Step::Answer,
     }
 }
 
@@ -63,7 +72,9 @@ pub fn take_over(window: &AppWindow, desk: &mut Desk) {
     match (desk.page(), desk.panel()) {
         (Page::Visit, Panel::Close) => desk.take_over_signing(window.global::<CloseAdapter>().get_signing()),
         (Page::Visit, Panel::Entry) => {
-            desk.update(Msg::Entry(entry::Msg::Step(step(window.global::<EntryAdapter>().get_step()))));
+            let entry = window.global::<EntryAdapter>();
+            desk.update(Msg::Entry(entry::Msg::Step(step(entry.get_step()))));
+            desk.update(Msg::Entry(entry::Msg::Signing(entry.get_signing())));
         }
         (Page::Closed, _) => desk.take_over_handing(window.global::<VisitClosedAdapter>().get_handing_over()),
         _ => {}
@@ -89,6 +100,8 @@ pub fn show_close(window: &AppWindow, desk: &Desk) -> Result<(), AppError> {
     closes.set_representative(text(&shown.representative));
     closes.set_representative_strokes(text(&shown.representative_strokes));
     closes.set_refusal_reason(text(&shown.refusal_reason));
+    closes.set_onward(shown.onward.ready);
+    closes.set_not_onward(text(&shown.onward.why_not));
     closes.set_ready(shown.ready.ready);
     closes.set_why_not(text(&shown.ready.why_not));
     Ok(())
@@ -108,11 +121,32 @@ pub fn show_entry(window: &AppWindow, desk: &Desk) -> Result<(), AppError> {
         entry::Step::Read => EntryStep::Read,
         entry::Step::Strike => EntryStep::Strike,
         entry::Step::Correct => EntryStep::Correct,
+        entry::Step::Answer => EntryStep::Answer,
     });
-    entries.set_instead(text(&shown.instead));
+    entries.set_can_answer(shown.can_answer);
+    let correcting = &shown.correcting;
+    entries.set_never(correcting.never);
+    entries.set_can_replace(correcting.can_replace);
+    entries.set_why_only_out(text(&correcting.why_only_out));
+    entries.set_instead_caption(text(&correcting.caption));
+    entries.set_instead(text(&correcting.instead));
+    entries.set_instead_error(text(&correcting.error));
+    list!(entries.get_results, set_results, rows::choices(&correcting.results));
+    entries.set_result(text(&correcting.result));
+    entries.set_asks_place(correcting.asks_place);
+    entries.set_place(text(&correcting.place));
     entries.set_reason(text(&shown.reason));
+    list!(entries.get_answers, set_answers, rows::choices(&shown.answers));
+    entries.set_answer(text(&shown.answer));
+    entries.set_signing(shown.signing);
     entries.set_technician(text(&shown.technician));
     entries.set_strokes(text(&shown.strokes));
+    entries.set_counterpart(text(&shown.counterpart));
+    entries.set_representative(text(&shown.representative));
+    entries.set_representative_strokes(text(&shown.representative_strokes));
+    entries.set_refusal_reason(text(&shown.refusal_reason));
+    entries.set_said(shown.said.ready);
+    entries.set_not_said(text(&shown.said.why_not));
     entries.set_ready(shown.ready.ready);
     entries.set_why_not(text(&shown.ready.why_not));
     Ok(())

@@ -152,6 +152,7 @@ impl Gui {
                     Panel::ChooseAppliance => visit::show_choose_appliance(window, desk)?,
                     Panel::Cautions => visit::show_cautions(window, desk)?,
                     Panel::ChooseCylinder => weighing::show_choose_cylinder(window, desk)?,
+                    Panel::When => visit::show_when(window, desk)?,
                     Panel::Charge => weighing::show_charge(window, desk)?,
                     Panel::Recover => weighing::show_recover(window, desk)?,
                     Panel::LeakTest => work::show_leak_test(window, desk)?,
@@ -161,6 +162,7 @@ impl Gui {
                     Panel::Entry => closing::show_entry(window, desk)?,
                     Panel::Close => closing::show_close(window, desk)?,
                 }
+                visit::show_stamp(window, desk)?;
                 visit::show_act(window, desk);
             }
             Page::Closed => closing::show_closed(window, desk)?,

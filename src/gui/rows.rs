@@ -111,6 +111,7 @@ pub fn rates(rates: &[shown::Rate]) -> Vec<ui::LeakRate> {
         .iter()
         .map(|rate| ui::LeakRate {
             rulebook: text(&rate.rulebook),
+            caption: text(&rate.caption),
             figure: text(&rate.figure),
             unit: text(&rate.unit),
             trigger: text(&rate.trigger),

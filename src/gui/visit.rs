@@ -3,10 +3,11 @@
 use super::Gui;
 use super::rows::{self, text};
 use crate::app::AppError;
-use crate::view::visit::{Panel, begin, cautions, choose_appliance, choose_cylinder, facts, page};
+use crate::view::visit::{Panel, begin, cautions, choose_appliance, choose_cylinder, facts, page, when};
 use crate::view::{Desk, Msg, Page};
 use bubblepoint_ui::{
     Act, AppWindow, BeginAdapter, CautionsAdapter, ChooseApplianceAdapter, ChooseCylinderAdapter, VisitAdapter, VisitFactsAdapter,
+    WhenAdapter,
 };
 use slint::ComponentHandle;
 use std::rc::Rc;
@@ -32,6 +33,7 @@ pub fn connect(window: &AppWindow, gui: &Rc<Gui>) {
     on!(gui, about.on_set_at_work(key, at_work) => Msg::Facts(facts::Msg::SetAtWork(key.into(), at_work)));
     on!(gui, about.on_edited(_field, typed) => Msg::Facts(facts::Msg::Job(typed.into())));
     on!(gui, about.on_open(key) => Msg::Facts(facts::Msg::Open(key.into())));
+    on!(gui, about.on_go_on() => Msg::Facts(facts::Msg::GoOn));
     on!(gui, about.on_back() => Msg::Back);
 
     let choose = window.global::<ChooseApplianceAdapter>();
@@ -47,6 +49,15 @@ pub fn connect(window: &AppWindow, gui: &Rc<Gui>) {
     on!(gui, before.on_acknowledge(key) => Msg::Cautions(cautions::Msg::Acknowledge(key.into())));
     on!(gui, before.on_go_on() => Msg::Cautions(cautions::Msg::GoOn));
     on!(gui, before.on_back() => Msg::Back);
+
+    let when = window.global::<WhenAdapter>();
+    on!(gui, when.on_open() => Msg::When(when::Msg::Open));
+    on!(gui, when.on_choose_person(key) => Msg::When(when::Msg::Person(key.into())));
+    on!(gui, when.on_step(part, by) => Msg::When(when::Msg::Step(part.into(), by)));
+    on!(gui, when.on_today() => Msg::When(when::Msg::Today));
+    on!(gui, when.on_key(key) => Msg::When(when::Msg::Key(key.into())));
+    on!(gui, when.on_now() => Msg::When(when::Msg::Now));
+    on!(gui, when.on_done() => Msg::When(when::Msg::Done));
 }
 
 fn panel(act: Act) -> Panel {
@@ -57,6 +68,7 @@ fn panel(act: Act) -> Panel {
         Act::ChooseAppliance => Panel::ChooseAppliance,
         Act::Cautions => Panel::Cautions,
         Act::ChooseCylinder => Panel::ChooseCylinder,
+        Act::When => Panel::When,
         Act::Charge => Panel::Charge,
         Act::Recover => Panel::Recover,
         Act::LeakTest => Panel::LeakTest,
@@ -76,6 +88,7 @@ fn act(panel: Panel) -> Act {
         Panel::ChooseAppliance => Act::ChooseAppliance,
         Panel::Cautions => Act::Cautions,
         Panel::ChooseCylinder => Act::ChooseCylinder,
+        Panel::When => Act::When,
         Panel::Charge => Act::Charge,
         Panel::Recover => Act::Recover,
         Panel::LeakTest => Act::LeakTest,
@@ -164,6 +177,7 @@ pub fn show_facts(window: &AppWindow, desk: &Desk) -> Result<(), AppError> {
     list!(about.get_people, set_people, people.collect());
     about.set_job(text(&shown.job));
     list!(about.get_still_open, set_still_open, rows::lines(&shown.still_open));
+    about.set_goes_on(shown.goes_on);
     Ok(())
 }
 
@@ -196,5 +210,33 @@ pub fn show_cautions(window: &AppWindow, desk: &Desk) -> Result<(), AppError> {
     list!(before.get_cautions, set_cautions, rows::cautions(&shown.cautions));
     before.set_ready(shown.ready.ready);
     before.set_why_not(text(&shown.ready.why_not));
+    Ok(())
+}
+
+/// Who does what is entered, and when: in the head of every action.
+pub fn show_stamp(window: &AppWindow, desk: &Desk) -> Result<(), AppError> {
+    let stamp = desk.stamp_shown()?;
+    let when = window.global::<WhenAdapter>();
+    when.set_stamp(text(&stamp.when));
+    when.set_who(text(&stamp.who));
+    when.set_wrong(stamp.wrong);
+    Ok(())
+}
+
+pub fn show_when(window: &AppWindow, desk: &Desk) -> Result<(), AppError> {
+    let shown = desk.when_shown()?;
+    let when = window.global::<WhenAdapter>();
+    when.set_appliance(text(&shown.appliance));
+    list!(when.get_people, set_people, rows::choices(&shown.people));
+    when.set_person(text(&shown.person));
+    when.set_is_now(shown.is_now);
+    when.set_now_words(text(&shown.now));
+    when.set_day(text(&shown.day));
+    when.set_month(text(&shown.month));
+    when.set_year(text(&shown.year));
+    when.set_day_words(text(&shown.day_words));
+    when.set_time(rows::reading(&shown.time));
+    when.set_error(text(&shown.error));
+    when.set_ready(shown.ready.ready);
     Ok(())
 }

@@ -83,6 +83,8 @@ pub fn show_leak_test(window: &AppWindow, desk: &Desk) -> Result<(), AppError> {
     tests.set_place_error(text(&shown.place_error));
     list!(tests.get_place_states, set_place_states, rows::choices(&shown.place_states));
     tests.set_place_state(text(&shown.place_state));
+    tests.set_asks_done(shown.asks_done);
+    tests.set_done(text(&shown.done));
     tests.set_ready(shown.ready.ready);
     tests.set_why_not(text(&shown.ready.why_not));
     Ok(())

@@ -217,6 +217,9 @@ pub struct Detail {
     /// Why today's first gross differs from the last one known.
     #[serde(skip_serializing_if = "String::is_empty")]
     pub weighing_gap: String,
+    /// The entry whose weighing gap this one explains.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub answers: Option<EntryId>,
     #[serde(skip_serializing_if = "Vec::is_empty")]
     pub cautions: Vec<CautionSeen>,
     /// Imported history: file and line.

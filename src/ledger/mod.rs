@@ -4,7 +4,9 @@
 mod balance;
 mod cylinder_entry;
 mod entry;
+mod gaps;
 mod leaks;
+mod methods;
 mod register;
 mod registers;
 mod visit;
@@ -13,7 +15,9 @@ mod words;
 pub use balance::{Content, CylinderBalance, KnownGross, Movement, MovementKind, cylinder_balance, follow_cylinder};
 pub use cylinder_entry::{CylinderAct, CylinderDetail, CylinderEntry};
 pub use entry::{Act, CautionSeen, Detail, Entry, LeakPlace, Line, Moment, Position, Reading, Transfer, WeighingMode, by_appliance};
+pub use gaps::{GAP_REASONS, GAP_UNKNOWN, open_gaps};
 pub use leaks::{OpenLeak, open_leaks};
+pub use methods::LeakMethod;
 pub use register::{
     Appliance, ApplianceFacts, Company, Cylinder, CylinderFacts, Dated, Instrument, InstrumentKind, Person, ReadAt, Site, SiteFacts,
     Versions,

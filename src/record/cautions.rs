@@ -3,7 +3,7 @@
 //! The site's own rules, the maker's manual and local codes come first.
 
 use crate::gas::Gas;
-use crate::quantity::Ratio;
+use crate::quantity::{Mass, Ratio};
 
 /// One caution.
 #[derive(Debug, PartialEq, Eq)]
@@ -70,7 +70,7 @@ pub const CATALOGUE: [CautionText; 16] = [
     },
     CautionText {
         number: "5",
-        text: "This blend parts as it boils: take liquid only.",
+        text: "This blend fractionates: vapour leaves it changed. Take liquid only.",
         basis: "common practice; temperature glide in the gas catalogue",
         acknowledge: "Liquid only",
     },
@@ -188,9 +188,17 @@ pub fn glides(gas: &Gas) -> bool {
     gas.is_blend() && glide.is_none_or(|glide| glide > Ratio::new(1, 2))
 }
 
+/// Whole words that say that a place lies low; a hospital is no pit.
 fn is_low(place: &str) -> bool {
+    const LOW: [&str; 6] = ["cellar", "basement", "pit", "shaft", "duct", "hold"];
     let place = place.to_lowercase();
-    ["cellar", "basement", "pit", "shaft", "duct", "hold"].iter().any(|word| place.contains(word))
+    let mut words = place.split(|letter: char| !letter.is_alphanumeric());
+    words.any(|word| LOW.contains(&word) || word.strip_suffix('s').is_some_and(|one| LOW.contains(&one)))
+}
+
+/// More than one person lifts: 23 kg, the load constant of the NIOSH lifting equation (1994; from memory).
+pub fn is_heavy(gross: Mass) -> bool {
+    gross > Mass::from_kg(23)
 }
 
 #[cfg(test)]
@@ -211,6 +219,19 @@ mod tests {
         assert_eq!(numbers(CautiousAct::Recover, "R-744"), ["12", "3", "4"]);
         assert_eq!(numbers(CautiousAct::Repair, "R-717"), ["13", "8", "6"]);
         assert_eq!(numbers(CautiousAct::Close, "R-290"), ["16"]);
+    }
+
+    #[test]
+    fn a_place_is_low_by_whole_words_and_a_cylinder_heavy_by_its_mass() {
+        for place in ["Basement 2", "valve pits, north", "cargo hold", "plant room/cellar"] {
+            assert!(is_low(place), "{place}");
+        }
+        for place in ["hospital roof", "household unit", "product line", "threshold"] {
+            assert!(!is_low(place), "{place}");
+        }
+        assert!(!is_heavy(Mass::from_kg(23)) && is_heavy(Mass::from_kg(24)));
+        let recover = |heavy_cylinder| Circumstances { act: CautiousAct::Recover, gas: None, place: "", heavy_cylinder };
+        assert!(fitting(&recover(true)).iter().any(|caution| caution.number == "1"), "someone is there to help");
     }
 
     #[test]

@@ -12,7 +12,7 @@ pub use account::{
     AccountLine, AnnualAccount, ApplianceAccount, DutyCounts, DutyTally, GasAccount, WeightedLoss, account_csv, account_json,
 };
 pub use canonical::{NotCanonical, canonical_json};
-pub use cautions::{CATALOGUE, CautionText, CautiousAct, Circumstances, caution, fitting, glides};
+pub use cautions::{CATALOGUE, CautionText, CautiousAct, Circumstances, caution, fitting, glides, is_heavy};
 pub use closed::{Closed, ClosedEntry, ClosedVisit, FORMAT, NotClosed, VisitFacts, close, fingerprint, read_closed};
 pub use due_list::{DueGroup, DueList, DueRow};
 pub use service::{

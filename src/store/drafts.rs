@@ -12,6 +12,9 @@ use std::sync::mpsc::{Receiver, RecvTimeoutError, Sender, channel};
 use std::thread::JoinHandle;
 use std::time::{Duration, Instant as Tick};
 
+/// Actions whose names begin so are done on a visit that is closed: a correction, a hand-over.
+pub const AFTER_CLOSING: &str = "after closing: ";
+
 /// What was being typed.
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub struct Draft {
@@ -66,12 +69,13 @@ impl Writing<'_> {
 
 fn put(c: &rusqlite::Connection, draft: &Draft) -> rusqlite::Result<()> {
     // A draft that comes late, after its visit was closed, is of no use.
+    let after_closing = draft.action.starts_with(AFTER_CLOSING);
     c.prepare_cached(
         "INSERT INTO drafts (visit, appliance, action, body, saved) \
-         SELECT ?1, ?2, ?3, ?4, ?5 FROM visits WHERE id = ?1 AND state = 'open' \
+         SELECT ?1, ?2, ?3, ?4, ?5 FROM visits WHERE id = ?1 AND (state = 'open' OR ?6) \
          ON CONFLICT (visit, action) DO UPDATE SET appliance = excluded.appliance, body = excluded.body, saved = excluded.saved",
     )?
-    .execute(params![draft.visit, draft.appliance, draft.action, draft.body, Instant(draft.saved)])
+    .execute(params![draft.visit, draft.appliance, draft.action, draft.body, Instant(draft.saved), after_closing])
     .map(drop)
 }
 

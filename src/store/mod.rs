@@ -20,7 +20,7 @@ mod upkeep;
 mod visits;
 mod writing;
 
-pub use drafts::{Draft, DraftWriter};
+pub use drafts::{AFTER_CLOSING, Draft, DraftWriter};
 pub use error::StoreError;
 pub use opening::OpenMode;
 pub use records::{ClosedRecord, Countersignature, FurtherCopy, HandOver, Since};

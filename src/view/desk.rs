@@ -6,7 +6,7 @@
 use super::shown::Message;
 use super::visit::{
     self, Panel, Work, begin, cautions, charge, choose_appliance, choose_cylinder, close, closed, entry, facts, leak_test, note, page,
-    pressure, recover, repair,
+    pressure, recover, repair, when,
 };
 use super::words;
 use crate::app::{App, AppError};
@@ -48,6 +48,7 @@ pub enum Msg {
     ChooseAppliance(choose_appliance::Msg),
     Cautions(cautions::Msg),
     ChooseCylinder(choose_cylinder::Msg),
+    When(when::Msg),
     Charge(charge::Msg),
     Recover(recover::Msg),
     LeakTest(leak_test::Msg),
@@ -214,6 +215,7 @@ impl Desk {
             Msg::ChooseAppliance(msg) => self.update_choose_appliance(msg),
             Msg::Cautions(msg) => self.update_cautions(msg),
             Msg::ChooseCylinder(msg) => self.update_choose_cylinder(msg),
+            Msg::When(msg) => self.update_when(msg),
             Msg::Charge(msg) => self.update_charge(msg),
             Msg::Recover(msg) => self.update_recover(msg),
             Msg::LeakTest(msg) => self.update_leak_test(msg),
@@ -243,9 +245,13 @@ impl Desk {
                 Ok(())
             }
             Panel::Entry => {
+                let signing = self.entry.as_ref().is_some_and(|state| state.step == entry::Step::Correct && state.signatures.signing);
                 let step = self.entry.as_ref().map(|state| (state.step, state.from));
                 match step {
-                    Some((entry::Step::Strike | entry::Step::Correct, _)) => self.update_entry(entry::Msg::Step(entry::Step::Read)),
+                    _ if signing => self.update_entry(entry::Msg::Signing(false)),
+                    Some((entry::Step::Strike | entry::Step::Correct | entry::Step::Answer, _)) => {
+                        self.update_entry(entry::Msg::Step(entry::Step::Read))
+                    }
                     Some((entry::Step::Read, from)) => {
                         self.entry = None;
                         self.open_panel(Panel::None)?;
@@ -259,6 +265,7 @@ impl Desk {
             }
             Panel::Close if self.work.as_ref().is_some_and(|work| work.close.signing) => self.update_close(close::Msg::Signing(false)),
             Panel::ChooseCylinder => self.back_from_cylinder(),
+            Panel::When => self.update_when(when::Msg::Done),
             _ => self.open_panel(Panel::None),
         }
     }

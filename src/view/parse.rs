@@ -23,6 +23,21 @@ pub fn press(text: &mut String, key: &str) {
     }
 }
 
+/// As [`press`], with `-`, which puts the sign before the figure and takes it away again.
+pub fn press_signed(text: &mut String, key: &str) {
+    let minus = text.starts_with('-');
+    let mut figure = text.trim_start_matches('-').to_owned();
+    let minus = match key {
+        "-" => !minus,
+        "back" if figure.is_empty() => false,
+        _ => {
+            press(&mut figure, key);
+            minus
+        }
+    };
+    *text = if minus { format!("-{figure}") } else { figure };
+}
+
 /// A number such as `12.5` or `12,5`; `None` where nothing was typed.
 ///
 /// # Errors
@@ -113,6 +128,16 @@ mod tests {
         assert_eq!(typed(&["1", "2", "back", "back", "back"]), "");
         assert_eq!(typed(&["1"; 14]).len(), MOST_SIGNS);
         assert_eq!(typed(&["x", "12", "7"]), "7");
+    }
+
+    #[test]
+    fn a_sign_goes_on_and_off() {
+        let mut text = String::new();
+        for (key, shown) in [("1", "1"), ("-", "-1"), (".", "-1."), ("-", "1."), ("-", "-1."), ("back", "-1"), ("back", "-"), ("back", "")]
+        {
+            press_signed(&mut text, key);
+            assert_eq!(text, shown);
+        }
     }
 
     #[test]

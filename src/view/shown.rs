@@ -112,6 +112,8 @@ impl Choice {
 #[derive(Debug, Clone, Default, PartialEq)]
 pub struct Rate {
     pub rulebook: String,
+    /// `leak rate, annualizing method`.
+    pub caption: String,
     /// Empty where no rate is due.
     pub figure: String,
     pub unit: String,

@@ -46,8 +46,8 @@ fn working(rate: &LeakRate, readings: &[String], unit: MassUnit) -> Reason {
     if let Some(from) = rate.window_from {
         inputs.push(Fact::new("counted from", format::full_day(from)));
     }
-    inputs.extend(rate.notes.iter().map(|note| Fact::new("taken for granted", note)));
-    inputs.extend(readings.iter().map(|reading| Fact::new("reading taken", reading)));
+    inputs.extend(rate.notes.iter().map(|note| Fact::new(words::reading_taken(), note)));
+    inputs.extend(readings.iter().map(|reading| Fact::new(words::reading_taken(), reading)));
     inputs.push(Fact::new("sum", words::sum(rate.longest_days, &added, &full_charge, rate.days)));
     inputs.push(Fact::new("leak rate", format!("{} %", format::percent(rate.percent))));
     if let Some(band) = &rate.error {

@@ -12,10 +12,10 @@ fn a_struck_entry_stays_and_counts_no_more() {
     let app = &plant.app;
     let visit = plant.begin();
     let wrong = app.charge(visit.id, plant.appliance, charge(plant.supply, gross("70", "50"))).unwrap();
-    assert!(matches!(app.strike(wrong.line.entry, " "), Err(AppError::Input { field: "why", .. })));
-    app.strike(wrong.line.entry, "read the wrong scale").unwrap();
+    assert!(matches!(app.strike(wrong.line.entry, " ", None), Err(AppError::Input { field: "why", .. })));
+    app.strike(wrong.line.entry, "read the wrong scale", None).unwrap();
     app.charge(visit.id, plant.appliance, charge(plant.supply, gross("70", "60"))).unwrap();
-    assert!(app.strike(wrong.line.entry, "again").is_err());
+    assert!(app.strike(wrong.line.entry, "again", None).is_err());
 
     let content = app.cylinder_standing(plant.supply, visit.date).unwrap().balance.content;
     assert_eq!(content, Content::Known(Mass::from_lb(40)));
@@ -35,7 +35,7 @@ fn a_closed_entry_is_corrected_by_a_record_that_names_it() {
     let wrong = app.charge(visit.id, plant.appliance, charge(plant.supply, gross("70", "55"))).unwrap();
     let (technician, counterpart) = signed_by_both();
     let first = app.close_visit(visit.id, technician, counterpart).unwrap().record;
-    assert!(app.strike(wrong.line.entry, "wrong").is_err(), "the visit is closed");
+    assert!(app.strike(wrong.line.entry, "wrong", None).is_err(), "the visit is closed");
 
     plant.clock.set("2026-03-10T15:00:00Z".parse().unwrap());
     let correction = Correction {

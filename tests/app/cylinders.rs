@@ -20,7 +20,7 @@ fn pounds(pounds: i64) -> Content {
 fn an_imported_gross_was_read_after_the_imported_history() {
     let plant = plant();
     let app = &plant.app;
-    let cylinders = "cylinder,kind,tare,unit,refrigerant,gas_status,gross\nI-1,supply,20,lb,R-22,reclaimed,50\n";
+    let cylinders = "cylinder,kind,tare,unit,refrigerant,gas_status,gross\nI-1,supply,20,lb,R-22,virgin,50\n";
     let log =
         "date,appliance,what,amount,unit,cylinder,purpose\n2025-06-01,R-1,charge,6,lb,I-1,leak\n2026-03-03,R-1,charge,4,lb,I-1,leak\n";
     let file = |name: &str, text: &str| (name.to_owned(), text.as_bytes().to_vec());
@@ -38,7 +38,7 @@ fn an_imported_gross_was_read_after_the_imported_history() {
     app.charge(visit.id, plant.appliance, charge(id, gross("50", "47"))).unwrap();
     assert_eq!(held(app, id), pounds(27));
     // The same line again is no change.
-    let again = "cylinder,kind,tare,unit,refrigerant,gas_status,gross\r\nI-1,supply,20,lb,R-22,reclaimed,50\r\n";
+    let again = "cylinder,kind,tare,unit,refrigerant,gas_status,gross\r\nI-1,supply,20,lb,R-22,virgin,50\r\n";
     app.import(&[file("again.csv", again)]).unwrap();
     assert_eq!(held(app, id), pounds(27));
 }

@@ -1,6 +1,7 @@
 //! What a person does, from the first entry to the closed record.
 
 mod books;
+mod complete;
 mod corrections;
 mod cylinders;
 mod import;

@@ -39,7 +39,7 @@ fn a_retrofit_visit_prints_each_transfers_own_gas() {
     // The first recovery is entered for the wrong cylinder's reading and struck; its gas stays what it was.
     let old = RecoverInput { purpose: RecoveryPurpose::Retrofit, ..recover(plant.recovery, gross("25", "35")) };
     let struck = app.recover(visit.id, plant.appliance, old.clone()).unwrap();
-    app.strike(struck.line.entry, "misread").unwrap();
+    app.strike(struck.line.entry, "misread", None).unwrap();
     plant.clock.forward(Duration::minutes(30));
     app.recover(visit.id, plant.appliance, old).unwrap();
     plant.clock.forward(Duration::minutes(30));

@@ -240,6 +240,7 @@ fn charge_input(run: u32) -> ChargeInput {
         phase: "liquid".to_owned(),
         short_by: None,
         same_leak_as: None,
+        gas_source: String::new(),
         weighing_gap: String::new(),
     }
 }

@@ -195,6 +195,7 @@ impl World {
                     phase: "liquid".to_owned(),
                     short_by: None,
                     same_leak_as: None,
+                    gas_source: "where it was made fit".to_owned(),
                     weighing_gap: "do not know".to_owned(),
                 };
                 let entry = self.app.charge(self.visit, self.appliances[gas], input).unwrap();
@@ -228,6 +229,7 @@ impl World {
                     phase: String::new(),
                     short_by: None,
                     same_leak_as: None,
+                    gas_source: "where it was made fit".to_owned(),
                     weighing_gap: String::new(),
                 };
                 self.app.charge(self.visit, self.appliances[gas], input).unwrap();
@@ -351,7 +353,7 @@ impl World {
                 }
                 match self.strikable.remove(index) {
                     Strikable::Visit(entry, gas, cylinder, net, charge) => {
-                        self.app.strike(entry, "tried out").unwrap();
+                        self.app.strike(entry, "tried out", None).unwrap();
                         // It never happened in the books; in truth it did.
                         let (sum, gain) = if charge { (&mut self.sums[gas].charged, net) } else { (&mut self.sums[gas].recovered, -net) };
                         *sum -= net;

@@ -115,6 +115,7 @@ fn entered_on_a_coarse_scale(office: &Office, days: &[(&str, &str, &str, ChargeP
             phase: "liquid".to_owned(),
             short_by: None,
             same_leak_as: first,
+            gas_source: String::new(),
             weighing_gap: String::new(),
         };
         first = Some(app.charge(visit.id, appliance, charge).unwrap().line.entry);
@@ -294,6 +295,7 @@ fn a_top_up_with_virgin_gas_is_refused_and_reclaimed_gas_taken() {
             phase: "liquid".to_owned(),
             short_by: None,
             same_leak_as: None,
+            gas_source: "North Reclaim, batch 7".to_owned(),
             weighing_gap: String::new(),
         };
         app.charge(visit.id, registers.appliances[0].id, input)

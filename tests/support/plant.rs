@@ -118,6 +118,7 @@ pub fn charge(cylinder: CylinderId, reading: Reading) -> ChargeInput {
         phase: "liquid".to_owned(),
         short_by: None,
         same_leak_as: None,
+        gas_source: String::new(),
         weighing_gap: String::new(),
     }
 }

@@ -175,6 +175,7 @@ impl Scene<'_> {
             phase: "liquid".to_owned(),
             short_by,
             same_leak_as: None,
+            gas_source: String::new(),
             weighing_gap: String::new(),
         };
         let entry = self.stage.app.charge(self.visit, self.cast.appliance(appliance)?, input)?;
@@ -193,6 +194,7 @@ impl Scene<'_> {
             phase: String::new(),
             short_by: None,
             same_leak_as: None,
+            gas_source: String::new(),
             weighing_gap: String::new(),
         };
         self.stage.app.charge(self.visit, appliance, input)?;

@@ -195,6 +195,7 @@ fn cold_store_charged(stage: &Stage, cast: &Cast) -> Told {
         phase: "liquid".to_owned(),
         short_by: None,
         same_leak_as: None,
+        gas_source: String::new(),
         weighing_gap: String::new(),
     };
     let correction = Correction {
@@ -260,7 +261,7 @@ fn ice_works_at_its_trigger(stage: &Stage, cast: &Cast) -> Told {
     let scene = stage.begin(cast, "Fish market", IDRIS, "W-1615")?;
     scene.cautions(&["1", "2", "15"])?;
     let twice = scene.simple("FM-3", SimpleAct::Note, "Leak test begins at the drum.")?;
-    stage.app.strike(twice.line.entry, "written on the wrong line")?;
+    stage.app.strike(twice.line.entry, "written on the wrong line", None)?;
     scene.test("FM-3", TestKind::LeakTest, "drum, spray header, valves", &[("packing of the drum bearing", "")])?;
     let repair = scene.repair("FM-3", "packing of the drum bearing", "Packing replaced", "packing set 40 mm")?;
     scene.verify("FM-3", TestKind::InitialVerification, "packing of the drum bearing", repair)?;

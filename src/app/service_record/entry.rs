@@ -1,10 +1,9 @@
 //! One entry as a record says it.
 
 use super::{instrument_text, wording};
-use crate::app::methods::is_direct;
 use crate::ledger::{
-    Act, ApplianceFacts, Detail, Entry, EntryId, Instrument, LeakPlace, RecoveryPurpose, Registers, Scope, Site, TestKind, Transfer,
-    WeighingMode,
+    Act, ApplianceFacts, Detail, Entry, EntryId, Instrument, LeakMethod, LeakPlace, RecoveryPurpose, Registers, Scope, Site, TestKind,
+    Transfer, WeighingMode,
 };
 use crate::quantity::Weighing;
 use crate::record::{self, EntryFacts, Fingerprint, RepairFacts, TestFacts, TransferFacts, Way, Work};
@@ -87,7 +86,7 @@ fn work(entry: &Entry, names: &Names<'_>) -> Work {
         Act::Test { kind, result, scope, .. } => Work::Test(Box::new(TestFacts {
             kind: kind.name().to_owned(),
             method: detail.method.clone(),
-            direct: is_direct(&detail.method),
+            direct: LeakMethod::is_direct(&detail.method),
             scope: match scope {
                 Some(Scope::Whole) => "whole appliance".to_owned(),
                 Some(Scope::Part) => "part".to_owned(),

@@ -42,7 +42,7 @@ pub fn bar(judged: &Judged, book: usize, today: NaiveDate) -> Option<Rate> {
             (true, None) => words::no_rate_without_full_charge(),
             (true, Some(_)) => words::sentence(&words::no_addition_yet()),
         };
-        return Some(Rate { rulebook: title, word: words::no_rate_due(), consequence, ..Rate::default() });
+        return Some(Rate { rulebook: title, caption: words::leak_rate(None), word: words::no_rate_due(), consequence, ..Rate::default() });
     };
     let within = rate.error.as_ref().is_some_and(|band| band.holds_trigger);
     let next = judged.next_of(&judgement.id).map(|duty| due::by_words(duty, judged.on, today)).unwrap_or_default();
@@ -54,6 +54,7 @@ pub fn bar(judged: &Judged, book: usize, today: NaiveDate) -> Option<Rate> {
         verdict: verdict(rate.verdict),
         word: words::verdict(rate.verdict.name(), within),
         consequence: if rate.verdict == rules::Verdict::Over && within { words::duty_stands(&next) } else { format::capital(&next) },
+        caption: words::leak_rate(Some(rate.method)),
         ..rate_bar(rate)
     })
 }

@@ -61,6 +61,7 @@ impl Bench {
             phase: "liquid".to_owned(),
             short_by: None,
             same_leak_as: None,
+            gas_source: String::new(),
             weighing_gap: String::new(),
         };
         self.app.enter(visit.id, appliance, &NewEntry::Charge(input)).unwrap();

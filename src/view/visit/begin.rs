@@ -105,10 +105,16 @@ impl Desk {
         self.app.set(Setting::Person, &person.to_string())?;
         let visit: Visit = self.app.begin_visit(site, person)?;
         self.take_up(visit.id)?;
-        if self.work()?.appliances().is_empty() && self.panel == Panel::None {
-            self.ask(Panel::ChooseAppliance)?;
+        self.work_mut()?.place.person = Some(person);
+        self.keep_place()?;
+        if self.panel != Panel::None {
+            return Ok(());
         }
-        Ok(())
+        // What is still open here is read before anything is done.
+        if !self.still_open()?.is_empty() {
+            return self.open_panel(Panel::Facts);
+        }
+        if self.work()?.appliances().is_empty() { self.ask(Panel::ChooseAppliance) } else { Ok(()) }
     }
 
     fn add_and_begin(&mut self) -> Result<(), AppError> {

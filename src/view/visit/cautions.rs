@@ -1,9 +1,9 @@
 //! Cautions come before the act, acknowledged once per visit and kind.
 
 use super::Panel;
-use crate::app::AppError;
+use crate::app::{AppError, ApplianceStanding};
 use crate::gas;
-use crate::record::{CautionText, Circumstances, fitting};
+use crate::record::{CautionText, Circumstances, fitting, is_heavy};
 use crate::view::desk::Desk;
 use crate::view::shown::{Caution, Ready};
 use crate::view::words;
@@ -31,11 +31,27 @@ impl Desk {
             act,
             gas: gas::find(&standing.facts.refrigerant),
             place: &standing.facts.place,
-            heavy_cylinder: false,
+            heavy_cylinder: panel == Panel::Recover && self.heavy_cylinder(&standing)?,
         }))
     }
 
-    fn is_acknowledged(&self, number: &str) -> bool {
+    /// The cylinder that is filled, or one that may be, weighs more when it is full than one person lifts.
+    fn heavy_cylinder(&self, standing: &ApplianceStanding) -> Result<bool, AppError> {
+        let today = self.today_there()?;
+        let chosen = self.work()?.recover.as_ref().and_then(|form| form.weighing.cylinder);
+        let fitting = chosen.map_or_else(|| self.fitting_cylinders(Panel::Recover), |chosen| Ok(vec![chosen]))?;
+        for cylinder in fitting {
+            let cylinder = self.app.cylinder_standing(cylinder, today)?;
+            let limit = self.limit_of(standing, Some(&cylinder))?.and_then(|limit| limit.binding);
+            // Of a cylinder without a known limit nobody can say that it stays light.
+            if limit.is_none_or(|limit| is_heavy(cylinder.facts.tare + limit.net)) {
+                return Ok(true);
+            }
+        }
+        Ok(false)
+    }
+
+    pub(super) fn is_acknowledged(&self, number: &str) -> bool {
         self.work.as_ref().is_some_and(|work| work.cautions.iter().any(|seen| seen.caution == number))
     }
 
@@ -47,7 +63,8 @@ impl Desk {
         match msg {
             Msg::Acknowledge(number) => {
                 if !self.is_acknowledged(&number) {
-                    self.app.acknowledge(self.work()?.visit.id, &number, None)?;
+                    let work = self.work()?;
+                    self.app.acknowledge(work.visit.id, &number, work.person_in_hand())?;
                 }
                 self.reload_visit()
             }
@@ -68,7 +85,7 @@ impl Desk {
         let cautions: Vec<Caution> = cautions.into_iter().map(|caution| shown(caution, self.is_acknowledged(caution.number))).collect();
         let ready = cautions.iter().all(|caution| caution.acknowledged);
         Ok(Shown {
-            act: act_name(next).to_owned(),
+            act: words::act(next),
             appliance: self.appliance_words()?,
             cautions,
             ready: if ready { Ready::yes() } else { Ready::not(words::acknowledge_each()) },
@@ -83,15 +100,5 @@ pub(super) fn shown(caution: &CautionText, acknowledged: bool) -> Caution {
         basis: caution.basis.to_owned(),
         acknowledge: caution.acknowledge.to_owned(),
         acknowledged,
-    }
-}
-
-fn act_name(panel: Panel) -> &'static str {
-    match panel {
-        Panel::Recover => "Recover",
-        Panel::LeakTest => "Leak test",
-        Panel::Repair => "Repair",
-        Panel::Pressure => "Pressure or vacuum",
-        _ => "Charge",
     }
 }

@@ -5,7 +5,9 @@ use super::weighing::{self, Context, WeighingForm};
 use super::{Panel, id, judge};
 use crate::app::{AppError, ApplianceStanding, ChargeInput, CylinderStanding, Kind, NewEntry, Prepared, Refusal};
 use crate::gas::{self, Weighting};
-use crate::ledger::{Act, ApplianceId, ChargePurpose, CylinderId, Entry, EntryId, GasStatus, Line, Position, Reading, WeighingMode};
+use crate::ledger::{
+    Act, ApplianceId, ChargePurpose, CylinderId, Entry, EntryId, GAP_REASONS, GasStatus, Line, Position, Reading, WeighingMode,
+};
 use crate::measure::Direction;
 use crate::quantity::{Mass, Ratio, Weighing};
 use crate::record::glides;
@@ -43,6 +45,9 @@ pub struct Form {
     pub short_by: String,
     pub gas_source: String,
     pub reason: String,
+    /// *Next appliance, same cylinder*: the reading carried over goes to whichever appliance is charged next.
+    #[serde(default)]
+    pub carried: bool,
 }
 
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -103,6 +108,7 @@ impl Form {
             short_by: String::new(),
             gas_source: String::new(),
             reason: String::new(),
+            carried: false,
         }
     }
 
@@ -145,9 +151,15 @@ impl Form {
 impl Desk {
     pub(super) fn begin_charge(&mut self) -> Result<(), AppError> {
         let appliance = self.appliance_in_hand()?;
-        if self.work()?.charge.as_ref().is_none_or(|form| form.appliance != appliance) {
-            let form = Form::new(appliance, self.fresh_weighing()?);
-            self.work_mut()?.charge = Some(form);
+        let form = match &self.work()?.charge {
+            Some(form) if form.carried => Form { appliance, carried: false, ..form.clone() },
+            Some(form) if form.appliance == appliance => form.clone(),
+            _ => Form::new(appliance, self.fresh_weighing()?),
+        };
+        let carried = self.work()?.charge.as_ref().is_some_and(|form| form.carried);
+        self.work_mut()?.charge = Some(form);
+        if carried {
+            self.keep_charge()?;
         }
         self.with_cylinder(Panel::Charge)
     }
@@ -156,22 +168,23 @@ impl Desk {
         match msg {
             Msg::ChooseCylinder => return self.choose_another_cylinder(Panel::Charge),
             Msg::Save => {
-                self.save_charge()?;
-                return self.entered();
+                let form = self.save_charge()?;
+                return self.entered(Panel::Charge, form.appliance);
             }
             Msg::SaveNextAppliance => {
                 let form = self.save_charge()?;
-                let next = Form::new(form.appliance, form.weighing.go_on());
-                self.entered()?;
+                let next = Form { carried: true, ..Form::new(form.appliance, form.weighing.go_on()) };
+                self.entered(Panel::Charge, form.appliance)?;
                 let work = self.work_mut()?;
                 work.charge = Some(next);
                 work.place.appliance = None;
+                self.keep_charge()?;
                 return self.ask(Panel::Charge);
             }
             Msg::SaveNextCylinder => {
                 let form = self.save_charge()?;
                 let weighing = self.fresh_weighing()?;
-                self.entered()?;
+                self.entered(Panel::Charge, form.appliance)?;
                 // Gas of the same leak and work: purpose and fill go on.
                 let next = Form { weighing, reason: String::new(), gas_source: String::new(), ..form };
                 self.work_mut()?.charge = Some(next);
@@ -198,7 +211,7 @@ impl Desk {
     fn charge_input(&self, form: &Form) -> Result<ChargeInput, AppError> {
         let short_by = form.short_by().map_err(|sentence| AppError::Input { field: "short by", sentence })?;
         Ok(ChargeInput {
-            common: self.work()?.common(&form.reason),
+            common: self.work()?.common(Panel::Charge, form.appliance, &form.reason)?,
             cylinder: form.weighing.cylinder.filter(|_| !form.without_cylinder()),
             purpose: form.purpose,
             reading: form.reading(),
@@ -206,6 +219,7 @@ impl Desk {
             phase: if form.vapour { "vapour" } else { "liquid" }.to_owned(),
             short_by,
             same_leak_as: form.earlier.filter(|_| form.purpose == ChargePurpose::SameLeak),
+            gas_source: form.gas_source.clone(),
             weighing_gap: form.weighing.gap_reason.clone(),
         })
     }
@@ -216,25 +230,12 @@ impl Desk {
         let mut input = self.charge_input(&form)?;
         if !form.without_cylinder() {
             input.full_hoses = self.hoses_of(&form.weighing, &standing.facts.refrigerant)?;
-            self.keep_gas_source(&form)?;
         }
         let visit = self.work()?.visit.id;
         self.app.charge(visit, form.appliance, input)?;
         self.remember_weighing(&form.weighing)?;
         self.work_mut()?.charge = None;
         Ok(form)
-    }
-
-    /// Facility, batch and certificate belong to the cylinder.
-    fn keep_gas_source(&self, form: &Form) -> Result<(), AppError> {
-        let (Some(cylinder), source) = (form.weighing.cylinder, form.gas_source.trim()) else { return Ok(()) };
-        if source.is_empty() {
-            return Ok(());
-        }
-        let today = self.today_there()?;
-        let standing = self.app.cylinder_standing(cylinder, today)?;
-        let facts = crate::ledger::CylinderFacts { gas_source: source.to_owned(), ..standing.facts };
-        self.app.change_cylinder(cylinder, facts, today, "written down when it was charged from")
     }
 
     /// The charge page.
@@ -252,7 +253,8 @@ impl Desk {
         let limit = cylinder.as_ref().and_then(|cylinder| rules.limit_of_content(cylinder));
         let attempt = self.attempt_charge(form, &standing);
         let prepared = attempt.as_ref().ok();
-        let error = attempt.as_ref().err().map(|(_, sentence)| sentence.clone()).unwrap_or_default();
+        let error =
+            attempt.as_ref().err().filter(|(field, _)| of_readings(field)).map(|(_, sentence)| sentence.clone()).unwrap_or_default();
         let weighing = form.weighing.shown(&Context {
             direction: Direction::Out,
             cylinder: cylinder.as_ref(),
@@ -274,11 +276,11 @@ impl Desk {
             without_cylinder: form.without_cylinder(),
             weighing,
             scales: weighing::scales(self, today),
-            gap_reasons: weighing::GAP_REASONS.map(Choice::word).to_vec(),
+            gap_reasons: GAP_REASONS.map(Choice::word).to_vec(),
             hose_length: form.weighing.hose_length.clone(),
             hose_bore: form.weighing.hose_bore.clone(),
             summary: self.charge_summary(form),
-            purposes: PURPOSES.map(|purpose| Choice::word(purpose.name())).to_vec(),
+            purposes: PURPOSES.map(|purpose| Choice::new(purpose.name(), words::charge_purpose(purpose), "")).to_vec(),
             purpose: form.purpose.name().to_owned(),
             earlier_charges: self.earlier_charges(form.appliance, today)?,
             earlier: form.earlier.map(|entry| entry.to_string()).unwrap_or_default(),
@@ -292,38 +294,45 @@ impl Desk {
             follows,
             refusal: prepared.map(|prepared| refusal(&prepared.refusals, words::cannot_be_charged())).unwrap_or_default(),
             reason: form.reason.clone(),
-            ready: self.charge_ready(form, attempt.as_ref(), asks_gas_source),
+            ready: self.charge_ready(form, attempt.as_ref()),
             can_go_on: work.visit.closing.is_none(),
         })
     }
 
     /// The charge worked out as far as it can be; else the field and what is wrong.
     fn attempt_charge(&self, form: &Form, standing: &ApplianceStanding) -> Result<Prepared, (&'static str, String)> {
+        let new = self.charge_input(form).map(NewEntry::Charge);
+        self.attempt(form.appliance, &form.weighing, &standing.facts.refrigerant, new)
+    }
+
+    /// Gas that moves, worked out with hoses that are not in the register yet.
+    pub(super) fn attempt(
+        &self,
+        appliance: ApplianceId,
+        weighing: &WeighingForm,
+        gas: &str,
+        new: Result<NewEntry, AppError>,
+    ) -> Result<Prepared, (&'static str, String)> {
         let told = |error: AppError| match error {
             AppError::Input { field, sentence } => (field, sentence),
             other => ("", other.to_string()),
         };
         let visit = self.work().map_err(told)?.visit.id;
-        let input = self.charge_input(form).map_err(told)?;
-        let hoses = form.weighing.hoses(&standing.facts.refrigerant).map_err(|sentence| ("hoses", sentence))?;
-        let mut prepared = self.app.prepare(visit, form.appliance, &NewEntry::Charge(input)).map_err(told)?;
-        // Hoses come into the register only when the charge is saved.
-        if let (Some(hoses), Act::Charge { transfer, .. }) = (hoses, &mut prepared.entry.line.act) {
+        let hoses = weighing.hoses(gas).map_err(|sentence| ("hoses", sentence))?;
+        let mut prepared = self.app.prepare(visit, appliance, &new.map_err(told)?).map_err(told)?;
+        // Hoses come into the register only when the entry is saved.
+        if let (Some(hoses), Act::Charge { transfer, .. } | Act::Recover { transfer, .. }) = (hoses, &mut prepared.entry.line.act) {
             transfer.hoses = hoses.mass().unwrap_or_default();
         }
         Ok(prepared)
     }
 
-    fn charge_ready(&self, form: &Form, attempt: Result<&Prepared, &(&'static str, String)>, asks_gas_source: bool) -> Ready {
-        if form.purpose == ChargePurpose::SameLeak && form.earlier.is_none() {
-            return Ready::not(words::same_leak_missing());
-        }
+    fn charge_ready(&self, form: &Form, attempt: Result<&Prepared, &(&'static str, String)>) -> Ready {
         match attempt {
             // What is not typed yet needs no words.
             Err(_) if !form.weighing.is_complete() && !form.without_cylinder() => Ready::not(""),
             Err((_, sentence)) => Ready::not(sentence),
             Ok(prepared) if !prepared.may_be_saved() => Ready::not(why_not(&prepared.refusals)),
-            Ok(_) if asks_gas_source && form.gas_source.trim().is_empty() => Ready::not(words::gas_source_missing()),
             Ok(_) => Ready::yes(),
         }
     }
@@ -331,7 +340,7 @@ impl Desk {
     fn charge_summary(&self, form: &Form) -> String {
         let fill = if form.short { words::short_by(form.short_by.trim()) } else { words::to_full_charge() };
         let phase = if form.vapour { "vapour" } else { "liquid" };
-        format::commas([form.purpose.name(), phase, &fill, &form.weighing.summary()])
+        format::commas([words::charge_purpose(form.purpose), phase, &fill, &form.weighing.summary()])
     }
 
     fn earlier_charges(&self, appliance: ApplianceId, today: chrono::NaiveDate) -> Result<Vec<Choice>, AppError> {
@@ -375,6 +384,11 @@ impl Desk {
     }
 }
 
+/// Readings and hoses are typed beside each other; other fields say for themselves what is wrong with them.
+pub(super) fn of_readings(field: &str) -> bool {
+    matches!(field, "before" | "after" | "net" | "hoses")
+}
+
 fn asks_gas_source(cylinder: &CylinderStanding) -> bool {
     let used = matches!(cylinder.balance.status, Some(GasStatus::Recycled | GasStatus::Reclaimed));
     used && cylinder.facts.gas_source.trim().is_empty()
@@ -393,15 +407,15 @@ pub fn weighted(gas_name: &str, mass: Mass, weights: Weighting) -> Vec<Fact> {
     facts
 }
 
-/// What stands in the way, the gravest first. A weighing gap has its own question.
+/// What stands in the way, the gravest first. A weighing gap has its own question, what is not said yet its own field.
 pub(super) fn refusal(refusals: &[Refusal], firm_title: String) -> shown::Refusal {
-    let others: Vec<&Refusal> = refusals.iter().filter(|refusal| refusal.kind != Kind::WeighingGap).collect();
+    let others: Vec<&Refusal> = refusals.iter().filter(|refusal| !matches!(refusal.kind, Kind::WeighingGap | Kind::NotSaid)).collect();
     let Some(gravest) = others.first() else { return shown::Refusal::default() };
     let sentence = |refusal: &&Refusal| {
         if refusal.source.is_empty() { refusal.sentence.clone() } else { format!("{} ({})", refusal.sentence, refusal.source) }
     };
     shown::Refusal {
-        title: if gravest.judgement { words::think_again() } else { firm_title },
+        title: if gravest.judgement { words::left_to_judgement() } else { firm_title },
         text: others.iter().map(sentence).collect::<Vec<_>>().join("\n"),
         with_reason: others.iter().all(|refusal| refusal.judgement),
     }
@@ -410,7 +424,7 @@ pub(super) fn refusal(refusals: &[Refusal], firm_title: String) -> shown::Refusa
 pub(super) fn why_not(refusals: &[Refusal]) -> String {
     match refusals.first() {
         Some(refusal) if !refusal.judgement => refusal.sentence.clone(),
-        Some(refusal) if refusal.kind == Kind::WeighingGap => words::sentence("say why the cylinder weighs otherwise"),
+        Some(refusal) if refusal.kind == Kind::WeighingGap => words::say_why_it_differs(),
         Some(_) => words::reason_missing(),
         None => String::new(),
     }

@@ -88,14 +88,7 @@ impl Desk {
 
     fn take_in_hand_and_go_on(&mut self, appliance: ApplianceId) -> Result<(), AppError> {
         self.take_in_hand(appliance)?;
-        let work = self.work_mut()?;
-        let next = std::mem::take(&mut work.next);
-        // *Next appliance, same cylinder*: the reading that is carried over goes to the appliance that was chosen.
-        if next == Panel::Charge
-            && let Some(form) = &mut work.charge
-        {
-            form.appliance = appliance;
-        }
+        let next = std::mem::take(&mut self.work_mut()?.next);
         self.open_panel(Panel::None)?;
         if next == Panel::None { Ok(()) } else { self.ask(next) }
     }

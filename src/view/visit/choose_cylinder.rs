@@ -15,7 +15,8 @@ pub struct State {
     pub adding: bool,
     pub identification: String,
     pub kind: CylinderKind,
-    pub status: GasStatus,
+    /// What the gas in it is; `None`: it is empty.
+    pub status: Option<GasStatus>,
     pub tare: String,
     pub water_capacity: String,
 }
@@ -27,7 +28,7 @@ impl Default for State {
             adding: false,
             identification: String::new(),
             kind: CylinderKind::Supply,
-            status: GasStatus::Virgin,
+            status: Some(GasStatus::Virgin),
             tare: String::new(),
             water_capacity: String::new(),
         }
@@ -74,7 +75,7 @@ fn unfit(panel: Panel, standing: &ApplianceStanding, cylinder: &CylinderStanding
     let holds = cylinder.balance.gas.as_deref();
     let holds_some = cylinder.balance.content.mass().is_none_or(crate::quantity::Mass::is_positive);
     if let Some(why) = &cylinder.facts.scrapped {
-        return format!("out of use: {why}");
+        return words::out_of_use(why);
     }
     if panel == Panel::Recover {
         match of_condition(cylinder).first().map(|refusal| refusal.kind) {
@@ -83,18 +84,16 @@ fn unfit(panel: Panel, standing: &ApplianceStanding, cylinder: &CylinderStanding
             None => {}
         }
         return match (cylinder.facts.kind, holds) {
-            (CylinderKind::NonRefillable, _) => "non-refillable".to_owned(),
+            (kind @ CylinderKind::NonRefillable, _) => kind.name().to_owned(),
             (_, Some(other)) if holds_some && other != gas => words::another_gas(),
             _ => String::new(),
         };
     }
     match (holds, cylinder.balance.status) {
         (None, _) => words::no_gas_known(),
-        (_, Some(GasStatus::Mixed)) => "mixed gas".to_owned(),
+        (_, Some(GasStatus::Mixed)) => words::mixed_gas(),
         (Some(other), _) if other != gas => words::another_gas(),
-        (_, Some(GasStatus::Recovered)) if standing.site_facts.rulebooks.iter().any(|id| id.starts_with("eu-")) => {
-            "recovered gas, not recycled or reclaimed".to_owned()
-        }
+        (_, Some(GasStatus::Recovered)) if standing.site_facts.rulebooks.iter().any(|id| id.starts_with("eu-")) => words::recovered_gas(),
         _ if cylinder.balance.content.mass().is_some_and(|mass| !mass.is_positive()) => words::empty(),
         _ => String::new(),
     }
@@ -106,7 +105,7 @@ impl Desk {
         work.next = panel;
         work.choose_cylinder = State {
             kind: if panel == Panel::Recover { CylinderKind::Recovery } else { CylinderKind::Supply },
-            status: if panel == Panel::Recover { GasStatus::Recovered } else { GasStatus::Virgin },
+            status: (panel == Panel::Charge).then_some(GasStatus::Virgin),
             ..State::default()
         };
         self.open_panel(Panel::ChooseCylinder)
@@ -126,12 +125,16 @@ impl Desk {
         }
         let today = self.today_there().unwrap_or_default();
         if let Some(due) = cylinder.facts.requalify_by.filter(|due| *due < today) {
-            return format!("to be requalified by {}", format::day(due, today));
+            return words::overdue(&format::day(due, today));
         }
         String::new()
     }
 
     pub(in crate::view) fn update_choose_cylinder(&mut self, msg: Msg) -> Result<(), AppError> {
+        // A tap that was under way when the list went away chooses for nobody.
+        if self.panel != Panel::ChooseCylinder {
+            return Ok(());
+        }
         let panel = self.work()?.next;
         match msg {
             Msg::Choose(key) => {
@@ -149,7 +152,7 @@ impl Desk {
             Msg::BeginAdding => state.adding = true,
             Msg::StopAdding => state.adding = false,
             Msg::Kind(key) => state.kind = CylinderKind::from_name(&key).unwrap_or(state.kind),
-            Msg::Status(key) => state.status = GasStatus::from_name(&key).unwrap_or(state.status),
+            Msg::Status(key) => state.status = GasStatus::from_name(&key).ok(),
             Msg::Edited(field, text) => match field.as_str() {
                 "identification" => state.identification = text,
                 "tare" => state.tare = text,
@@ -167,11 +170,10 @@ impl Desk {
         let tare_written = tare.ok_or_else(|| refused("tare", words::tare_missing()))?;
         let litres = parse::litres(&state.water_capacity).map_err(|sentence| refused("water capacity", sentence))?;
         let standing = self.app.appliance_standing(self.appliance_in_hand()?, self.today_there()?)?;
-        // A cylinder for recovery may be empty; gas is named in it by the recovery.
-        let empty = panel == Panel::Recover;
+        // Whatever is in it is the gas that is worked with: another one would make a mix. Gas in an empty one is named by the recovery.
         let facts = CylinderFacts {
-            refrigerant: (!empty).then(|| standing.facts.refrigerant.clone()),
-            gas_status: (!empty).then_some(state.status),
+            refrigerant: state.status.map(|_| standing.facts.refrigerant.clone()),
+            gas_status: state.status,
             water_capacity_l: litres,
             ..CylinderFacts::new(
                 state.kind,
@@ -220,12 +222,15 @@ impl Desk {
             if why.is_empty() { fitting.push(line) } else { others.push(line) }
         }
         let ready = if state.identification.trim().is_empty() {
-            Ready::not(words::say_the_identification())
+            Ready::not(words::say_the_cylinder())
         } else if state.tare.trim().is_empty() {
             Ready::not(words::tare_missing())
         } else {
-            Ready::yes()
+            let checked = parse::mass(&state.tare, unit).and_then(|_| parse::litres(&state.water_capacity));
+            checked.map_or_else(Ready::not, |_| Ready::yes())
         };
+        let empty = (panel == Panel::Recover).then(|| Choice::new("", words::empty(), ""));
+        let held = GasStatus::ALL.iter().filter(|status| **status != GasStatus::Mixed).map(|status| Choice::word(status.name()));
         Ok(Shown {
             purpose: if panel == Panel::Recover {
                 words::for_recovery(&standing.appliance.name, gas_name)
@@ -241,8 +246,8 @@ impl Desk {
             identification: state.identification.clone(),
             kinds: CylinderKind::ALL.iter().map(|kind| Choice::word(kind.name())).collect(),
             kind: state.kind.name().to_owned(),
-            states: GasStatus::ALL.iter().filter(|status| **status != GasStatus::Mixed).map(|status| Choice::word(status.name())).collect(),
-            state: state.status.name().to_owned(),
+            states: empty.into_iter().chain(held).collect(),
+            state: state.status.map(GasStatus::name).unwrap_or_default().to_owned(),
             tare: state.tare.clone(),
             tare_error: parse::mass(&state.tare, unit).err().unwrap_or_default(),
             water_capacity: state.water_capacity.clone(),
@@ -255,6 +260,6 @@ impl Desk {
         let Some(gas) = gas::find(&standing.facts.refrigerant) else { return Ok(None) };
         let limit = self.app.limit_rules(&standing.site_facts.rulebooks)?.limit_of(gas, cylinder, true);
         let room = limit.binding.zip(cylinder.balance.content.mass()).map(|(binding, held)| binding.net - held);
-        Ok(room.map(|room| format!("room {}", format::mass(room, unit))))
+        Ok(room.map(|room| words::room(&format::mass(room, unit))))
     }
 }

@@ -6,7 +6,7 @@ use super::{Panel, judge};
 use crate::app::AppError;
 use crate::ledger::{Act, Category, Counterpart, Entry, Ink, Signature, TestKind, VisitState};
 use crate::quantity::MassUnit;
-use crate::record::{CautiousAct, Circumstances, caution, fitting};
+use crate::record::{CautionText, CautiousAct, Circumstances, caution, fitting};
 use crate::store::VisitFilter;
 use crate::view::desk::Desk;
 use crate::view::shown::{Caution, Fact, Message, Ready};
@@ -67,8 +67,10 @@ pub enum Msg {
     Signing(bool),
     Counterpart(String),
     Ink(Signer, InkMsg),
-    /// `representative` or `reason`.
+    /// `representative` or `refusal reason`.
     Edited(String, String),
+    /// A caution for the way home.
+    Acknowledge(String),
     Close,
 }
 
@@ -92,6 +94,8 @@ pub struct Shown {
     pub representative: String,
     pub representative_strokes: String,
     pub refusal_reason: String,
+    /// What is read again has been read: on to the signatures.
+    pub onward: Ready,
     pub ready: Ready,
 }
 
@@ -127,7 +131,7 @@ pub fn path(ink: &Ink) -> String {
 }
 
 impl Form {
-    fn counterpart(&self) -> Counterpart {
+    pub(super) fn counterpart(&self) -> Counterpart {
         let name = self.representative.trim().to_owned();
         match self.counterpart.as_str() {
             NOBODY => Counterpart::NobodyPresent,
@@ -137,7 +141,7 @@ impl Form {
         }
     }
 
-    fn ready(&self) -> Ready {
+    pub(super) fn ready(&self) -> Ready {
         if self.technician_ink.is_empty() {
             return Ready::not(words::not_signed("technician"));
         }
@@ -171,8 +175,10 @@ impl Desk {
     }
 
     pub(in crate::view) fn update_close(&mut self, msg: Msg) -> Result<(), AppError> {
-        if msg == Msg::Close {
-            return self.close_visit();
+        match msg {
+            Msg::Close => return self.close_visit(),
+            Msg::Acknowledge(number) => return self.update_cautions(super::cautions::Msg::Acknowledge(number)),
+            _ => {}
         }
         let form = &mut self.work_mut()?.close;
         // A stroke is kept when the pen is lifted.
@@ -182,9 +188,9 @@ impl Desk {
             Msg::Counterpart(key) => form.counterpart = key,
             Msg::Ink(Signer::Technician, msg) => draw(&mut form.technician_ink, msg),
             Msg::Ink(Signer::Representative, msg) => draw(&mut form.representative_ink, msg),
-            Msg::Edited(field, text) if field == "reason" => form.refusal_reason = text,
+            Msg::Edited(field, text) if field == "refusal reason" => form.refusal_reason = text,
             Msg::Edited(_, text) => form.representative = text,
-            Msg::Close => {}
+            Msg::Close | Msg::Acknowledge(_) => {}
         }
         if keeps { self.keep(Panel::Close, &self.work()?.close) } else { Ok(()) }
     }
@@ -206,10 +212,10 @@ impl Desk {
         Ok(())
     }
 
-    /// Whoever began the visit signs it.
+    /// Whoever is named as at work signs.
     fn technician(&self) -> String {
-        let first = self.work.as_ref().and_then(|work| work.visit.people.first());
-        first.and_then(|id| self.registers.person(*id)).map(|person| person.name.clone()).unwrap_or_default()
+        let person = self.work.as_ref().and_then(super::Work::person_in_hand);
+        person.and_then(|id| self.registers.person(id)).map(|person| person.name.clone()).unwrap_or_default()
     }
 
     /// The closing page.
@@ -230,7 +236,7 @@ impl Desk {
             let fact = |entry: &&Entry| {
                 let line = self.entry_line(entry, &work.entries, today);
                 let value = if line.state.is_empty() { line.facts.clone() } else { line.state.clone() };
-                let value = if line.struck { "struck".to_owned() } else { value };
+                let value = if line.struck { words::struck("") } else { value };
                 Fact::new(format::commas([entry_name(entry).as_str(), line.time.as_str()]), value)
             };
             let mut facts: Vec<Fact> = entries.iter().map(fact).collect();
@@ -263,12 +269,14 @@ impl Desk {
             missing.push(words::missing_company());
         }
         let form = &work.close;
+        let cautions = self.cautions_read_again()?;
         Ok(Shown {
             site: self.site_name(work.visit.site),
             ready: if parts.is_empty() { Ready::not(words::nothing_to_close()) } else { form.ready() },
             parts,
             missing,
-            cautions: self.cautions_read_again()?,
+            onward: if cautions.iter().all(|caution| caution.acknowledged) { Ready::yes() } else { Ready::not(words::acknowledge_each()) },
+            cautions,
             signing: form.signing,
             technician: self.technician(),
             technician_strokes: path(&form.technician_ink),
@@ -279,14 +287,15 @@ impl Desk {
         })
     }
 
-    /// Those for the way home first, then all that were acknowledged.
+    /// Those for the way home first, which are acknowledged here, then all that were acknowledged before.
     fn cautions_read_again(&self) -> Result<Vec<Caution>, AppError> {
         let work = self.work()?;
         let moved = work.entries.iter().any(|entry| entry.line.act.transfer().is_some());
         let home = Circumstances { act: CautiousAct::Close, gas: None, place: "", heavy_cylinder: false };
         let home = if moved { fitting(&home) } else { Vec::new() };
         let seen = work.cautions.iter().filter_map(|seen| caution(&seen.caution));
-        Ok(home.into_iter().chain(seen).map(|caution| caution_shown(caution, true)).collect())
+        let seen: Vec<&CautionText> = seen.filter(|seen| !home.contains(seen)).collect();
+        Ok(home.into_iter().chain(seen).map(|caution| caution_shown(caution, self.is_acknowledged(caution.number))).collect())
     }
 }
 

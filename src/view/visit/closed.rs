@@ -3,13 +3,28 @@
 use crate::app::{AppError, Printed, file_away};
 use crate::ledger::{Moment, VisitId};
 use crate::record::Fingerprint;
+use crate::store::AFTER_CLOSING;
 use crate::view::desk::{Desk, Page};
 use crate::view::shown::{Choice, Fact, Message, Ready};
+use crate::view::words::captions;
 use crate::view::{format, words};
+use serde::{Deserialize, Serialize};
 use std::path::{Path, PathBuf};
 
 const READ_ON_SCREEN: &str = "read on screen";
 const WAYS: [&str; 4] = ["printed", "as a file", "by mail", READ_ON_SCREEN];
+
+/// The key of what is being typed about a hand-over.
+fn draft_key() -> String {
+    format!("{AFTER_CLOSING}hand-over")
+}
+
+/// What is being typed about a hand-over.
+#[derive(Debug, Default, Serialize, Deserialize)]
+struct Typed {
+    to_whom: String,
+    way: String,
+}
 
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub struct State {
@@ -59,7 +74,10 @@ impl Desk {
                 None
             }
         };
-        self.closed = Some(State { visit, file, to_whom: String::new(), way: WAYS[1].to_owned(), handing_over: false });
+        let draft = self.app.draft(visit, &draft_key())?;
+        let typed = draft.and_then(|draft| serde_json::from_str(&draft.body).ok());
+        let Typed { to_whom, way } = typed.unwrap_or_else(|| Typed { way: WAYS[1].to_owned(), ..Typed::default() });
+        self.closed = Some(State { visit, file, handing_over: !to_whom.is_empty(), to_whom, way });
         self.changed();
         self.go(Page::Closed);
         Ok(())
@@ -85,16 +103,21 @@ impl Desk {
     pub(in crate::view) fn update_closed(&mut self, msg: Msg) -> Result<(), AppError> {
         let Some(state) = &mut self.closed else { return Ok(()) };
         match msg {
-            Msg::Way(way) => state.way = way,
+            Msg::Way(way) => {
+                state.way = way;
+                return self.keep_hand_over();
+            }
             Msg::ToWhom(text) => {
                 state.to_whom = text;
                 state.handing_over = true;
+                return self.keep_hand_over();
             }
             Msg::OpenRecord => self.open_paper(false),
             Msg::OpenFolder => self.open_paper(true),
             Msg::HandOver => {
                 let (visit, way, to_whom) = (state.visit, state.way.clone(), state.to_whom.trim().to_owned());
                 self.hand_over(visit, &to_whom, &way)?;
+                self.app.clear_draft(visit, &draft_key())?;
                 if let Some(state) = &mut self.closed {
                     state.to_whom.clear();
                     state.handing_over = false;
@@ -129,6 +152,14 @@ impl Desk {
             Err(cause) => self.say(Message::grave(words::record_not_printed(&words::sentence(&cause)))),
         }
         Ok(())
+    }
+
+    /// Keeps what is being typed about the hand-over, at once.
+    fn keep_hand_over(&self) -> Result<(), AppError> {
+        let Some(state) = &self.closed else { return Ok(()) };
+        let typed = Typed { to_whom: state.to_whom.clone(), way: state.way.clone() };
+        let Ok(body) = serde_json::to_string(&typed) else { return Ok(()) };
+        self.app.save_draft(state.visit, None, &draft_key(), &body)
     }
 
     /// Hands the record, or its folder, to the platform; where that fails the path is told.
@@ -168,18 +199,18 @@ impl Desk {
         let counterpart = closing.map(|closing| words::counterpart(&closing.counterpart));
         let mut facts = Vec::new();
         if let Some(full) = visit.fingerprint.clone() {
-            facts.push(Fact::new("fingerprint", Fingerprint { full }.short()));
+            facts.push(Fact::new(captions::FINGERPRINT, Fingerprint { full }.short()));
         }
         if let Some(closing) = closing {
-            facts.push(Fact::new("technician", format!("{}, signed", closing.technician.name)));
+            facts.push(Fact::new(captions::TECHNICIAN, words::signed(&closing.technician.name)));
         }
-        facts.push(Fact::new("representative", counterpart.unwrap_or_default()));
+        facts.push(Fact::new(captions::REPRESENTATIVE, counterpart.unwrap_or_default()));
         let handed_over = store
             .hand_overs(state.visit)?
             .into_iter()
             .map(|hand_over| {
                 let at = Moment { date: hand_over.date, minute: Some(hand_over.minute) };
-                Fact::new(format!("handed over {}", format::moment(at, today)), hand_over.told)
+                Fact::new(words::handed_over_at(&format::moment(at, today)), hand_over.told)
             })
             .collect();
         let name = |path: Option<&std::ffi::OsStr>| path.map(|name| name.to_string_lossy().into_owned()).unwrap_or_default();

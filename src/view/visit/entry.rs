@@ -1,46 +1,63 @@
-//! One entry read in full; struck while its visit is open, corrected once it is closed.
+//! One entry read in full; struck while its visit is open, corrected once it is
+//! closed. A weighing gap that was left open is explained here.
 
-use super::close::{InkMsg, draw, path};
+use super::close::{self, InkMsg, Signer, draw, path};
+use super::correction::{self, Correcting};
 use super::page::{entry_name, unit_of};
 use super::{Panel, charge};
-use crate::app::{AppError, ChargeInput, Common, Correction, NewEntry, RecoverInput, RepairInput, SimpleAct, TestInput};
-use crate::ledger::{Act, Counterpart, Entry, EntryId, Ink, PersonId, Reading, Signature, Transfer, VisitState, WeighingMode};
+use crate::app::{AppError, Common, Correction, GapAnswerInput, NewEntry};
+use crate::ledger::{Act, Entry, EntryId, GAP_REASONS, GAP_UNKNOWN, PersonId, Signature, VisitState, WeighingMode, open_gaps};
 use crate::measure::Uncertainty;
 use crate::quantity::Weighing;
 use crate::record::Fingerprint;
 use crate::rules::weights;
+use crate::store::AFTER_CLOSING;
 use crate::view::desk::{Desk, Page};
-use crate::view::shown::{Fact, Message, Ready};
-use crate::view::{format, parse, words};
+use crate::view::shown::{Choice, Fact, Message, Ready};
+use crate::view::words::captions;
+use crate::view::{format, words};
 use chrono::NaiveDate;
+use serde::{Deserialize, Serialize};
 
-#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
 pub enum Step {
     #[default]
     Read,
     Strike,
     Correct,
+    /// Why a cylinder had weighed otherwise.
+    Answer,
 }
 
-#[derive(Debug, Clone, PartialEq, Eq)]
+/// What is typed about an entry; kept as a draft beside the entry's visit.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
 pub struct State {
     pub entry: EntryId,
     pub step: Step,
-    pub instead: String,
+    pub correcting: Correcting,
     pub reason: String,
-    pub ink: Ink,
+    pub answer: String,
+    pub signatures: close::Form,
     /// Where *back* leads when no visit is open.
+    #[serde(skip)]
     pub from: Page,
 }
 
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub enum Msg {
     Step(Step),
-    /// `instead` or `reason`.
+    /// `instead`, `place`, `reason`, `representative` or `refusal reason`.
     Edited(String, String),
-    Ink(InkMsg),
+    /// It never happened, or something else is right.
+    Never(bool),
+    Result(String),
+    Answer(String),
+    Signing(bool),
+    Counterpart(String),
+    Ink(Signer, InkMsg),
     Strike,
     Correct,
+    SaveAnswer,
 }
 
 #[derive(Debug, Clone, Default, PartialEq, Eq)]
@@ -52,69 +69,146 @@ pub struct Shown {
     pub struck_words: String,
     pub can_strike: bool,
     pub can_correct: bool,
+    pub can_answer: bool,
     pub step: Step,
-    pub instead: String,
+    pub correcting: correction::Shown,
     pub reason: String,
+    pub answers: Vec<Choice>,
+    pub answer: String,
+    pub signing: bool,
     pub technician: String,
     pub strokes: String,
+    pub counterpart: String,
+    pub representative: String,
+    pub representative_strokes: String,
+    pub refusal_reason: String,
+    /// What is right instead is said: on to the signatures.
+    pub said: Ready,
     pub ready: Ready,
 }
 
+/// The key of an entry's draft.
+fn draft_key(entry: EntryId) -> String {
+    format!("{AFTER_CLOSING}entry {entry}")
+}
+
 impl Desk {
-    /// Opens an entry, of whatever visit.
+    /// Opens an entry, of whatever visit, with what was being typed about it.
     ///
     /// # Errors
     /// The store's own.
     pub fn open_entry(&mut self, entry: EntryId) -> Result<(), AppError> {
         let from = self.page();
-        self.entry = Some(State { entry, step: Step::Read, instead: String::new(), reason: String::new(), ink: Ink::default(), from });
+        let fresh = State {
+            entry,
+            step: Step::Read,
+            correcting: Correcting::default(),
+            reason: String::new(),
+            answer: String::new(),
+            signatures: close::Form::default(),
+            from,
+        };
+        let visit = self.app.store().entry(entry)?.map(|entry| entry.visit);
+        let draft = visit.map(|visit| self.app.draft(visit, &draft_key(entry))).transpose()?.flatten();
+        let kept = draft.and_then(|draft| serde_json::from_str::<State>(&draft.body).ok());
+        self.entry = Some(kept.map_or(fresh, |kept| State { from, ..kept }));
         self.go(Page::Visit);
         self.open_panel(Panel::Entry)
+    }
+
+    /// Opens an entry at the question why its cylinder had weighed otherwise.
+    pub(super) fn open_gap(&mut self, entry: EntryId) -> Result<(), AppError> {
+        self.open_entry(entry)?;
+        self.update_entry(Msg::Step(Step::Answer))
     }
 
     fn entry_state(&self) -> Result<&State, AppError> {
         self.entry.as_ref().ok_or(AppError::Unknown { what: "entry" })
     }
 
+    /// The entry that is open, from the store.
+    fn entry_in_hand(&self) -> Result<Entry, AppError> {
+        self.app.store().entry(self.entry_state()?.entry)?.ok_or(AppError::Unknown { what: "entry" })
+    }
+
     pub(in crate::view) fn update_entry(&mut self, msg: Msg) -> Result<(), AppError> {
         match msg {
             Msg::Strike => return self.strike(),
             Msg::Correct => return self.correct(),
+            Msg::SaveAnswer => return self.answer_gap(),
             _ => {}
         }
         let Some(state) = &mut self.entry else { return Ok(()) };
+        let before = state.clone();
+        // A stroke is kept when the pen is lifted.
+        let (drawing, lifted) = (matches!(msg, Msg::Ink(_, InkMsg::Point { .. })), matches!(msg, Msg::Ink(_, InkMsg::Lifted)));
         match msg {
             Msg::Step(step) => state.step = step,
-            Msg::Edited(field, text) if field == "instead" => state.instead = text,
-            Msg::Edited(_, text) => state.reason = text,
-            Msg::Ink(msg) => draw(&mut state.ink, msg),
-            Msg::Strike | Msg::Correct => {}
+            Msg::Never(never) => state.correcting.never = never,
+            Msg::Result(key) => state.correcting.result = key,
+            Msg::Answer(key) => state.answer = key,
+            Msg::Signing(signing) => state.signatures.signing = signing,
+            Msg::Counterpart(key) => state.signatures.counterpart = key,
+            Msg::Edited(field, text) => match field.as_str() {
+                "instead" => state.correcting.instead = text,
+                "place" => state.correcting.place = text,
+                "representative" => state.signatures.representative = text,
+                "refusal reason" => state.signatures.refusal_reason = text,
+                _ => state.reason = text,
+            },
+            Msg::Ink(Signer::Technician, msg) => draw(&mut state.signatures.technician_ink, msg),
+            Msg::Ink(Signer::Representative, msg) => draw(&mut state.signatures.representative_ink, msg),
+            Msg::Strike | Msg::Correct | Msg::SaveAnswer => {}
         }
-        Ok(())
+        if lifted || (!drawing && *state != before) { self.keep_entry() } else { Ok(()) }
+    }
+
+    /// Keeps what is typed about the entry, at once.
+    fn keep_entry(&self) -> Result<(), AppError> {
+        let state = self.entry_state()?;
+        let Ok(body) = serde_json::to_string(state) else { return Ok(()) };
+        self.app.save_draft(self.entry_in_hand()?.visit, None, &draft_key(state.entry), &body)
     }
 
     fn strike(&mut self) -> Result<(), AppError> {
-        let (entry, reason) = (self.entry_state()?.entry, self.entry_state()?.reason.clone());
-        self.app.strike(entry, &reason)?;
+        let (state, entry) = (self.entry_state()?.clone(), self.entry_in_hand()?);
+        let person = self.work.as_ref().and_then(super::Work::person_in_hand);
+        self.app.strike(state.entry, &state.reason, person)?;
+        self.app.clear_draft(entry.visit, &draft_key(state.entry))?;
         self.entry = None;
-        self.entered()
+        self.reload_visit()?;
+        self.open_panel(Panel::None)
+    }
+
+    /// Explains a gap by an entry of the visit that is open.
+    fn answer_gap(&mut self) -> Result<(), AppError> {
+        let (state, entry) = (self.entry_state()?.clone(), self.entry_in_hand()?);
+        let work = self.work()?;
+        let common = Common { person: work.person_in_hand(), ..Common::default() };
+        let visit = work.visit.id;
+        let input = GapAnswerInput { common, entry: state.entry, why: state.answer.clone() };
+        self.app.enter(visit, entry.line.appliance, &NewEntry::GapAnswer(input))?;
+        self.app.clear_draft(entry.visit, &draft_key(state.entry))?;
+        self.entry = None;
+        self.reload_visit()?;
+        self.open_panel(Panel::None)
     }
 
     fn correct(&mut self) -> Result<(), AppError> {
-        let state = self.entry_state()?.clone();
-        let person = self.corrector(state.entry)?;
+        let (state, wrong) = (self.entry_state()?.clone(), self.entry_in_hand()?);
+        let person = self.corrector(&wrong)?;
         let name = self.registers.person(person).map(|person| person.name.clone()).unwrap_or_default();
-        let wrong = self.app.store().entry(state.entry)?.ok_or(AppError::Unknown { what: "entry" })?;
         let closed = self.app.correct(
             state.entry,
             &Correction {
                 person,
                 why: state.reason.clone(),
-                instead: self.instead(&wrong, state.instead.trim())?,
-                technician: Signature { name, ink: state.ink.clone() },
-                counterpart: Counterpart::NobodyPresent,
+                instead: state.correcting.entry(&wrong)?,
+                technician: Signature { name, ink: state.signatures.technician_ink.clone() },
+                counterpart: state.signatures.counterpart(),
             },
         )?;
+        self.app.clear_draft(wrong.visit, &draft_key(state.entry))?;
         let short = Fingerprint { full: closed.fingerprint }.short();
         self.entry = None;
         self.panel = Panel::None;
@@ -125,70 +219,12 @@ impl Desk {
     }
 
     /// Whoever works on this device; else whoever did what is corrected.
-    fn corrector(&self, entry: EntryId) -> Result<PersonId, AppError> {
+    fn corrector(&self, entry: &Entry) -> Result<PersonId, AppError> {
         if let Some(person) = self.begin.person.filter(|person| self.registers.person(*person).is_some()) {
             return Ok(person);
         }
-        let entry = self.app.store().entry(entry)?;
-        let person = entry.and_then(|entry| entry.detail.person).or_else(|| self.registers.people.first().map(|person| person.id));
+        let person = entry.detail.person.or_else(|| self.registers.people.first().map(|person| person.id));
         person.ok_or(AppError::Unknown { what: "person" })
-    }
-
-    /// What holds instead: for a transfer another net, else other words. Nothing typed: it never happened.
-    fn instead(&self, wrong: &Entry, text: &str) -> Result<Option<NewEntry>, AppError> {
-        if text.is_empty() {
-            return Ok(None);
-        }
-        let detail = &wrong.detail;
-        let common = |note: String| Common { person: None, job: wrong.line.job.as_deref().map(str::to_owned), note, ..Common::default() };
-        let net = || -> Result<Reading, AppError> {
-            let read = parse::mass(text, unit_of(wrong)).map_err(|sentence| AppError::Input { field: "instead", sentence })?;
-            Ok(Reading { mode: WeighingMode::NetOnly, before: None, after: None, net: read, scale: None })
-        };
-        Ok(Some(match &wrong.line.act {
-            Act::Charge { purpose, transfer } => NewEntry::Charge(ChargeInput {
-                common: common(detail.note.clone()),
-                cylinder: transfer.cylinder,
-                purpose: *purpose,
-                reading: net()?,
-                full_hoses: None,
-                phase: detail.phase.clone(),
-                short_by: detail.short_by.clone(),
-                same_leak_as: detail.same_leak_as,
-                weighing_gap: detail.weighing_gap.clone(),
-            }),
-            Act::Recover { purpose, transfer: Transfer { cylinder: Some(cylinder), .. } } => NewEntry::Recover(RecoverInput {
-                common: common(detail.note.clone()),
-                cylinder: *cylinder,
-                purpose: *purpose,
-                reading: net()?,
-                full_hoses: None,
-                level_reached: detail.level_reached.clone(),
-                weighing_gap: detail.weighing_gap.clone(),
-            }),
-            Act::Test { kind, result, scope, partial, .. } => NewEntry::Test(TestInput {
-                common: common(text.to_owned()),
-                kind: *kind,
-                result: *result,
-                scope: *scope,
-                method: detail.method.clone(),
-                instrument: detail.instrument,
-                parts: detail.parts.clone(),
-                place: detail.place.clone(),
-                leaks: detail.leaks.clone(),
-                repair: detail.repair,
-                partial: *partial,
-                running_hours: detail.running_hours.clone(),
-            }),
-            Act::Repair { temporary } => NewEntry::Repair(RepairInput {
-                common: common(String::new()),
-                place: detail.place.clone(),
-                parts: detail.parts.clone(),
-                done: text.to_owned(),
-                temporary: *temporary,
-            }),
-            _ => NewEntry::Simple(SimpleAct::Note, common(text.to_owned())),
-        }))
     }
 
     /// The page of one entry.
@@ -196,9 +232,8 @@ impl Desk {
     /// # Errors
     /// No entry is open; the store's own.
     pub fn entry_shown(&self) -> Result<Shown, AppError> {
-        let state = self.entry_state()?;
+        let (state, entry) = (self.entry_state()?, self.entry_in_hand()?);
         let store = self.app.store();
-        let entry = store.entry(state.entry)?.ok_or(AppError::Unknown { what: "entry" })?;
         let visit = store.visit(entry.visit)?.ok_or(AppError::Unknown { what: "visit" })?;
         let today = self.app.today();
         let appliance = self.registers.appliance(entry.line.appliance);
@@ -210,13 +245,19 @@ impl Desk {
             Some(by) => words::corrected(&by.detail.reason),
             None => String::new(),
         };
-        let ready = if state.reason.trim().is_empty() {
-            Ready::not(if state.step == Step::Correct { words::say_why_or_instead() } else { words::say_why() })
-        } else if state.step == Step::Correct && state.ink.is_empty() {
-            Ready::not(words::sign_the_correction())
-        } else {
-            Ready::yes()
+        let unanswered = open_gaps(&store.entries_of_appliance(entry.line.appliance)?).iter().any(|gap| gap.line.entry == state.entry);
+        let at_site = self.work.as_ref().is_some_and(|work| work.visit.site == visit.site);
+        let said = if state.step == Step::Correct { state.correcting.ready(&entry) } else { Ready::yes() };
+        let said = if said.ready && state.reason.trim().is_empty() { Ready::not(words::say_why()) } else { said };
+        let ready = match state.step {
+            Step::Read => Ready::yes(),
+            Step::Answer if state.answer.is_empty() => Ready::not(words::say_why_it_differs()),
+            Step::Answer => Ready::yes(),
+            Step::Correct if said.ready => state.signatures.ready(),
+            Step::Strike | Step::Correct => said.clone(),
         };
+        let form = &state.signatures;
+        let technician = self.corrector(&entry).ok().and_then(|person| self.registers.person(person));
         Ok(Shown {
             title: entry_name(&entry),
             facts: format::commas([
@@ -229,16 +270,20 @@ impl Desk {
             struck_words,
             can_strike: open && entry.struck_by.is_none(),
             can_correct: !open && entry.struck_by.is_none(),
+            can_answer: unanswered && at_site,
             step: state.step,
-            instead: state.instead.clone(),
+            correcting: state.correcting.shown(&entry),
             reason: state.reason.clone(),
-            technician: self
-                .corrector(state.entry)
-                .ok()
-                .and_then(|person| self.registers.person(person))
-                .map(|person| person.name.clone())
-                .unwrap_or_default(),
-            strokes: path(&state.ink),
+            answers: GAP_REASONS.iter().filter(|reason| **reason != GAP_UNKNOWN).map(|reason| Choice::word(reason)).collect(),
+            answer: state.answer.clone(),
+            signing: form.signing,
+            technician: technician.map(|person| person.name.clone()).unwrap_or_default(),
+            strokes: path(&form.technician_ink),
+            counterpart: form.counterpart.clone(),
+            representative: form.representative.clone(),
+            representative_strokes: path(&form.representative_ink),
+            refusal_reason: form.refusal_reason.clone(),
+            said,
             ready,
         })
     }
@@ -255,49 +300,49 @@ impl Desk {
             let unit = unit_of(entry);
             let error = transfer.division.map(|division| Uncertainty::of_net(division, transfer.hoses).expanded_kg_text(3));
             let error = error.map(|error| format!(" {}", words::plus_minus(&format!("{error} kg")))).unwrap_or_default();
-            fact("net", &format!("{}{error}", format::mass(transfer.mass, unit)));
+            fact(captions::NET, &format!("{}{error}", format::mass(transfer.mass, unit)));
             let written = |weighing: &Option<Weighing>| weighing.as_ref().map(Weighing::text).unwrap_or_default();
             if let Some(reading) = &detail.reading {
                 let zeroed = reading.mode == WeighingMode::Zeroed;
-                fact(if zeroed { "zeroed, at start" } else { "gross before" }, &written(&reading.before));
-                fact(if zeroed { "at end" } else { "gross after" }, &written(&reading.after));
+                fact(&if zeroed { words::reading_at_start() } else { words::gross_before() }, &written(&reading.before));
+                fact(&if zeroed { words::reading_at_end() } else { words::gross_after() }, &written(&reading.after));
                 let scale = reading.scale.and_then(|id| self.registers.instrument(id));
-                fact("scale", scale.map(|scale| scale.name.as_str()).unwrap_or_default());
+                fact(captions::SCALE, scale.map(|scale| scale.name.as_str()).unwrap_or_default());
             }
             let cylinder = transfer.cylinder.and_then(|id| self.registers.cylinder(id));
             let status = detail.gas_status.map(crate::ledger::GasStatus::name).unwrap_or_default();
-            fact("cylinder", &format::commas([cylinder.map(|cylinder| cylinder.name.as_str()).unwrap_or_default(), status]));
-            fact("gas from", &detail.gas_source);
+            fact(captions::CYLINDER, &format::commas([cylinder.map(|cylinder| cylinder.name.as_str()).unwrap_or_default(), status]));
+            fact(captions::GAS_FROM, &detail.gas_source);
         }
         match &entry.line.act {
             Act::Charge { purpose, .. } => {
-                fact("purpose", purpose.name());
-                fact("charged as", &detail.phase);
+                fact(captions::PURPOSE, words::charge_purpose(*purpose));
+                fact(captions::CHARGED_AS, &detail.phase);
                 let fill = detail.short_by.as_ref().map_or_else(words::to_full_charge, |short| words::short_by(&short.text()));
-                fact("afterwards", &fill);
+                fact(captions::AFTERWARDS, &fill);
             }
-            Act::Recover { purpose, .. } => fact("purpose", purpose.name()),
+            Act::Recover { purpose, .. } => fact(captions::PURPOSE, purpose.name()),
             Act::Test { result, scope, .. } => {
-                fact("result", result.map(crate::ledger::TestResult::name).unwrap_or_default());
-                fact("looked at", scope.map(crate::ledger::Scope::name).unwrap_or_default());
+                fact(captions::RESULT, result.map(crate::ledger::TestResult::name).unwrap_or_default());
+                fact(captions::LOOKED_AT, scope.map(crate::ledger::Scope::name).unwrap_or_default());
             }
-            Act::Retrofit { refrigerant, .. } => fact("gas from then on", refrigerant.as_deref().unwrap_or_default()),
+            Act::Retrofit { refrigerant, .. } => fact(captions::GAS_FROM_THEN_ON, refrigerant.as_deref().unwrap_or_default()),
             _ => {}
         }
-        fact("method", &detail.method);
+        fact(captions::METHOD, &detail.method);
         let instrument = detail.instrument.and_then(|id| self.registers.instrument(id));
-        fact("instrument", instrument.map(|instrument| instrument.name.as_str()).unwrap_or_default());
+        fact(captions::INSTRUMENT, instrument.map(|instrument| instrument.name.as_str()).unwrap_or_default());
         for leak in &detail.leaks {
-            fact("leak", &format::commas([leak.place.as_str(), words::leak_state(&leak.state).as_str()]));
+            fact(captions::LEAK, &format::commas([leak.place.as_str(), words::leak_state(&leak.state).as_str()]));
         }
-        fact("place", &detail.place);
-        fact("parts", &detail.parts);
-        fact("hours it ran", &detail.running_hours);
-        fact("level or readings", &detail.level_reached);
-        fact("why it weighed otherwise", &detail.weighing_gap);
-        fact("reason", &detail.reason);
-        fact("job", entry.line.job.as_deref().unwrap_or_default());
-        fact("read from", &detail.imported_from);
+        fact(captions::PLACE, &detail.place);
+        fact(captions::PARTS, &detail.parts);
+        fact(captions::HOURS_IT_RAN, &detail.running_hours);
+        fact(captions::LEVEL_OR_READINGS, &detail.level_reached);
+        fact(captions::WHY_IT_WEIGHED_OTHERWISE, &detail.weighing_gap);
+        fact(captions::REASON, &detail.reason);
+        fact(captions::JOB, entry.line.job.as_deref().unwrap_or_default());
+        fact(captions::READ_FROM, &detail.imported_from);
         if let Some(transfer) = entry.line.act.transfer() {
             let standing = self.app.appliance_standing(entry.line.appliance, entry.line.at.date.min(today))?;
             facts.extend(charge::weighted(&standing.facts.refrigerant, transfer.mass, weights(&standing.site_facts)));

@@ -2,7 +2,7 @@
 
 use super::{Panel, duty_line, id};
 use crate::app::AppError;
-use crate::ledger::{ApplianceId, PersonId, open_leaks};
+use crate::ledger::{ApplianceId, EntryId, PersonId, open_gaps, open_leaks};
 use crate::view::desk::Desk;
 use crate::view::shown::{Line, Message};
 use crate::view::{format, words};
@@ -11,8 +11,10 @@ use crate::view::{format, words};
 pub enum Msg {
     SetAtWork(String, bool),
     Job(String),
-    /// An open leak or duty: its appliance is taken in hand.
+    /// An open leak or duty: its appliance is taken in hand. A weighing gap: it is asked about again.
     Open(String),
+    /// What was open has been read: on to the appliance.
+    GoOn,
 }
 
 #[derive(Debug, Clone, Default, PartialEq, Eq)]
@@ -29,6 +31,8 @@ pub struct Shown {
     pub people: Vec<AtWork>,
     pub job: String,
     pub still_open: Vec<Line>,
+    /// Nothing is in hand yet: the next step is the appliance.
+    pub goes_on: bool,
 }
 
 impl Desk {
@@ -51,11 +55,15 @@ impl Desk {
                 self.keep_place()
             }
             Msg::Open(key) => {
-                let appliance = key.split('/').next().and_then(|key| id(key, ApplianceId));
-                let Some(appliance) = appliance else { return Ok(()) };
+                let Some((appliance, item)) = key.split_once('/') else { return Ok(()) };
+                let Some(appliance) = id(appliance, ApplianceId) else { return Ok(()) };
                 self.take_in_hand(appliance)?;
-                self.open_panel(Panel::None)
+                match item.strip_prefix("gap/").and_then(|key| id(key, EntryId)) {
+                    Some(entry) => self.open_gap(entry),
+                    None => self.open_panel(Panel::None),
+                }
             }
+            Msg::GoOn => self.ask(Panel::ChooseAppliance),
         }
     }
 
@@ -78,6 +86,7 @@ impl Desk {
             people: self.registers.people.iter().map(at_work).collect(),
             job: work.place.job.clone(),
             still_open: self.still_open()?,
+            goes_on: work.place.appliance.is_none(),
         })
     }
 
@@ -98,7 +107,7 @@ impl Desk {
                     ..Line::default()
                 });
             }
-            for entry in entries.iter().filter(|entry| entry.struck_by.is_none() && entry.detail.weighing_gap == "do not know") {
+            for entry in open_gaps(&entries) {
                 let cylinder = entry.line.act.cylinder().and_then(|id| self.registers.cylinder(id));
                 gaps.push(Line {
                     key: format!("{}/gap/{}", appliance.id, entry.line.entry),

@@ -1,11 +1,15 @@
 //! Whole flows over the desk, without a window.
 
 use super::close::{self, InkMsg, NOBODY, Signer};
-use super::{Panel, begin, cautions, charge, choose_appliance, choose_cylinder, closed, entry, leak_test, page, recover, repair, weighing};
+use super::{
+    Panel, begin, cautions, charge, choose_appliance, choose_cylinder, closed, entry, facts, leak_test, note, page, recover, repair,
+    weighing, when,
+};
 use crate::app::testing::{CountedIds, SetClock};
 use crate::app::{App, NewSite};
 use crate::ledger::{
-    ApplianceFacts, ApplianceId, Category, CylinderFacts, CylinderId, CylinderKind, GasStatus, Person, PersonId, SiteFacts, SiteId,
+    ApplianceFacts, ApplianceId, Category, CylinderFacts, CylinderId, CylinderKind, GasStatus, Person, PersonId, RateMethod, SiteFacts,
+    SiteId,
 };
 use crate::quantity::{MassUnit, Weighing};
 use crate::store::{OpenMode, Store};
@@ -185,8 +189,25 @@ fn a_charge_shows_what_follows_before_it_is_saved() {
     assert_eq!(desk.panel(), Panel::None);
     let page = desk.visit_shown().unwrap();
     assert_eq!((page.entries.len(), page.entries[0].state.as_str()), (1, "10 kg"));
-    assert_eq!(page.rates[0].figure, "22.05");
+    assert_eq!((page.rates[0].figure.as_str(), page.rates[0].caption.as_str()), ("22.05", "leak rate, annualizing method"));
     assert!(page.can_close);
+}
+
+#[test]
+fn a_leak_rate_says_by_which_method_and_none_says_none() {
+    let bench = Bench::new();
+    let (mut desk, plant) = bench.with_plant();
+    let site = desk.app().store().site(plant.site).unwrap().unwrap();
+    let facts = SiteFacts { rate_method: RateMethod::RollingAverage, ..site.versions.latest().clone() };
+    desk.app().change_site(plant.site, facts, "2020-01-01".parse().unwrap(), "chosen").unwrap();
+    begin_charge(&mut desk, &plant);
+    assert_eq!(desk.visit_shown().unwrap().rates[0].caption, "leak rate", "none is due yet");
+    charge_keys(&mut desk, "24.18");
+    next_reading(&mut desk);
+    charge_keys(&mut desk, "14.18");
+    desk.update(Msg::Charge(charge::Msg::Save));
+    fine(&desk);
+    assert_eq!(desk.visit_shown().unwrap().rates[0].caption, "leak rate, rolling average method");
 }
 
 #[test]
@@ -266,8 +287,12 @@ fn a_visit_is_closed_printed_opened_and_handed_over() {
     desk.update(Msg::Visit(page::Msg::Ask(Panel::Close)));
     let shown = desk.close_shown().unwrap();
     assert_eq!(shown.parts.len(), 1);
-    assert!(shown.cautions.iter().any(|caution| caution.key == "16"), "transport is read again");
-    assert!(!shown.ready.ready);
+    let home = shown.cautions.iter().find(|caution| caution.key == "16").expect("the way home is read about");
+    assert!(!home.acknowledged && !shown.onward.ready && !shown.ready.ready);
+    desk.update(Msg::Close(close::Msg::Acknowledge("16".to_owned())));
+    assert!(desk.close_shown().unwrap().onward.ready);
+    let seen = desk.app().visit(desk.work().unwrap().visit.id).unwrap().cautions;
+    assert!(seen.iter().any(|seen| seen.caution == "16"), "and kept with the others");
     desk.update(Msg::Close(close::Msg::Signing(true)));
     sign(&mut desk, Signer::Technician);
     desk.update(Msg::Close(close::Msg::Edited("representative".to_owned(), "Otto Prins".to_owned())));
@@ -418,10 +443,274 @@ fn a_wrong_entry_is_struck_and_a_closed_one_corrected() {
     desk.update(Msg::Entry(entry::Msg::Step(entry::Step::Correct)));
     desk.update(Msg::Entry(entry::Msg::Edited("instead".to_owned(), "3.5 kg".to_owned())));
     desk.update(Msg::Entry(entry::Msg::Edited("reason".to_owned(), "misread".to_owned())));
-    desk.update(Msg::Entry(entry::Msg::Ink(InkMsg::Point { x: 5, y: 5, first: true })));
+    desk.update(Msg::Entry(entry::Msg::Signing(true)));
+    desk.update(Msg::Entry(entry::Msg::Ink(Signer::Technician, InkMsg::Point { x: 5, y: 5, first: true })));
+    assert!(!desk.entry_shown().unwrap().ready.ready, "the representative signs, or it is said why not");
+    desk.update(Msg::Entry(entry::Msg::Counterpart(close::LATER.to_owned())));
+    desk.update(Msg::Entry(entry::Msg::Edited("representative".to_owned(), "Otto Prins".to_owned())));
+    assert!(desk.entry_shown().unwrap().ready.ready);
     desk.update(Msg::Entry(entry::Msg::Correct));
     fine(&desk);
     assert_eq!(charged(&desk, plant.r1), ["3.5"]);
+    let visits = desk.app().store().visits(&crate::store::VisitFilter::default()).unwrap();
+    let correction = visits.into_iter().filter_map(|visit| visit.closing).last().unwrap();
+    assert_eq!(correction.counterpart, crate::ledger::Counterpart::SignsLater { name: "Otto Prins".to_owned() });
+}
+
+/// Takes R-1 in hand at a visit that has begun.
+fn begin_at_r1(desk: &mut Desk, plant: &Plant) {
+    desk.begin_at(plant.site).unwrap();
+    if desk.panel() == Panel::Facts {
+        desk.update(Msg::Facts(facts::Msg::GoOn));
+    }
+    desk.update(Msg::ChooseAppliance(choose_appliance::Msg::Choose(plant.r1.to_string())));
+}
+
+fn second_person(desk: &mut Desk) -> PersonId {
+    let person = Person {
+        id: PersonId(uuid::Uuid::nil()),
+        name: "Ibrahim Keller".to_owned(),
+        certificate: "4712-A".to_owned(),
+        certificate_kind: "category I".to_owned(),
+        valid_from: None,
+        valid_to: None,
+        company: String::new(),
+        company_certificate: String::new(),
+    };
+    let person = desk.app().add_person(person).unwrap();
+    desk.reload_registers().unwrap();
+    person
+}
+
+#[test]
+fn what_leads_to_an_act_closes_when_another_appliance_is_taken() {
+    let bench = Bench::new();
+    let (mut desk, plant) = bench.with_plant();
+    desk.app().add_cylinder("S-205", cylinder(Some("R-22"), Some("20"))).unwrap();
+    desk.reload_registers().unwrap();
+    begin_at_r1(&mut desk, &plant);
+    desk.update(Msg::Visit(page::Msg::Ask(Panel::Charge)));
+    assert_eq!(desk.panel(), Panel::Cautions);
+    desk.update(Msg::Visit(page::Msg::ChooseAppliance(plant.f1.to_string())));
+    assert_eq!(desk.panel(), Panel::None, "cautions of R-1 do not stand over F-1");
+    desk.update(Msg::Visit(page::Msg::ChooseAppliance(plant.r1.to_string())));
+    desk.update(Msg::Visit(page::Msg::Ask(Panel::Charge)));
+    acknowledge_all(&mut desk);
+    assert_eq!(desk.panel(), Panel::ChooseCylinder, "two fit");
+    desk.update(Msg::Visit(page::Msg::ChooseAppliance(plant.f1.to_string())));
+    assert_eq!(desk.panel(), Panel::None);
+    // A tap that was under way when the page changed goes nowhere.
+    desk.update(Msg::ChooseCylinder(choose_cylinder::Msg::Choose(plant.cylinder.to_string())));
+    assert_eq!(desk.panel(), Panel::None);
+    desk.update(Msg::Visit(page::Msg::Ask(Panel::Charge)));
+    desk.update(Msg::ChooseCylinder(choose_cylinder::Msg::Choose(plant.cylinder.to_string())));
+    assert!(desk.charge_shown().unwrap().appliance.starts_with("F-1"));
+    charge_keys(&mut desk, "24.18");
+    next_reading(&mut desk);
+    charge_keys(&mut desk, "22.18");
+    desk.update(Msg::Charge(charge::Msg::Save));
+    fine(&desk);
+    assert_eq!((charged(&desk, plant.f1).len(), charged(&desk, plant.r1).len()), (1, 0));
+}
+
+#[test]
+fn each_entry_says_who_did_it_and_when() {
+    let bench = Bench::new();
+    let (mut desk, plant) = bench.with_plant();
+    begin_at_r1(&mut desk, &plant);
+    let second = second_person(&mut desk);
+    desk.update(Msg::Facts(facts::Msg::SetAtWork(second.to_string(), true)));
+    desk.update(Msg::Visit(page::Msg::Ask(Panel::Note)));
+    let stamp = desk.stamp_shown().unwrap();
+    assert_eq!((stamp.when.as_str(), stamp.who.as_str()), ("now", "Mara Lindqvist"));
+    let note = |desk: &mut Desk, text: &str| {
+        desk.update(Msg::Note(note::Msg::Edited("text".to_owned(), text.to_owned())));
+        desk.update(Msg::Note(note::Msg::Save));
+    };
+    // 05:05 in New York: what is still to come is refused, noon of the day before is not.
+    let when = |desk: &mut Desk, msg: when::Msg| desk.update(Msg::When(msg));
+    when(&mut desk, when::Msg::Open);
+    when(&mut desk, when::Msg::Person(second.to_string()));
+    for key in ["1", "2", "0", "5"] {
+        when(&mut desk, when::Msg::Key(key.to_owned()));
+    }
+    let shown = desk.when_shown().unwrap();
+    assert_eq!((shown.time.text.as_str(), shown.people.len()), ("12:05", 2));
+    assert!(shown.error.contains("has not come yet") && !shown.ready.ready, "{}", shown.error);
+    when(&mut desk, when::Msg::Step("day".to_owned(), -1));
+    assert!(desk.when_shown().unwrap().ready.ready);
+    when(&mut desk, when::Msg::Done);
+    assert_eq!((desk.panel(), desk.stamp_shown().unwrap().when.as_str()), (Panel::Note, "31 Mar 12:05"));
+    note(&mut desk, "looked at noon");
+    fine(&desk);
+    // The next one is now again, and by the one named last.
+    desk.update(Msg::Visit(page::Msg::Ask(Panel::Note)));
+    assert_eq!((desk.stamp_shown().unwrap().when.as_str(), desk.stamp_shown().unwrap().who.as_str()), ("now", "Ibrahim Keller"));
+    note(&mut desk, "looked now");
+    fine(&desk);
+    let entries = desk.app().store().entries_of_visit(desk.work().unwrap().visit.id).unwrap();
+    let told: Vec<(String, Option<u16>, Option<PersonId>)> =
+        entries.into_iter().map(|entry| (entry.line.at.date.to_string(), entry.line.at.minute, entry.detail.person)).collect();
+    assert_eq!(told, [("2026-03-31".to_owned(), Some(725), Some(second)), ("2026-04-01".to_owned(), Some(305), Some(second))]);
+}
+
+#[test]
+fn a_day_before_the_installation_is_said_at_the_action() {
+    let bench = Bench::new();
+    let (mut desk, plant) = bench.with_plant();
+    begin_at_r1(&mut desk, &plant);
+    desk.update(Msg::Visit(page::Msg::Ask(Panel::Note)));
+    desk.update(Msg::Note(note::Msg::Edited("text".to_owned(), "seen".to_owned())));
+    assert!(desk.note_shown().unwrap().ready.ready);
+    desk.update(Msg::When(when::Msg::Open));
+    desk.update(Msg::When(when::Msg::Step("year".to_owned(), -7)));
+    desk.update(Msg::When(when::Msg::Done));
+    let ready = desk.note_shown().unwrap().ready;
+    assert!(!ready.ready && ready.why_not.contains("was installed on 2020-05-01"), "{ready:?}");
+    assert!(desk.stamp_shown().unwrap().wrong);
+    desk.update(Msg::When(when::Msg::Open));
+    desk.update(Msg::When(when::Msg::Now));
+    desk.update(Msg::When(when::Msg::Done));
+    assert!(desk.note_shown().unwrap().ready.ready);
+}
+
+#[test]
+fn what_is_open_is_read_first_and_a_gap_can_be_answered_later() {
+    let bench = Bench::new();
+    let (mut desk, plant) = bench.with_plant();
+    begin_charge(&mut desk, &plant);
+    charge_keys(&mut desk, "23.00");
+    next_reading(&mut desk);
+    charge_keys(&mut desk, "22.00");
+    desk.update(Msg::Charge(charge::Msg::Weighing(weighing::Msg::GapReason("do not know".to_owned()))));
+    desk.update(Msg::Charge(charge::Msg::Save));
+    desk.update(Msg::Visit(page::Msg::Ask(Panel::Close)));
+    sign(&mut desk, Signer::Technician);
+    desk.update(Msg::Close(close::Msg::Counterpart(NOBODY.to_owned())));
+    desk.update(Msg::Close(close::Msg::Close));
+    fine(&desk);
+    // The next visit begins with what is open here.
+    desk.begin_at(plant.site).unwrap();
+    assert_eq!(desk.panel(), Panel::Facts);
+    let shown = desk.facts_shown().unwrap();
+    assert!(shown.goes_on);
+    let gap = shown.still_open.iter().find(|line| line.state == "unanswered").expect("the gap is still open").key.clone();
+    desk.update(Msg::Facts(facts::Msg::Open(gap)));
+    let asked = desk.entry_shown().unwrap();
+    assert_eq!((asked.step, asked.answers.len(), asked.ready.ready), (entry::Step::Answer, 4, false));
+    desk.update(Msg::Entry(entry::Msg::Answer("used elsewhere".to_owned())));
+    desk.update(Msg::Entry(entry::Msg::SaveAnswer));
+    fine(&desk);
+    assert!(!desk.facts_shown().unwrap().still_open.iter().any(|line| line.state == "unanswered"));
+    assert!(desk.visit_shown().unwrap().entries.iter().any(|line| line.facts.contains("used elsewhere")));
+}
+
+#[test]
+fn a_duty_leads_to_the_act_that_meets_it() {
+    let bench = Bench::new();
+    let (mut desk, plant) = bench.with_plant();
+    begin_charge(&mut desk, &plant);
+    charge_keys(&mut desk, "24.18");
+    next_reading(&mut desk);
+    charge_keys(&mut desk, "14.18");
+    desk.update(Msg::Charge(charge::Msg::Save));
+    fine(&desk);
+    let key = |desk: &Desk, name: &str| {
+        let duties = desk.visit_shown().unwrap().duties;
+        duties.iter().find(|duty| duty.name == name).unwrap_or_else(|| panic!("{duties:?}")).key.clone()
+    };
+    let initial = key(&desk, "Initial verification test");
+    desk.update(Msg::Visit(page::Msg::OpenItem(initial)));
+    acknowledge_all(&mut desk);
+    assert_eq!((desk.panel(), desk.repair_shown().unwrap().step.as_str()), (Panel::Repair, "initial"));
+    let repair = key(&desk, "Repair");
+    desk.update(Msg::Visit(page::Msg::OpenItem(repair)));
+    assert_eq!(desk.repair_shown().unwrap().step, "repair");
+    let inspection = key(&desk, "Leak inspection");
+    desk.update(Msg::Visit(page::Msg::OpenItem(inspection)));
+    assert!(matches!(desk.panel(), Panel::Cautions | Panel::LeakTest));
+}
+
+#[test]
+fn what_is_typed_about_an_entry_or_a_hand_over_outlives_a_sudden_end() {
+    let bench = Bench::new();
+    let (mut desk, plant) = bench.with_plant();
+    begin_charge(&mut desk, &plant);
+    charge_keys(&mut desk, "24.18");
+    next_reading(&mut desk);
+    charge_keys(&mut desk, "22.18");
+    desk.update(Msg::Charge(charge::Msg::SaveNextAppliance));
+    fine(&desk);
+    let first = desk.work().unwrap().entries[0].line.entry;
+    desk.update(Msg::Visit(page::Msg::OpenEntry(first.to_string())));
+    desk.update(Msg::Entry(entry::Msg::Step(entry::Step::Strike)));
+    desk.update(Msg::Entry(entry::Msg::Edited("reason".to_owned(), "wrong cyl".to_owned())));
+    desk.app().flush_drafts().unwrap();
+
+    let mut again = bench.desk(bench.app());
+    again.open_entry(first).unwrap();
+    let shown = again.entry_shown().unwrap();
+    assert_eq!((shown.step, shown.reason.as_str()), (entry::Step::Strike, "wrong cyl"));
+    again.update(Msg::Back);
+    again.update(Msg::Back);
+    // The reading that was carried over is there for whichever appliance comes next.
+    again.update(Msg::Visit(page::Msg::ChooseAppliance(plant.f1.to_string())));
+    again.update(Msg::Visit(page::Msg::Ask(Panel::Charge)));
+    let charge = again.charge_shown().unwrap();
+    assert_eq!((charge.weighing.first.text.as_str(), charge.weighing.active.as_str()), ("22.18", "after"));
+    assert!(charge.appliance.starts_with("F-1"));
+
+    again.update(Msg::Visit(page::Msg::Ask(Panel::Close)));
+    sign(&mut again, Signer::Technician);
+    again.update(Msg::Close(close::Msg::Counterpart(NOBODY.to_owned())));
+    again.update(Msg::Close(close::Msg::Close));
+    fine(&again);
+    let visit = again.app().store().visits(&crate::store::VisitFilter::default()).unwrap()[0].id;
+    again.update(Msg::Closed(closed::Msg::ToWhom("Otto Pr".to_owned())));
+    again.open_entry(first).unwrap();
+    again.update(Msg::Entry(entry::Msg::Step(entry::Step::Correct)));
+    again.update(Msg::Entry(entry::Msg::Edited("instead".to_owned(), "1.9 kg".to_owned())));
+    again.update(Msg::Entry(entry::Msg::Ink(Signer::Technician, InkMsg::Point { x: 5, y: 5, first: true })));
+    again.update(Msg::Entry(entry::Msg::Ink(Signer::Technician, InkMsg::Lifted)));
+    again.app().flush_drafts().unwrap();
+
+    let mut third = bench.desk(bench.app());
+    third.show_closed(visit).unwrap();
+    assert_eq!(third.closed_shown().unwrap().to_whom, "Otto Pr");
+    third.open_entry(first).unwrap();
+    let shown = third.entry_shown().unwrap();
+    assert_eq!((shown.correcting.instead.as_str(), shown.strokes.is_empty()), ("1.9 kg", false));
+}
+
+#[test]
+fn a_cylinder_added_while_recovering_keeps_what_is_in_it() {
+    let bench = Bench::new();
+    let (mut desk, plant) = bench.with_plant();
+    begin_at_r1(&mut desk, &plant);
+    let add = |desk: &mut Desk, name: &str, state: Option<&str>| {
+        desk.update(Msg::Recover(recover::Msg::ChooseCylinder));
+        desk.update(Msg::ChooseCylinder(choose_cylinder::Msg::BeginAdding));
+        if let Some(state) = state {
+            desk.update(Msg::ChooseCylinder(choose_cylinder::Msg::Status(state.to_owned())));
+        }
+        for (field, text) in [("identification", name), ("tare", "10 kg"), ("water capacity", "26.2 l")] {
+            desk.update(Msg::ChooseCylinder(choose_cylinder::Msg::Edited(field.to_owned(), text.to_owned())));
+        }
+        desk.update(Msg::ChooseCylinder(choose_cylinder::Msg::Add));
+        fine(desk);
+        let cylinders = desk.app().cylinders("2026-04-01".parse().unwrap()).unwrap();
+        cylinders.into_iter().find(|cylinder| cylinder.cylinder.name == name).unwrap().facts
+    };
+    desk.update(Msg::Visit(page::Msg::Ask(Panel::Recover)));
+    acknowledge_all(&mut desk);
+    let empty = add(&mut desk, "V-1", None);
+    assert_eq!((empty.refrigerant, empty.gas_status), (None, None), "empty unless said otherwise");
+    let held = add(&mut desk, "V-2", Some("recovered"));
+    assert_eq!((held.refrigerant.as_deref(), held.gas_status), (Some("R-22"), Some(GasStatus::Recovered)));
+    desk.update(Msg::Recover(recover::Msg::ChooseCylinder));
+    desk.update(Msg::ChooseCylinder(choose_cylinder::Msg::BeginAdding));
+    let missing = desk.choose_cylinder_shown().unwrap().ready.why_not;
+    assert!(missing.contains("cylinder") && !missing.contains("machine"), "{missing}");
 }
 
 #[test]

@@ -64,10 +64,15 @@ pub fn duty_due(duty: &Duty, on: NaiveDate) -> String {
     }
 }
 
+/// What tells a duty of an appliance from its others.
+pub fn duty_key(duty: &Duty) -> String {
+    format!("{}/{}/{}", duty.rulebook, duty.kind.name(), duty.from)
+}
+
 /// A duty as a row.
 pub fn duty_line(duty: &Duty, on: NaiveDate) -> shown::Line {
     shown::Line {
-        key: format!("{}/{}/{}", duty.rulebook, duty.kind.name(), duty.from),
+        key: duty_key(duty),
         name: format::capital(duty.kind.name()),
         facts: duty.source.clone(),
         state: duty_due(duty, on),
@@ -99,7 +104,7 @@ impl Sight<'_> {
         }
         if rates.is_empty() {
             let why = self.assessment.rulebooks.first().map_or_else(words::no_rulebook, |judgement| words::sentence(&judgement.why));
-            rates.push(Rate { word: words::no_rate_due(), consequence: why, ..Rate::default() });
+            rates.push(Rate { caption: words::leak_rate(None), word: words::no_rate_due(), consequence: why, ..Rate::default() });
         }
         rates
     }
@@ -119,12 +124,14 @@ impl Sight<'_> {
                 verdict: verdict(rate.verdict),
                 word: words::verdict(rate.verdict.name(), within_error(rate)),
                 consequence: self.consequence(judgement, rate),
+                caption: words::leak_rate(Some(rate.method)),
                 ..rate_bar(rate)
             },
             None => Rate {
                 rulebook: why::title(&judgement.id),
                 word: words::no_rate_due(),
                 consequence: self.why_no_rate(judgement),
+                caption: words::leak_rate(None),
                 ..Rate::default()
             },
         }

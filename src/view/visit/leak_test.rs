@@ -2,25 +2,18 @@
 //! becomes an open leak.
 
 use super::{Panel, id};
-use crate::app::{AppError, Setting, TestInput};
-use crate::ledger::{ApplianceId, InstrumentId, InstrumentKind, LeakPlace, Scope, TestKind, TestResult};
+use crate::app::{AppError, NewEntry, RepairInput, Setting, TestInput};
+use crate::ledger::{ApplianceId, InstrumentId, InstrumentKind, LeakMethod, LeakPlace, Scope, TestKind, TestResult};
 use crate::view::desk::Desk;
 use crate::view::shown::{Choice, Line, Ready};
-use crate::view::words;
+use crate::view::{format, words};
+use chrono::NaiveDate;
 use serde::{Deserialize, Serialize};
 
-/// Direct methods show the place, indirect ones only the effect
-/// (Regulation (EC) No 1516/2007 Art. 6 and 7).
-pub const METHODS: [(&str, bool); 6] = [
-    ("electronic detector", true),
-    ("bubbles", true),
-    ("ultraviolet dye", true),
-    ("tracer gas", true),
-    ("pressure and temperature", false),
-    ("sight glass", false),
-];
 /// States of a leak, the first while nothing was done about it.
-const STATES: [&str; 5] = ["open", "isolated", "section shut", "repaired temporarily", "repaired"];
+const STATES: [&str; 5] = ["open", "isolated", "section shut", "repaired temporarily", REPAIRED];
+/// Mended on the spot: a repair of its own, saved with the test.
+const REPAIRED: &str = "repaired";
 
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
 pub struct Form {
@@ -31,9 +24,21 @@ pub struct Form {
     pub part: bool,
     pub parts: String,
     pub found: bool,
-    pub places: Vec<LeakPlace>,
+    pub places: Vec<Found>,
     pub place: String,
     pub place_state: String,
+    /// What was done about a leak that was repaired on the spot.
+    #[serde(default)]
+    pub done: String,
+}
+
+/// A leak on the list of the test.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Found {
+    pub place: String,
+    pub state: String,
+    #[serde(default)]
+    pub done: String,
 }
 
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -44,7 +49,7 @@ pub enum Msg {
     Scope(String),
     Result(String),
     PlaceState(String),
-    /// `parts` or `place`.
+    /// `parts`, `place` or `done`.
     Edited(String, String),
     AddPlace,
     TakePlaceBack(String),
@@ -69,27 +74,37 @@ pub struct Shown {
     pub place_error: String,
     pub place_states: Vec<Choice>,
     pub place_state: String,
+    pub asks_done: bool,
+    pub done: String,
     pub ready: Ready,
 }
 
 impl Form {
-    fn new(appliance: ApplianceId, instrument: Option<InstrumentId>) -> Self {
+    /// With the detector that is used with the first method.
+    fn new(appliance: ApplianceId, detector: Option<InstrumentId>) -> Self {
         Self {
             appliance,
             inspection: true,
-            method: METHODS[0].0.to_owned(),
-            instrument,
+            method: LeakMethod::ALL[0].name.to_owned(),
+            instrument: detector,
             part: false,
             parts: String::new(),
             found: false,
             places: Vec::new(),
             place: String::new(),
             place_state: STATES[0].to_owned(),
+            done: String::new(),
         }
     }
 
     fn is_direct(&self) -> bool {
-        METHODS.iter().any(|(name, direct)| *direct && *name == self.method)
+        LeakMethod::is_direct(&self.method) != Some(false)
+    }
+
+    /// Another method: a detector is named only where one is used.
+    fn take_method(&mut self, method: String, detector: Option<InstrumentId>) {
+        self.instrument = detector.filter(|_| LeakMethod::find(&method).is_some_and(|method| method.detector));
+        self.method = method;
     }
 
     fn kind(&self) -> TestKind {
@@ -99,12 +114,12 @@ impl Form {
     fn update(&mut self, msg: Msg) {
         match msg {
             Msg::Kind(key) => self.inspection = key == TestKind::LeakInspection.name(),
-            Msg::Method(key) => self.method = key,
             Msg::Instrument(key) => self.instrument = id(&key, InstrumentId),
             Msg::Scope(key) => self.part = key == "part",
             Msg::Result(key) => self.found = key == TestResult::LeakFound.name(),
             Msg::PlaceState(key) => self.place_state = key,
             Msg::Edited(field, text) if field == "parts" => self.parts = text,
+            Msg::Edited(field, text) if field == "done" => self.done = text,
             Msg::Edited(_, text) => self.place = text,
             Msg::AddPlace => self.add_place(),
             Msg::TakePlaceBack(key) => {
@@ -114,7 +129,7 @@ impl Form {
                     self.places.remove(index);
                 }
             }
-            Msg::Save => {}
+            Msg::Method(_) | Msg::Save => {}
         }
     }
 
@@ -124,18 +139,61 @@ impl Form {
     }
 
     fn add_place(&mut self) {
-        if self.place.trim().is_empty() || self.is_known() {
+        if self.place.trim().is_empty() || self.is_known() || self.lacks_done() {
             return;
         }
         // An open leak has no further state.
         let state = if self.place_state == STATES[0] { String::new() } else { self.place_state.clone() };
-        self.places.push(LeakPlace { place: self.place.trim().to_owned(), state });
+        let done = if self.asks_done() { self.done.trim().to_owned() } else { String::new() };
+        self.places.push(Found { place: self.place.trim().to_owned(), state, done });
         self.place.clear();
+        self.done.clear();
         STATES[0].clone_into(&mut self.place_state);
     }
 
+    fn asks_done(&self) -> bool {
+        self.place_state == REPAIRED
+    }
+
+    fn lacks_done(&self) -> bool {
+        self.asks_done() && self.done.trim().is_empty()
+    }
+
+    /// The test and, for each leak that was mended on the spot, its repair.
+    fn entries(&self, common: &crate::app::Common) -> Vec<NewEntry> {
+        let found: &[Found] = if self.found { &self.places } else { &[] };
+        let leak = |found: &Found| {
+            let state = if found.state == REPAIRED { String::new() } else { found.state.clone() };
+            LeakPlace { place: found.place.clone(), state }
+        };
+        let test = TestInput {
+            common: common.clone(),
+            kind: self.kind(),
+            result: Some(if self.found { TestResult::LeakFound } else { TestResult::NoLeak }),
+            scope: Some(if self.part { Scope::Part } else { Scope::Whole }),
+            method: self.method.clone(),
+            instrument: self.instrument,
+            parts: if self.part { self.parts.clone() } else { String::new() },
+            place: String::new(),
+            leaks: found.iter().map(leak).collect(),
+            repair: None,
+            partial: false,
+            running_hours: String::new(),
+        };
+        let repair = |found: &Found| RepairInput {
+            common: common.clone(),
+            place: found.place.clone(),
+            done: found.done.clone(),
+            ..RepairInput::default()
+        };
+        let repaired = found.iter().filter(|found| found.state == REPAIRED).map(|found| NewEntry::Repair(repair(found)));
+        [NewEntry::Test(test)].into_iter().chain(repaired).collect()
+    }
+
     fn ready(&self) -> Ready {
-        if self.found && self.places.is_empty() && self.place.trim().is_empty() {
+        if self.found && !self.place.trim().is_empty() && self.lacks_done() {
+            Ready::not(words::say_what_was_done())
+        } else if self.found && self.places.is_empty() && self.place.trim().is_empty() {
             Ready::not(words::add_the_place())
         } else if self.part && self.parts.trim().is_empty() {
             Ready::not(words::say_the_parts())
@@ -162,13 +220,25 @@ impl Desk {
         Ok(last.filter(|id| self.registers.instrument(*id).is_some()).or_else(|| detectors.next().map(|detector| detector.id)))
     }
 
+    /// Detectors to choose from; the last choice is none at all.
+    pub(super) fn detectors(&self, today: NaiveDate) -> Vec<Choice> {
+        let mut detectors = self.instruments(InstrumentKind::Detector, today);
+        if !detectors.is_empty() {
+            detectors.push(Choice::new("", words::no_detector(), ""));
+        }
+        detectors
+    }
+
     pub(in crate::view) fn update_leak_test(&mut self, msg: Msg) -> Result<(), AppError> {
         if msg == Msg::Save {
             return self.save_leak_test();
         }
-        let work = self.work_mut()?;
-        if let Some(form) = &mut work.leak_test {
-            form.update(msg);
+        let detector = self.usual_detector()?;
+        if let Some(form) = &mut self.work_mut()?.leak_test {
+            match msg {
+                Msg::Method(key) => form.take_method(key, detector),
+                other => form.update(other),
+            }
         }
         self.work()?.leak_test.as_ref().map_or(Ok(()), |form| self.keep(Panel::LeakTest, form))
     }
@@ -178,39 +248,13 @@ impl Desk {
         let mut form = self.work()?.leak_test.clone().ok_or_else(unknown)?;
         // A place that is typed and not yet on the list was found all the same.
         form.add_place();
-        let mut leaks = if form.found { form.places.clone() } else { Vec::new() };
-        let repaired: Vec<LeakPlace> = leaks.iter().filter(|leak| leak.state == "repaired").cloned().collect();
-        for leak in &mut leaks {
-            if leak.state == "repaired" {
-                leak.state.clear();
-            }
-        }
-        let input = TestInput {
-            common: self.work()?.common(""),
-            kind: form.kind(),
-            result: Some(if form.found { TestResult::LeakFound } else { TestResult::NoLeak }),
-            scope: Some(if form.part { Scope::Part } else { Scope::Whole }),
-            method: form.method.clone(),
-            instrument: form.instrument.filter(|_| form.is_direct()),
-            parts: if form.part { form.parts.clone() } else { String::new() },
-            place: String::new(),
-            leaks,
-            repair: None,
-            partial: false,
-            running_hours: String::new(),
-        };
-        let visit = self.work()?.visit.id;
-        self.app.test(visit, form.appliance, input)?;
-        // A leak that was repaired on the spot is a repair of its own.
-        for leak in repaired {
-            let common = self.work()?.common("");
-            self.app.repair(visit, form.appliance, crate::app::RepairInput { common, place: leak.place, ..Default::default() })?;
-        }
+        let (visit, common) = (self.work()?.visit.id, self.work()?.common(Panel::LeakTest, form.appliance, "")?);
+        self.app.enter_all(visit, form.appliance, &form.entries(&common))?;
         if let Some(instrument) = form.instrument {
             self.app.set(Setting::Detector, &instrument.to_string())?;
         }
         self.work_mut()?.leak_test = None;
-        self.entered()
+        self.entered(Panel::LeakTest, form.appliance)
     }
 
     /// The leak test page.
@@ -219,25 +263,25 @@ impl Desk {
     /// No visit is open, no leak test is being entered; the store's own.
     pub fn leak_test_shown(&self) -> Result<Shown, AppError> {
         let form = self.work()?.leak_test.as_ref().ok_or(AppError::Unknown { what: "leak test being entered" })?;
-        let place = |(index, leak): (usize, &LeakPlace)| Line {
+        let place = |(index, leak): (usize, &Found)| Line {
             key: index.to_string(),
             name: leak.place.clone(),
-            facts: words::leak_state(&leak.state),
+            facts: format::commas([words::leak_state(&leak.state).as_str(), &leak.done]),
             ..Line::default()
         };
         let inspection = TestKind::LeakInspection.name();
         let kinds = [inspection, TestKind::LeakTest.name()].map(|kind| Choice {
-            refused: if kind == inspection && !form.is_direct() { "indirect method".to_owned() } else { String::new() },
+            refused: if kind == inspection && !form.is_direct() { words::indirect() } else { String::new() },
             ..Choice::word(kind)
         });
         Ok(Shown {
             appliance: self.appliance_words()?,
             kinds: kinds.to_vec(),
             kind: form.kind().name().to_owned(),
-            methods: METHODS.iter().map(|(name, _)| Choice::word(name)).collect(),
+            methods: LeakMethod::ALL.iter().map(|method| Choice::word(method.name)).collect(),
             method: form.method.clone(),
             method_words: if form.is_direct() { String::new() } else { words::indirect_method() },
-            instruments: if form.is_direct() { self.instruments(InstrumentKind::Detector, self.today_there()?) } else { Vec::new() },
+            instruments: if form.is_direct() { self.detectors(self.today_there()?) } else { Vec::new() },
             instrument: form.instrument.map(|instrument| instrument.to_string()).unwrap_or_default(),
             scope: if form.part { "part" } else { "whole" }.to_owned(),
             parts: form.parts.clone(),
@@ -247,7 +291,9 @@ impl Desk {
             place_error: if form.is_known() { words::place_known(form.place.trim()) } else { String::new() },
             place_states: STATES.map(Choice::word).to_vec(),
             place_state: form.place_state.clone(),
-            ready: form.ready(),
+            asks_done: form.asks_done(),
+            done: form.done.clone(),
+            ready: self.ready_at(Panel::LeakTest, form.appliance, form.ready())?,
         })
     }
 }
@@ -260,8 +306,36 @@ mod tests {
     fn an_indirect_method_is_never_an_inspection() {
         let mut form = Form::new(ApplianceId(uuid::Uuid::nil()), None);
         assert_eq!(form.kind(), TestKind::LeakInspection);
-        form.update(Msg::Method("sight glass".to_owned()));
+        form.take_method("sight glass".to_owned(), None);
         assert_eq!(form.kind(), TestKind::LeakTest);
+    }
+
+    #[test]
+    fn a_detector_is_named_only_where_one_is_used() {
+        let detector = Some(InstrumentId(uuid::Uuid::from_u128(7)));
+        let mut form = Form::new(ApplianceId(uuid::Uuid::nil()), detector);
+        assert_eq!(form.instrument, detector);
+        form.take_method("bubbles".to_owned(), detector);
+        assert_eq!(form.instrument, None);
+        form.take_method("tracer gas".to_owned(), detector);
+        assert_eq!(form.instrument, detector);
+        form.update(Msg::Instrument(String::new()));
+        assert_eq!(form.instrument, None, "none can be said");
+    }
+
+    #[test]
+    fn a_leak_mended_on_the_spot_is_a_repair_that_says_what_was_done() {
+        let mut form = Form::new(ApplianceId(uuid::Uuid::nil()), None);
+        form.update(Msg::Result("leak found".to_owned()));
+        form.update(Msg::Edited("place".to_owned(), "Flare".to_owned()));
+        form.update(Msg::PlaceState(REPAIRED.to_owned()));
+        form.update(Msg::AddPlace);
+        assert!(form.places.is_empty() && !form.ready().ready);
+        form.update(Msg::Edited("done".to_owned(), "made anew".to_owned()));
+        form.update(Msg::AddPlace);
+        let entries = form.entries(&crate::app::Common::default());
+        let [NewEntry::Test(test), NewEntry::Repair(repair)] = entries.as_slice() else { panic!("{entries:?}") };
+        assert_eq!((test.leaks[0].state.as_str(), repair.place.as_str(), repair.done.as_str()), ("", "Flare", "made anew"));
     }
 
     #[test]

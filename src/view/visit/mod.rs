@@ -7,6 +7,7 @@ pub mod choose_appliance;
 pub mod choose_cylinder;
 pub mod close;
 pub mod closed;
+pub mod correction;
 pub mod entry;
 pub mod facts;
 #[cfg(test)]
@@ -19,12 +20,13 @@ pub mod pressure;
 pub mod recover;
 pub mod repair;
 pub mod weighing;
+pub mod when;
 
 pub use judging::{Judging, duty_due, duty_line, judge};
 
 use super::desk::Desk;
 use crate::app::{AppError, OpenVisit};
-use crate::ledger::{ApplianceId, CautionSeen, Entry, InstrumentKind, Visit};
+use crate::ledger::{ApplianceId, CautionSeen, Entry, InstrumentKind, PersonId, Visit};
 use crate::record::CautiousAct;
 use crate::view::{format, shown, words};
 use chrono::NaiveDate;
@@ -40,6 +42,8 @@ pub enum Panel {
     ChooseAppliance,
     Cautions,
     ChooseCylinder,
+    /// When an entry was made, and by whom.
+    When,
     Charge,
     Recover,
     LeakTest,
@@ -70,6 +74,11 @@ impl Panel {
 
     fn acts_on_an_appliance(self) -> bool {
         self.has_form() && self != Self::Close
+    }
+
+    /// What is asked here is asked about the appliance in hand: nothing of it stays when another is taken.
+    fn speaks_of_an_appliance(self) -> bool {
+        self.acts_on_an_appliance() || matches!(self, Self::Cautions | Self::ChooseCylinder | Self::When)
     }
 
     /// The key of its draft; the same as the action of the entry it becomes.
@@ -116,6 +125,10 @@ pub struct WorkPlace {
     pub taken_up: Vec<ApplianceId>,
     pub panel: Panel,
     pub job: String,
+    /// Whoever was named last as the one who does what is entered.
+    pub person: Option<PersonId>,
+    /// Days and times said for what is being filled in; without one it is now.
+    pub said: Vec<when::Said>,
 }
 
 impl Work {
@@ -169,11 +182,6 @@ impl Work {
         own.sort_by_key(|entry| (entry.line.at, entry.line.position));
         own
     }
-
-    fn common(&self, reason: &str) -> crate::app::Common {
-        let job = Some(self.place.job.trim().to_owned()).filter(|job| !job.is_empty());
-        crate::app::Common { job, reason: reason.trim().to_owned(), ..crate::app::Common::default() }
-    }
 }
 
 impl Desk {
@@ -225,7 +233,8 @@ impl Desk {
     pub(super) fn open_panel(&mut self, panel: Panel) -> Result<(), AppError> {
         self.panel = panel;
         let Some(work) = &mut self.work else { return Ok(()) };
-        let kept = if panel.has_form() { panel } else { Panel::None };
+        let shown = if panel == Panel::When { work.next } else { panel };
+        let kept = if shown.has_form() { shown } else { Panel::None };
         if work.place.panel != kept {
             work.place.panel = kept;
             self.keep_place()?;
@@ -285,8 +294,10 @@ impl Desk {
         }
     }
 
-    /// The entry is on disk: the page shows it, the form is gone.
-    pub(super) fn entered(&mut self) -> Result<(), AppError> {
+    /// The entry is on disk: the page shows it, the form is gone, and the next one is made now.
+    pub(super) fn entered(&mut self, panel: Panel, appliance: ApplianceId) -> Result<(), AppError> {
+        self.work_mut()?.forget_said(panel, appliance);
+        self.keep_place()?;
         self.reload_visit()?;
         self.open_panel(Panel::None)
     }

@@ -9,17 +9,8 @@ use crate::view::shown::{Choice, Ready};
 use crate::view::{format, parse, words};
 use serde::{Deserialize, Serialize};
 
-const KINDS: [(&str, &str); 9] = [
-    ("note", "note"),
-    ("normal operation", "normal operation"),
-    ("mothball", "mothballed"),
-    ("retrofit", "retrofitted"),
-    ("retire", "retired"),
-    ("detection system check", "detection system checked"),
-    ("plan made", "plan made"),
-    ("report sent", "report sent"),
-    ("recycle", "gas recycled"),
-];
+const KINDS: [&str; 9] =
+    ["note", "normal operation", "mothball", "retrofit", "retire", "detection system check", "plan made", "report sent", "recycle"];
 
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
 pub struct Form {
@@ -57,21 +48,29 @@ pub struct Shown {
     pub ready: Ready,
 }
 
+impl Form {
+    fn new(appliance: ApplianceId) -> Self {
+        Self { appliance, kind: "note".to_owned(), text: String::new(), gas: String::new(), full_charge: String::new(), cylinder: None }
+    }
+}
+
 impl Desk {
     pub(super) fn begin_note(&mut self) -> Result<(), AppError> {
         let appliance = self.appliance_in_hand()?;
         let work = self.work_mut()?;
         if work.note.as_ref().is_none_or(|form| form.appliance != appliance) {
-            work.note = Some(Form {
-                appliance,
-                kind: "note".to_owned(),
-                text: String::new(),
-                gas: String::new(),
-                full_charge: String::new(),
-                cylinder: None,
-            });
+            work.note = Some(Form::new(appliance));
         }
         self.open_panel(Panel::Note)
+    }
+
+    /// The form for a kind of fact, with what was typed kept.
+    pub(super) fn prepare_note(&mut self, kind: &str) -> Result<(), AppError> {
+        let appliance = self.appliance_in_hand()?;
+        let begun = self.work()?.note.clone().filter(|form| form.appliance == appliance);
+        let form = Form { kind: kind.to_owned(), ..begun.unwrap_or_else(|| Form::new(appliance)) };
+        self.work_mut()?.note = Some(form);
+        Ok(())
     }
 
     pub(in crate::view) fn update_note(&mut self, msg: Msg) -> Result<(), AppError> {
@@ -95,7 +94,7 @@ impl Desk {
 
     fn save_note(&mut self) -> Result<(), AppError> {
         let form = self.work()?.note.clone().ok_or(AppError::Unknown { what: "note being entered" })?;
-        let mut common = self.work()?.common("");
+        let mut common = self.work()?.common(Panel::Note, form.appliance, "")?;
         form.text.trim().clone_into(&mut common.note);
         let simple = |act| NewEntry::Simple(act, common.clone());
         let new = match form.kind.as_str() {
@@ -124,7 +123,7 @@ impl Desk {
         // Retrofit and recycling are entered under their own action.
         self.app.clear_draft(visit, Panel::Note.action())?;
         self.work_mut()?.note = None;
-        self.entered()
+        self.entered(Panel::Note, form.appliance)
     }
 
     /// The note page.
@@ -160,7 +159,7 @@ impl Desk {
         };
         Ok(Shown {
             appliance: self.appliance_words()?,
-            kinds: KINDS.map(|(key, name)| Choice::new(key, name, "")).to_vec(),
+            kinds: KINDS.map(|key| Choice::new(key, words::note_name(key), "")).to_vec(),
             kind: form.kind.clone(),
             kind_words: words::note_kind(&form.kind),
             text: form.text.clone(),
@@ -171,7 +170,7 @@ impl Desk {
             full_charge_error,
             cylinders,
             cylinder: form.cylinder.map(|cylinder| cylinder.to_string()).unwrap_or_default(),
-            ready,
+            ready: self.ready_at(Panel::Note, form.appliance, ready)?,
         })
     }
 }

@@ -1,11 +1,13 @@
 //! The page of the open visit: its appliances as plates, entries in order of time.
 
-use super::{Panel, id, judge};
+use super::judging::duty_key;
+use super::{Panel, id, judge, repair};
 use crate::app::AppError;
 use crate::ledger::{Act, ApplianceId, Entry, EntryId, Moment, TestResult, open_leaks};
 use crate::quantity::MassUnit;
+use crate::rules::{DutyKind, assess};
 use crate::view::desk::Desk;
-use crate::view::shown::{Line, Rate, Reason};
+use crate::view::shown::{Line, Message, Rate, Reason};
 use crate::view::{format, words};
 use chrono::NaiveDate;
 
@@ -49,9 +51,14 @@ impl Desk {
         match msg {
             Msg::ChooseAppliance(key) => {
                 let Some(appliance) = id(&key, ApplianceId) else { return Ok(()) };
+                let other = self.work()?.place.appliance != Some(appliance);
                 self.take_in_hand(appliance)?;
-                // A form of another appliance stays as a draft; it is not shown over this one.
-                if self.panel.acts_on_an_appliance() { self.open_panel(Panel::None) } else { Ok(()) }
+                // A form of another appliance stays as a draft; neither it nor what leads to it is shown over this one.
+                if !other || !self.panel.speaks_of_an_appliance() {
+                    return Ok(());
+                }
+                self.work_mut()?.next = Panel::None;
+                self.open_panel(Panel::None)
             }
             Msg::Ask(panel) => self.ask(panel),
             Msg::OpenEntry(key) => match id(&key, EntryId) {
@@ -64,8 +71,44 @@ impl Desk {
 
     /// An open leak leads to its repair; a duty to the action that meets it.
     fn open_item(&mut self, key: &str) -> Result<(), AppError> {
-        let inspects = ["leak inspection", "leak check", "re-check"].iter().any(|word| key.contains(word));
-        self.ask(if inspects && !key.starts_with("leak/") { Panel::LeakTest } else { Panel::Repair })
+        if let Some(place) = key.strip_prefix("leak/") {
+            self.prepare_repair(repair::Step::Repair, Some(place))?;
+            return self.ask(Panel::Repair);
+        }
+        let Some(duty) = self.duty_of_key(key)? else { return Ok(()) };
+        match duty {
+            DutyKind::Repair | DutyKind::RepairOfFoundLeak => self.ask_for_repair(repair::Step::Repair),
+            DutyKind::InitialVerification => self.ask_for_repair(repair::Step::Initial),
+            // Only this step asks for the hours that a re-check counts.
+            DutyKind::FollowUpVerification | DutyKind::ReCheck => self.ask_for_repair(repair::Step::FollowUp),
+            DutyKind::LeakInspection | DutyKind::LeakCheck => self.ask(Panel::LeakTest),
+            DutyKind::Plan => self.ask_for_note("plan made"),
+            DutyKind::ChronicLeakReport => self.ask_for_note("report sent"),
+            DutyKind::DetectionSystemCheck => self.ask_for_note("detection system check"),
+            DutyKind::DetermineFullCharge => {
+                self.say(Message::told(words::full_charge_in_plant()));
+                Ok(())
+            }
+        }
+    }
+
+    fn ask_for_repair(&mut self, step: repair::Step) -> Result<(), AppError> {
+        self.prepare_repair(step, None)?;
+        self.ask(Panel::Repair)
+    }
+
+    fn ask_for_note(&mut self, kind: &str) -> Result<(), AppError> {
+        self.prepare_note(kind)?;
+        self.ask(Panel::Note)
+    }
+
+    /// The kind of the duty that a row of the appliance in hand stands for.
+    fn duty_of_key(&self, key: &str) -> Result<Option<DutyKind>, AppError> {
+        let today = self.today_there()?;
+        let standing = self.app.appliance_standing(self.appliance_in_hand()?, today)?;
+        let assessment = assess(&standing.site, &standing.appliance, &standing.lines, today);
+        let duties = assessment.map(|assessment| assessment.duties).unwrap_or_default();
+        Ok(duties.iter().find(|duty| duty_key(duty) == key).map(|duty| duty.kind))
     }
 
     /// The page of the visit.
@@ -134,12 +177,12 @@ impl Desk {
     pub(in crate::view) fn entry_line(&self, entry: &Entry, all: &[Entry], today: NaiveDate) -> Line {
         let detail = &entry.detail;
         let cylinder = entry.line.act.cylinder().and_then(|id| self.registers.cylinder(id));
-        let cylinder = cylinder.map(|cylinder| format!("cylinder {}", cylinder.name)).unwrap_or_default();
+        let cylinder = cylinder.map(|cylinder| words::cylinder(&cylinder.name)).unwrap_or_default();
         let unit = unit_of(entry);
         let (facts, state) = match &entry.line.act {
             Act::Charge { purpose, transfer } => {
-                let fill = if detail.short_by.is_some() { "short of full" } else { "" };
-                (format::commas([&*cylinder, purpose.name(), fill]), format::mass(transfer.mass, unit))
+                let fill = if detail.short_by.is_some() { words::short_by("") } else { String::new() };
+                (format::commas([&*cylinder, words::charge_purpose(*purpose), &fill]), format::mass(transfer.mass, unit))
             }
             Act::Recover { purpose, transfer } => (format::commas([&*cylinder, purpose.name()]), format::mass(transfer.mass, unit)),
             Act::Test { result, scope, .. } => {

@@ -108,7 +108,9 @@ impl Form {
             }
             Msg::Gauge(key) => self.gauge = id(&key, InstrumentId),
             Msg::Reading(key) => self.active = key,
-            Msg::Key(key) => parse::press(if self.active == TEMPERATURE { &mut self.temperature } else { &mut self.pressure }, &key),
+            // A pipe can be colder than ice, a gauge can stand below nought; an absolute pressure cannot.
+            Msg::Key(key) if key == "-" && self.active == PRESSURE && self.kind == RISE => {}
+            Msg::Key(key) => parse::press_signed(if self.active == TEMPERATURE { &mut self.temperature } else { &mut self.pressure }, &key),
             Msg::Next => self.active = if self.active == PRESSURE { TEMPERATURE } else { PRESSURE }.to_owned(),
             Msg::OpenReading(key) => {
                 if let Ok(index) = key.parse::<usize>()
@@ -122,8 +124,12 @@ impl Form {
         }
     }
 
+    fn can_take(&self) -> bool {
+        parse_decimal(&self.pressure).is_ok() && (self.temperature.is_empty() || parse_decimal(&self.temperature).is_ok())
+    }
+
     fn take(&mut self, time: String, minute: u32) {
-        if parse_decimal(&self.pressure).is_err() {
+        if !self.can_take() {
             return;
         }
         self.taken.push(Taken {
@@ -195,12 +201,12 @@ impl Desk {
 
     fn save_pressure(&mut self) -> Result<(), AppError> {
         let form = self.work()?.pressure.clone().ok_or(AppError::Unknown { what: "series being entered" })?;
-        let (visit, common) = (self.work()?.visit.id, self.work()?.common(""));
+        let (visit, common) = (self.work()?.visit.id, self.work()?.common(Panel::Pressure, form.appliance, "")?);
         let input =
             PressureInput { common, method: form.kind.clone(), level_reached: form.series(), instrument: form.gauge, place: String::new() };
         self.app.pressure(visit, form.appliance, input)?;
         self.work_mut()?.pressure = None;
-        self.entered()
+        self.entered(Panel::Pressure, form.appliance)
     }
 
     /// The page of pressure and vacuum.
@@ -228,8 +234,9 @@ impl Desk {
             },
             ..Line::default()
         };
-        let caption = if form.kind == RISE { "pressure, absolute" } else { "pressure, gauge" };
-        let wrong = !form.pressure.is_empty() && parse_decimal(&form.pressure).is_err();
+        let caption = if form.kind == RISE { words::pressure_absolute() } else { words::pressure_gauge() };
+        let typed = [&form.pressure, &form.temperature];
+        let wrong = typed.into_iter().find(|typed| !typed.is_empty() && parse_decimal(typed).is_err());
         Ok(Shown {
             appliance: self.appliance_words()?,
             kind: form.kind.clone(),
@@ -237,15 +244,19 @@ impl Desk {
             gauge: form.gauge.map(|gauge| gauge.to_string()).unwrap_or_default(),
             units: form.units().iter().map(|unit| Choice::word(unit)).collect(),
             unit: form.unit.clone(),
-            pressure: reading(PRESSURE, caption, &form.unit, &form.pressure),
-            temperature: reading(TEMPERATURE, "pipe temperature", "°C", &form.temperature),
+            pressure: reading(PRESSURE, &caption, &form.unit, &form.pressure),
+            temperature: reading(TEMPERATURE, &words::pipe_temperature(), "°C", &form.temperature),
             active: form.active.clone(),
-            error: if wrong { words::reading_not_a_number(&form.pressure) } else { String::new() },
+            error: wrong.map(|typed| words::reading_not_a_number(typed)).unwrap_or_default(),
             readings: form.taken.iter().enumerate().map(line).collect(),
             judged: words::kept_as_read(),
             figures: figures(form),
-            can_take: parse_decimal(&form.pressure).is_ok(),
-            ready: if form.taken.len() < 2 { Ready::not(words::take_a_reading()) } else { Ready::yes() },
+            can_take: form.can_take(),
+            ready: self.ready_at(
+                Panel::Pressure,
+                form.appliance,
+                if form.taken.len() < 2 { Ready::not(words::take_a_reading()) } else { Ready::yes() },
+            )?,
         })
     }
 }
@@ -254,8 +265,8 @@ fn figures(form: &Form) -> Vec<Fact> {
     let (Some(first), Some(last), Some(change)) = (form.taken.first(), form.taken.last(), form.change()) else { return Vec::new() };
     let sign = if change > Ratio::from_integer(0) { "+" } else { "" };
     vec![
-        Fact::new("minutes", last.minute.saturating_sub(first.minute).to_string()),
-        Fact::new("change", format!("{sign}{} {}", format::figure(change, 3).replace('-', "\u{2212}"), form.unit)),
+        Fact::new(words::minutes(), last.minute.saturating_sub(first.minute).to_string()),
+        Fact::new(words::change(), format!("{sign}{} {}", format::figure(change, 3).replace('-', "\u{2212}"), form.unit)),
     ]
 }
 
@@ -293,5 +304,21 @@ mod tests {
         assert_eq!(form.series(), "10:12 10.45 bar; 10:42 10.40 bar");
         assert_eq!(figures(&form)[1].value, "\u{2212}0.050 bar");
         assert_eq!(figures(&form)[0].value, "30");
+    }
+
+    #[test]
+    fn a_pipe_can_be_colder_than_ice() {
+        let mut form = Form::new(ApplianceId(uuid::Uuid::nil()), None, &units(PressureUnit::Bar));
+        form.pressure = "2.1".to_owned();
+        form.update(Msg::Next);
+        for key in ["-", "1", "2", ".", "5"] {
+            form.update(Msg::Key(key.to_owned()));
+        }
+        assert!(form.can_take());
+        form.take("10:12".to_owned(), 612);
+        assert_eq!(form.series(), "10:12 2.1 bar at -12.5 °C");
+        form.update(Msg::Kind(RISE.to_owned()));
+        form.update(Msg::Key("-".to_owned()));
+        assert_eq!(form.pressure, "", "an absolute pressure is never below nought");
     }
 }

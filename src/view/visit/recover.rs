@@ -1,11 +1,11 @@
 //! Recover: gas from the appliance into a cylinder, within the cylinder's limit.
 
 use super::Panel;
-use super::charge::{refusal, why_not};
+use super::charge::{of_readings, refusal, why_not};
 use super::weighing::{self, Context, WeighingForm};
 use crate::app::{AppError, ApplianceStanding, CylinderStanding, NewEntry, Prepared, RecoverInput};
 use crate::gas;
-use crate::ledger::{Act, ApplianceId, RecoveryPurpose};
+use crate::ledger::{ApplianceId, GAP_REASONS, RecoveryPurpose};
 use crate::measure::{CylinderLimit, Direction};
 use crate::quantity::Mass;
 use crate::rules::recovery_level;
@@ -105,13 +105,13 @@ impl Desk {
         match msg {
             Msg::ChooseCylinder => return self.choose_another_cylinder(Panel::Recover),
             Msg::Save => {
-                self.save_recovery()?;
-                return self.entered();
+                let form = self.save_recovery()?;
+                return self.entered(Panel::Recover, form.appliance);
             }
             Msg::SaveNextCylinder => {
                 let form = self.save_recovery()?;
                 let weighing = self.fresh_weighing()?;
-                self.entered()?;
+                self.entered(Panel::Recover, form.appliance)?;
                 self.work_mut()?.recover = Some(Form { weighing, reason: String::new(), ..form });
                 return self.choose_another_cylinder(Panel::Recover);
             }
@@ -135,7 +135,7 @@ impl Desk {
     fn recover_input(&self, form: &Form) -> Result<RecoverInput, AppError> {
         let missing = || AppError::Input { field: "cylinder", sentence: words::choose_the_cylinder() };
         Ok(RecoverInput {
-            common: self.work()?.common(&form.reason),
+            common: self.work()?.common(Panel::Recover, form.appliance, &form.reason)?,
             cylinder: form.weighing.cylinder.ok_or_else(missing)?,
             purpose: form.purpose,
             reading: form.weighing.reading(Direction::Into),
@@ -175,7 +175,7 @@ impl Desk {
             limit: limit.as_ref(),
             net: prepared.and_then(weighing::net_with_error),
             gap: prepared.and_then(|prepared| prepared.gap),
-            error: attempt.as_ref().err().map(|(_, sentence)| sentence.clone()).unwrap_or_default(),
+            error: attempt.as_ref().err().filter(|(field, _)| of_readings(field)).map(|(_, sentence)| sentence.clone()).unwrap_or_default(),
         });
         let room = room(form, cylinder.as_ref(), limit.as_ref(), prepared);
         let ready = match &attempt {
@@ -188,7 +188,7 @@ impl Desk {
             appliance: words::appliance(&standing.appliance.name, &standing.facts.refrigerant, &format::full_charge(&standing.facts)),
             weighing,
             scales: weighing::scales(self, today),
-            gap_reasons: weighing::GAP_REASONS.map(Choice::word).to_vec(),
+            gap_reasons: GAP_REASONS.map(Choice::word).to_vec(),
             hose_length: form.weighing.hose_length.clone(),
             hose_bore: form.weighing.hose_bore.clone(),
             summary: format::commas([form.purpose.name(), &form.weighing.summary()]),
@@ -217,18 +217,8 @@ impl Desk {
     }
 
     fn attempt_recovery(&self, form: &Form, standing: &ApplianceStanding) -> Result<Prepared, (&'static str, String)> {
-        let told = |error: AppError| match error {
-            AppError::Input { field, sentence } => (field, sentence),
-            other => ("", other.to_string()),
-        };
-        let visit = self.work().map_err(told)?.visit.id;
-        let input = self.recover_input(form).map_err(told)?;
-        let hoses = form.weighing.hoses(&standing.facts.refrigerant).map_err(|sentence| ("hoses", sentence))?;
-        let mut prepared = self.app.prepare(visit, form.appliance, &NewEntry::Recover(input)).map_err(told)?;
-        if let (Some(hoses), Act::Recover { transfer, .. }) = (hoses, &mut prepared.entry.line.act) {
-            transfer.hoses = hoses.mass().unwrap_or_default();
-        }
-        Ok(prepared)
+        let new = self.recover_input(form).map(NewEntry::Recover);
+        self.attempt(form.appliance, &form.weighing, &standing.facts.refrigerant, new)
     }
 }
 

@@ -1,10 +1,9 @@
 //! Repair, its initial and follow-up verification tests, and the day the
 //! appliance was back to normal operation: each an entry of its own.
 
-use super::leak_test::METHODS;
 use super::{Panel, duty_due, id};
 use crate::app::{AppError, RepairInput, SimpleAct, TestInput};
-use crate::ledger::{Act, ApplianceId, Entry, EntryId, InstrumentId, InstrumentKind, Scope, TestKind, TestResult, open_leaks};
+use crate::ledger::{Act, ApplianceId, Entry, EntryId, InstrumentId, LeakMethod, Scope, TestKind, TestResult, open_leaks};
 use crate::rules::{DutyKind, DutyState, assess};
 use crate::view::desk::Desk;
 use crate::view::shown::{Choice, Fact, Ready};
@@ -30,15 +29,6 @@ impl Step {
             Self::Repair => "repair",
             Self::Initial => "initial",
             Self::FollowUp => "follow-up",
-            Self::NormalOperation => "normal operation",
-        }
-    }
-
-    fn name(self) -> &'static str {
-        match self {
-            Self::Repair => "repair",
-            Self::Initial => "initial test",
-            Self::FollowUp => "follow-up test",
             Self::NormalOperation => "normal operation",
         }
     }
@@ -110,7 +100,6 @@ impl Form {
             Msg::Step(key) => self.step = Step::ALL.into_iter().find(|step| step.key() == key).unwrap_or(self.step),
             Msg::Leak(key) => self.leak = key,
             Msg::Repair(key) => self.repair = id(&key, EntryId),
-            Msg::Method(key) => self.method = key,
             Msg::Instrument(key) => self.instrument = id(&key, InstrumentId),
             Msg::Result(key) => self.failed = key == "fail",
             Msg::Temporary(temporary) => self.temporary = temporary,
@@ -121,8 +110,14 @@ impl Form {
                 "parts" => self.parts = text,
                 _ => self.running_hours = text,
             },
-            Msg::Save => {}
+            Msg::Method(_) | Msg::Save => {}
         }
+    }
+
+    /// Another method: a detector is named only where one is used.
+    fn take_method(&mut self, method: String, detector: Option<InstrumentId>) {
+        self.instrument = detector.filter(|_| LeakMethod::find(&method).is_some_and(|method| method.detector));
+        self.method = method;
     }
 
     fn place(&self) -> &str {
@@ -158,6 +153,19 @@ impl Desk {
         self.open_panel(Panel::Repair)
     }
 
+    /// The form at a step, and at an open leak, before its cautions are read.
+    pub(super) fn prepare_repair(&mut self, step: Step, leak: Option<&str>) -> Result<(), AppError> {
+        let appliance = self.appliance_in_hand()?;
+        let begun = self.work()?.repair.clone().filter(|form| form.appliance == appliance);
+        let mut form = begun.map_or_else(|| self.fresh_repair(appliance), Ok)?;
+        form.step = step;
+        if let Some(leak) = leak {
+            leak.clone_into(&mut form.leak);
+        }
+        self.work_mut()?.repair = Some(form);
+        Ok(())
+    }
+
     /// Begins with what is open: a leak, else the test that a repair still wants.
     fn fresh_repair(&self, appliance: ApplianceId) -> Result<Form, AppError> {
         let today = self.today_there()?;
@@ -184,7 +192,7 @@ impl Desk {
             parts: String::new(),
             temporary: false,
             repair: repairs.first().map(|repair| repair.line.entry),
-            method: METHODS[0].0.to_owned(),
+            method: LeakMethod::ALL[0].name.to_owned(),
             instrument: self.usual_detector()?,
             failed: false,
             partial: false,
@@ -196,15 +204,19 @@ impl Desk {
         if msg == Msg::Save {
             return self.save_repair();
         }
+        let detector = self.usual_detector()?;
         if let Some(form) = &mut self.work_mut()?.repair {
-            form.update(msg);
+            match msg {
+                Msg::Method(key) => form.take_method(key, detector),
+                other => form.update(other),
+            }
         }
         self.work()?.repair.as_ref().map_or(Ok(()), |form| self.keep(Panel::Repair, form))
     }
 
     fn save_repair(&mut self) -> Result<(), AppError> {
         let form = self.work()?.repair.clone().ok_or(AppError::Unknown { what: "repair being entered" })?;
-        let (visit, common) = (self.work()?.visit.id, self.work()?.common(""));
+        let (visit, common) = (self.work()?.visit.id, self.work()?.common(Panel::Repair, form.appliance, "")?);
         match form.step {
             Step::Repair => {
                 let input = RepairInput {
@@ -225,7 +237,7 @@ impl Desk {
         }
         // Tests are entered under another action: this draft is cleared here.
         self.app.clear_draft(visit, Panel::Repair.action())?;
-        self.entered()?;
+        self.entered(Panel::Repair, form.appliance)?;
         let next = form.next_step();
         let fresh = Form { step: next, ..self.fresh_repair(form.appliance)? };
         self.work_mut()?.repair = (next != form.step).then_some(fresh);
@@ -274,7 +286,7 @@ impl Desk {
         };
         Ok(Shown {
             appliance: self.appliance_words()?,
-            steps: Step::ALL.map(|step| Choice::new(step.key(), step.name(), "")).to_vec(),
+            steps: Step::ALL.map(|step| Choice::new(step.key(), words::repair_step(step), "")).to_vec(),
             step: form.step.key().to_owned(),
             asked: self.asked(form)?,
             leaks,
@@ -285,9 +297,9 @@ impl Desk {
             temporary: form.temporary,
             repairs: lasting_repairs(&entries).iter().take(OFFERED).map(repair).collect(),
             repair: form.repair.map(|repair| repair.to_string()).unwrap_or_default(),
-            methods: METHODS.iter().filter(|(_, direct)| *direct).map(|(name, _)| Choice::word(name)).collect(),
+            methods: LeakMethod::ALL.iter().filter(|method| method.direct).map(|method| Choice::word(method.name)).collect(),
             method: form.method.clone(),
-            instruments: self.instruments(InstrumentKind::Detector, today),
+            instruments: self.detectors(today),
             instrument: form.instrument.map(|instrument| instrument.to_string()).unwrap_or_default(),
             result: if form.failed { "fail" } else { "pass" }.to_owned(),
             partial: form.partial,
@@ -301,7 +313,7 @@ impl Desk {
                 Step::FollowUp => words::save_follow_up_test(),
                 Step::NormalOperation => words::save_normal_operation(),
             },
-            ready: form.ready(),
+            ready: self.ready_at(Panel::Repair, form.appliance, form.ready())?,
         })
     }
 

@@ -18,9 +18,6 @@ pub const BEFORE_OUNCES: &str = "before oz";
 pub const AFTER: &str = "after";
 pub const AFTER_OUNCES: &str = "after oz";
 
-/// Why today's first gross differs from the last one known.
-pub const GAP_REASONS: [&str; 5] = ["used elsewhere", "wrong weight", "leaking cylinder", "cap or hose", "do not know"];
-
 /// What is typed and chosen about a weighing.
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
 #[serde(default)]
@@ -315,7 +312,7 @@ impl WeighingForm {
 
     /// `gross before and after, kg`, for the line that opens the choices.
     pub fn summary(&self) -> String {
-        format!("{}, {}", if self.zeroed { "scale zeroed" } else { "gross before, after" }, unit_key(self.unit))
+        format::commas([if self.zeroed { words::scale_zeroed() } else { words::gross_twice() }, unit_key(self.unit)])
     }
 }
 

@@ -1,6 +1,8 @@
 //! The six actions: rates, verdicts, duties and what an entry says.
 
-use crate::ledger::ChargePurpose;
+use crate::ledger::{ChargePurpose, RateMethod};
+use crate::view::visit::Panel;
+use crate::view::visit::repair::Step;
 
 pub fn appliance(name: &str, gas: &str, full_charge: &str) -> String {
     format!("{name}, {gas}, {full_charge}")
@@ -126,16 +128,8 @@ pub fn short_amount_missing() -> String {
     "Write by about how much it is short, with its unit.".to_owned()
 }
 
-pub fn same_leak_missing() -> String {
-    "Choose the earlier charge whose leak this is.".to_owned()
-}
-
-pub fn gas_source_missing() -> String {
-    "Write where the gas comes from: facility, address, batch, certificate.".to_owned()
-}
-
 pub fn glide_words(gas: &str) -> String {
-    format!("{gas} parts as it boils: vapour changes what is left. Take liquid.")
+    format!("{gas} fractionates: taking vapour changes what is left. Take liquid.")
 }
 
 pub fn cannot_be_charged() -> String {
@@ -146,8 +140,12 @@ pub fn cannot_be_recovered() -> String {
     "This cylinder cannot be filled".to_owned()
 }
 
-pub fn think_again() -> String {
-    "Think again".to_owned()
+pub fn left_to_judgement() -> String {
+    "Left to your judgement".to_owned()
+}
+
+pub fn say_why_it_differs() -> String {
+    "Say why the cylinder weighs otherwise.".to_owned()
 }
 
 pub fn reason_missing() -> String {
@@ -168,6 +166,15 @@ pub fn level_by_maker() -> String {
 
 pub fn indirect_method() -> String {
     "An indirect method: it shows that gas is missing, not where. It is no leak inspection.".to_owned()
+}
+
+/// Why an indirect method is no inspection, in the few letters of a choice.
+pub fn indirect() -> String {
+    "indirect method".to_owned()
+}
+
+pub fn no_detector() -> String {
+    "no detector".to_owned()
 }
 
 pub fn check_overdue(day: &str) -> String {
@@ -269,4 +276,84 @@ pub fn note_kind(kind: &str) -> String {
         _ => "",
     }
     .to_owned()
+}
+
+/// What a dated fact is called among the choices of a note.
+pub fn note_name(kind: &str) -> &str {
+    match kind {
+        "mothball" => "mothballed",
+        "retrofit" => "retrofitted",
+        "retire" => "retired",
+        "detection system check" => "detection system checked",
+        "recycle" => "gas recycled",
+        other => other,
+    }
+}
+
+/// The action, as a heading.
+pub fn act(panel: Panel) -> String {
+    match panel {
+        Panel::Recover => "Recover",
+        Panel::LeakTest => "Leak test",
+        Panel::Repair => "Repair",
+        Panel::Pressure => "Pressure or vacuum",
+        _ => "Charge",
+    }
+    .to_owned()
+}
+
+pub fn repair_step(step: Step) -> &'static str {
+    match step {
+        Step::Repair => "repair",
+        Step::Initial => "initial test",
+        Step::FollowUp => "follow-up test",
+        Step::NormalOperation => "normal operation",
+    }
+}
+
+/// Why gas was added, in the trade's words; files keep the short ones.
+pub fn charge_purpose(purpose: ChargePurpose) -> &'static str {
+    match purpose {
+        ChargePurpose::Trim => "commissioning trim",
+        ChargePurpose::Retrofit => "after retrofit",
+        ChargePurpose::Seasonal => "seasonal return",
+        ChargePurpose::Mothball => "after mothballing",
+        ChargePurpose::Returned => "recovered gas put back",
+        ChargePurpose::Replacement => "replaces gas recovered in this job",
+        ChargePurpose::Leak | ChargePurpose::SameLeak | ChargePurpose::Installation | ChargePurpose::FactoryCharge => purpose.name(),
+    }
+}
+
+/// What stands above a leak rate: by which method, where one is due.
+pub fn leak_rate(method: Option<RateMethod>) -> String {
+    match method {
+        Some(RateMethod::Annualizing) => "leak rate, annualizing method",
+        Some(RateMethod::RollingAverage) => "leak rate, rolling average method",
+        None => "leak rate",
+    }
+    .to_owned()
+}
+
+pub fn reading_taken() -> String {
+    "reading taken".to_owned()
+}
+
+pub fn pressure_absolute() -> String {
+    "pressure, absolute".to_owned()
+}
+
+pub fn pressure_gauge() -> String {
+    "pressure, gauge".to_owned()
+}
+
+pub fn pipe_temperature() -> String {
+    "pipe temperature".to_owned()
+}
+
+pub fn minutes() -> String {
+    "minutes".to_owned()
+}
+
+pub fn change() -> String {
+    "change".to_owned()
 }

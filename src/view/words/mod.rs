@@ -3,6 +3,7 @@
 //! and `rules`; refusals from `app`.
 
 mod act;
+pub mod captions;
 pub mod office;
 mod visit;
 mod weighing;

@@ -54,7 +54,7 @@ pub fn say_the_site() -> String {
 }
 
 pub fn say_the_identification() -> String {
-    "Write what the machine is called.".to_owned()
+    "Write the appliance\u{2019}s identification.".to_owned()
 }
 
 pub fn say_the_gas() -> String {
@@ -252,10 +252,6 @@ pub fn say_why() -> String {
     "Say why.".to_owned()
 }
 
-pub fn say_why_or_instead() -> String {
-    "Say why. Leave what is right empty if it never happened.".to_owned()
-}
-
 pub fn sign_the_correction() -> String {
     "A correction is signed.".to_owned()
 }
@@ -270,4 +266,73 @@ pub fn window_failed(cause: &str) -> String {
 
 pub fn no_display() -> String {
     "There is no display to open a window on. The commands work without one; see bubblepoint --help.".to_owned()
+}
+
+pub fn full_charge_in_plant() -> String {
+    "Write the full charge, and how it was determined, on the appliance\u{2019}s page in Plant.".to_owned()
+}
+
+pub fn now() -> String {
+    "now".to_owned()
+}
+
+pub fn now_is(time: &str) -> String {
+    format!("now, {time}")
+}
+
+pub fn time_of_day() -> String {
+    "time of day".to_owned()
+}
+
+pub fn time_missing() -> String {
+    "Type hours and minutes, as 9 4 5 for 9:45.".to_owned()
+}
+
+pub fn time_to_complete() -> String {
+    "time to complete".to_owned()
+}
+
+pub fn no_such_time(typed: &str) -> String {
+    format!("{typed} is no time of day.")
+}
+
+/// `Apr`: a month among steppers.
+pub fn month_short(day: chrono::NaiveDate) -> String {
+    day.format("%b").to_string()
+}
+
+pub fn signed(name: &str) -> String {
+    format!("{name}, signed")
+}
+
+pub fn handed_over_at(when: &str) -> String {
+    format!("handed over {when}")
+}
+
+pub fn only_taken_out() -> String {
+    "This entry can only be taken out. What holds instead is entered anew at a visit.".to_owned()
+}
+
+pub fn right_net() -> String {
+    "right net, with unit".to_owned()
+}
+
+pub fn right_work() -> String {
+    "what was done, in right words".to_owned()
+}
+
+pub fn right_recycling() -> String {
+    "machine, filter, check, in right words".to_owned()
+}
+
+pub fn right_readings() -> String {
+    "right readings".to_owned()
+}
+
+pub fn right_words() -> String {
+    "right words for the note".to_owned()
+}
+
+pub fn say_instead() -> String {
+    "Say what is right instead, or that it never happened.".to_owned()
 }

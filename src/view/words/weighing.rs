@@ -18,7 +18,7 @@ pub fn gross_after() -> String {
 
 /// The last reading is taken after the line is off (49 CFR 173.304a(c)).
 pub fn line_off_after() -> String {
-    "line off, after".to_owned()
+    "gross after, line off".to_owned()
 }
 
 pub fn reading_at_start() -> String {
@@ -148,4 +148,40 @@ pub fn room_unknown() -> String {
 
 pub fn left_in(cylinder: &str) -> String {
     format!("left in {cylinder}")
+}
+
+pub fn scale_zeroed() -> &'static str {
+    "scale zeroed"
+}
+
+pub fn gross_twice() -> &'static str {
+    "gross before, after"
+}
+
+pub fn say_the_cylinder() -> String {
+    "Write the identification stamped on the cylinder.".to_owned()
+}
+
+pub fn room(mass: &str) -> String {
+    format!("room {mass}")
+}
+
+pub fn out_of_use(why: &str) -> String {
+    format!("out of use: {why}")
+}
+
+pub fn mixed_gas() -> String {
+    "mixed gas".to_owned()
+}
+
+pub fn recovered_gas() -> String {
+    "recovered gas, not recycled or reclaimed".to_owned()
+}
+
+pub fn overdue(day: &str) -> String {
+    format!("to be requalified by {day}")
+}
+
+pub fn cylinder(name: &str) -> String {
+    format!("cylinder {name}")
 }

@@ -4,7 +4,7 @@
 use crate::place_scenes::PLACE_SCENES;
 use bubblepoint_ui::{
     Act, AppWindow, BeginAdapter, ChargeAdapter, ChooseApplianceAdapter, ChooseCylinderAdapter, CloseAdapter, EntryAdapter, EntryStep,
-    LeakTestAdapter, Page, Place, Reading, Refusal, RepairAdapter, Shell, VisitAdapter, VisitClosedAdapter,
+    LeakTestAdapter, Page, Place, Reading, Refusal, RepairAdapter, Shell, VisitAdapter, VisitClosedAdapter, WhenAdapter,
 };
 use slint::{ComponentHandle, ModelRc, VecModel};
 
@@ -49,6 +49,14 @@ const VISIT_SCENES: &[Scene] = &[
     Scene { name: "charge-refused", set: charge_refused },
     Scene { name: "charge-gap", set: charge_gap },
     Scene { name: "recover", set: |w| act(w, Act::Recover) },
+    Scene { name: "when", set: |w| act(w, Act::When) },
+    Scene {
+        name: "charge-said",
+        set: |w| {
+            w.global::<WhenAdapter>().set_stamp("31 Mar 12:05".into());
+            act(w, Act::Charge);
+        },
+    },
     Scene { name: "leak-test", set: |w| act(w, Act::LeakTest) },
     Scene {
         name: "leak-test-clean",
@@ -88,7 +96,37 @@ const VISIT_SCENES: &[Scene] = &[
             act(w, Act::Entry);
         },
     },
+    Scene {
+        name: "entry-correct-signing",
+        set: |w| {
+            w.global::<EntryAdapter>().set_can_strike(false);
+            w.global::<EntryAdapter>().set_can_correct(true);
+            w.global::<EntryAdapter>().set_step(EntryStep::Correct);
+            w.global::<EntryAdapter>().set_signing(true);
+            act(w, Act::Entry);
+        },
+    },
+    Scene {
+        name: "entry-answer",
+        set: |w| {
+            w.global::<EntryAdapter>().set_step(EntryStep::Answer);
+            act(w, Act::Entry);
+        },
+    },
     Scene { name: "close", set: |w| act(w, Act::Close) },
+    Scene {
+        name: "close-caution",
+        set: |w| {
+            use slint::Model;
+            let a = w.global::<CloseAdapter>();
+            let mut caution = a.get_cautions().row_data(0).expect("the preview has a caution");
+            caution.acknowledged = false;
+            a.set_cautions(ModelRc::new(VecModel::from(vec![caution])));
+            a.set_onward(false);
+            a.set_not_onward("Acknowledge each caution to go on.".into());
+            act(w, Act::Close);
+        },
+    },
     Scene {
         name: "close-signing",
         set: |w| {

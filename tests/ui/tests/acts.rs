@@ -1,7 +1,9 @@
 //! The open action by touch, mouse and keyboard: what is typed, chosen and
 //! drawn arrives on the other side, as the fingers meant it.
 
-use bubblepoint_ui::{Act, Appearance, ChargeAdapter, ChargeChoice, CloseAdapter, Page, Shell, Signer, VisitAdapter};
+use bubblepoint_ui::{
+    Act, Appearance, ChargeAdapter, ChargeChoice, CloseAdapter, Page, PressureAdapter, Shell, Signer, VisitAdapter, WhenAdapter,
+};
 use bubblepoint_ui_tests::{PHONE, TABLET, acting, drag, open, press, press_key, settle};
 use slint::{ComponentHandle, platform::Key};
 use std::cell::RefCell;
@@ -17,6 +19,9 @@ pub const CHECKS: &[super::Check] = &[
         an_action_covers_a_phone_and_stands_beside_the_visit_elsewhere,
     ),
     ("acts::closing_takes_two_steps", closing_takes_two_steps),
+    ("acts::what_stands_in_the_way_is_in_view_on_a_phone", what_stands_in_the_way_is_in_view_on_a_phone),
+    ("acts::a_pipe_colder_than_ice_can_be_typed", a_pipe_colder_than_ice_can_be_typed),
+    ("acts::the_head_says_when_and_by_whom", the_head_says_when_and_by_whom),
 ];
 
 fn keys_of_charge(window: &bubblepoint_ui::AppWindow) -> Rc<RefCell<String>> {
@@ -72,9 +77,9 @@ fn choices_are_folded_away_on_a_phone() {
     let chosen = Rc::new(RefCell::new(Vec::new()));
     let seen = Rc::clone(&chosen);
     window.global::<ChargeAdapter>().on_choose(move |what, key| seen.borrow_mut().push((what, key.to_string())));
-    assert!(!acting(&window).iter().any(|a| a.label == "seasonal"));
+    assert!(!acting(&window).iter().any(|a| a.label == "seasonal return"));
     press(&window, "leak, liquid, to full charge, change");
-    press(&window, "seasonal");
+    press(&window, "seasonal return");
     assert_eq!(*chosen.borrow(), [(ChargeChoice::Purpose, "seasonal".to_owned())]);
     assert!(!acting(&window).iter().any(|a| a.label == "decimal sign"), "the pad gives way to the choices");
     press(&window, "gross after kg, 19.64");
@@ -135,4 +140,65 @@ fn closing_takes_two_steps() {
     assert_eq!(*closed.borrow(), 0);
     press(&window, "Close visit");
     assert_eq!(*closed.borrow(), 1);
+}
+
+fn what_stands_in_the_way_is_in_view_on_a_phone() {
+    let window = open(PHONE, Appearance::Light, 1.0);
+    let charge = window.global::<ChargeAdapter>();
+    let mut weighing = charge.get_weighing();
+    weighing.gap_words = "S-204 weighed 24.18 kg when last known; this is 0.35 kg less.".into();
+    charge.set_weighing(weighing.clone());
+    show(&window, Act::Charge);
+    let has = |label: &str| acting(&window).iter().any(|a| a.label == label);
+    assert!(has("decimal sign"), "figures can still be typed");
+    press(&window, "The cylinder weighs otherwise: say why");
+    assert!(!has("decimal sign"), "the pad gives way");
+    let all = acting(&window);
+    let of = |label: &str| all.iter().find(|a| a.label == label).unwrap_or_else(|| panic!("no {label}"));
+    let (last, save) = (&of("do not know").element, &of("Save charge").element);
+    assert!(last.absolute_position().y + last.size().height <= save.absolute_position().y, "the whole question is in view");
+    // An answer brings the pad back.
+    press(&window, "used elsewhere");
+    weighing.gap_reason = "used elsewhere".into();
+    charge.set_weighing(weighing);
+    settle();
+    assert!(has("decimal sign") && !has("The cylinder weighs otherwise: say why"));
+}
+
+fn a_pipe_colder_than_ice_can_be_typed() {
+    let window = open(PHONE, Appearance::Light, 1.0);
+    show(&window, Act::Pressure);
+    let typed = Rc::new(RefCell::new(String::new()));
+    let seen = Rc::clone(&typed);
+    window.global::<PressureAdapter>().on_key(move |key| seen.borrow_mut().push_str(&key));
+    press(&window, "above or below nought");
+    press(&window, "7");
+    press_key(&window, "-");
+    assert_eq!(*typed.borrow(), "-7-");
+    show(&window, Act::Charge);
+    assert!(!acting(&window).iter().any(|a| a.label == "above or below nought"), "a scale's figures have no sign of their own");
+}
+
+fn the_head_says_when_and_by_whom() {
+    let window = open(PHONE, Appearance::Light, 1.0);
+    let opened = Rc::new(RefCell::new(0));
+    let seen = Rc::clone(&opened);
+    window.global::<WhenAdapter>().on_open(move || *seen.borrow_mut() += 1);
+    for act in [Act::Charge, Act::Recover, Act::LeakTest, Act::Repair, Act::Pressure, Act::Note] {
+        show(&window, act);
+        press(&window, "when and by whom, now, Mara Lindqvist");
+    }
+    assert_eq!(*opened.borrow(), 6);
+    let typed = Rc::new(RefCell::new(String::new()));
+    let keys = Rc::clone(&typed);
+    window.global::<WhenAdapter>().on_key(move |key| keys.borrow_mut().push_str(&key));
+    let stepped = Rc::new(RefCell::new(Vec::new()));
+    let steps = Rc::clone(&stepped);
+    window.global::<WhenAdapter>().on_step(move |part, by| steps.borrow_mut().push((part.to_string(), by)));
+    show(&window, Act::When);
+    for digit in ["1", "2", "0", "5"] {
+        press(&window, digit);
+    }
+    press(&window, "day, earlier");
+    assert_eq!((typed.borrow().as_str(), stepped.borrow().as_slice()), ("1205", [("day".to_owned(), -1)].as_slice()));
 }

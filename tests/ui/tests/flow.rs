@@ -108,6 +108,8 @@ impl Work {
 
     fn close_with_two_signatures(&self) {
         self.tap("Close visit");
+        // The caution for the way home.
+        self.touch("Upright, tied, capped");
         self.tap("On to the signatures");
         self.sign("technician, Mara Lindqvist, not signed yet");
         if self.labels().iter().any(|label| label == "On to the representative") {

@@ -34,7 +34,7 @@ fn a_first_start_leads_to_the_first_visit() {
     press(window, "Save person");
     field(window, "site", "Fish market");
     press(window, "Add site");
-    field(window, "identification, as on the machine", "R-1");
+    field(window, "identification, as on the appliance", "R-1");
     field(window, "gas", "r22");
     press(window, "Add appliance");
     field(window, "identification, as stamped", "S-204");
