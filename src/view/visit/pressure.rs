@@ -316,7 +316,7 @@ mod tests {
         }
         assert!(form.can_take());
         form.take("10:12".to_owned(), 612);
-        assert_eq!(form.series(), "10:12 2.1 bar at -12.5 °C");
+        assert_eq!(form.series(), "10:12 2.1 bar at -12.5 °F");
         form.update(Msg::Kind(RISE.to_owned()));
         form.update(Msg::Key("-".to_owned()));
         assert_eq!(form.pressure, "", "an absolute pressure is never below nought");
