@@ -105,7 +105,7 @@ fn signed(mass: Mass, sign: char, unit: MassUnit) -> String {
 }
 
 fn weighted(value: Option<Ratio>, places: u32, unit: &str) -> String {
-    value.map_or_else(|| words::not_known(), |value| format!("{} {unit}", rounded_text(value, places)))
+    value.map_or_else(words::not_known, |value| format!("{} {unit}", rounded_text(value, places)))
 }
 
 impl Office {
@@ -214,7 +214,7 @@ impl Office {
         let sum = |part: fn(&GasAccount) -> Option<Ratio>| gases.iter().try_fold(zero, |sum, gas| part(gas).map(|value| sum + value));
         page.lost = figure(gases.iter().map(|gas| gas.line.lost).sum(), unit);
         page.lost_unit = format::unit(unit).to_owned();
-        let bare = |value: Option<Ratio>, places| value.map_or_else(|| words::not_known(), |value| rounded_text(value, places));
+        let bare = |value: Option<Ratio>, places| value.map_or_else(words::not_known, |value| rounded_text(value, places));
         page.co2e = bare(sum(|gas| gas.loss.co2e_t), 1);
         page.odp = bare(sum(|gas| gas.loss.odp_kg), 2);
         let tables = |part: fn(&GasAccount) -> &str| {

@@ -453,7 +453,7 @@ fn a_wrong_entry_is_struck_and_a_closed_one_corrected() {
     fine(&desk);
     assert_eq!(charged(&desk, plant.r1), ["3.5"]);
     let visits = desk.app().store().visits(&crate::store::VisitFilter::default()).unwrap();
-    let correction = visits.into_iter().filter_map(|visit| visit.closing).last().unwrap();
+    let correction = visits.into_iter().filter_map(|visit| visit.closing).next_back().unwrap();
     assert_eq!(correction.counterpart, crate::ledger::Counterpart::SignsLater { name: "Otto Prins".to_owned() });
 }
 

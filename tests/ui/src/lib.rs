@@ -16,4 +16,6 @@ pub use picture::{Picture, draw, save};
 pub use scenes::{Scene, scenes};
 pub use sources::{SlintFile, literals, raw_text, screens};
 pub use sweep::{Acting, Fault, acting, sweep, texts};
-pub use window::{DESK, PHONE, SIZES, Size, TABLET, TABLET_UPRIGHT, drag, field, open, prepare, press, press_key, settle};
+pub use window::{
+    DESK, PHONE, SIZES, Size, TABLET, TABLET_UPRIGHT, drag, field, mark_demonstration, open, prepare, press, press_key, settle,
+};

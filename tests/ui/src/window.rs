@@ -1,6 +1,6 @@
 //! The window, opened headless at a given size.
 
-use bubblepoint_ui::{AppWindow, Appearance, Theme};
+use bubblepoint_ui::{AppWindow, Appearance, Shell, Theme};
 use i_slint_backend_testing::{ElementHandle, ElementQuery, TestingBackend, TestingBackendOptions};
 use slint::platform::{PointerEventButton, WindowEvent};
 use slint::{ComponentHandle, LogicalPosition, LogicalSize, SharedString};
@@ -135,4 +135,11 @@ pub fn press_key(window: &AppWindow, text: impl Into<SharedString>) {
 
 pub(crate) fn every_element(window: &AppWindow) -> Vec<ElementHandle> {
     ElementQuery::from_root(window).find_all()
+}
+
+/// Marks the window as that of a demonstration, as the program does.
+pub fn mark_demonstration(window: &AppWindow) {
+    let shell = window.global::<Shell>();
+    shell.set_demonstration(true);
+    shell.set_demonstration_words(bubblepoint::view::words::demonstration().into());
 }

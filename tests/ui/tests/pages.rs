@@ -2,7 +2,7 @@
 //! unnamed or out of reach, nothing is cut off.
 
 use bubblepoint_ui::{Appearance, Line, Page, Place, Shell, VisitAdapter};
-use bubblepoint_ui_tests::{DESK, Fault, PHONE, SIZES, Size, acting, open, scenes, settle, sweep};
+use bubblepoint_ui_tests::{DESK, Fault, PHONE, SIZES, Size, acting, mark_demonstration, open, scenes, settle, sweep};
 use slint::{ComponentHandle, ModelRc, VecModel};
 
 pub const CHECKS: &[super::Check] = &[
@@ -36,7 +36,7 @@ fn nothing_is_small_unnamed_or_cut_off() {
         for size in SIZES {
             for factor in [1.0, 1.5] {
                 let window = open(size, Appearance::Light, factor);
-                window.global::<Shell>().set_demonstration(true);
+                mark_demonstration(&window);
                 (scene.set)(&window);
                 settle();
                 looked_at += acting(&window).len();

@@ -4,8 +4,8 @@
 use bubblepoint::view::places::{Go, Look};
 use bubblepoint_ui::{AppWindow, AppearanceAdapter, Page, Shell, Theme};
 use bubblepoint_ui_tests::{
-    OFFICE_PAGES, PHONE, SIZES, TABLET, TABLET_UPRIGHT, acting, demonstration, empty, field, office, office_as, open, press, press_key,
-    settle, sweep,
+    OFFICE_PAGES, PHONE, SIZES, TABLET, TABLET_UPRIGHT, acting, demonstration, empty, field, mark_demonstration, office, office_as, open,
+    press, press_key, settle, sweep,
 };
 use slint::ComponentHandle;
 
@@ -154,7 +154,7 @@ fn every_page_of_the_demonstration_is_whole() {
             for page in OFFICE_PAGES {
                 let look = Look { appearance: bubblepoint::app::Appearance::Light, text_size };
                 let opened = office_as(&app, size, look, folder.path());
-                opened.window.global::<Shell>().set_demonstration(true);
+                mark_demonstration(&opened.window);
                 (page.reach)(&opened);
                 settle();
                 looked_at += acting(&opened.window).len();

@@ -5,9 +5,8 @@
 //! `pictures <folder> [words…]`: with words, only pages whose name holds one of them.
 
 use bubblepoint::app::{Appearance as Light, Look};
-use bubblepoint_ui::{Appearance, Shell};
-use bubblepoint_ui_tests::{OFFICE_PAGES, PHONE, SIZES, demonstration, draw, office_as, open, save, scenes, settle};
-use slint::ComponentHandle;
+use bubblepoint_ui::Appearance;
+use bubblepoint_ui_tests::{OFFICE_PAGES, PHONE, SIZES, demonstration, draw, mark_demonstration, office_as, open, save, scenes, settle};
 use std::path::PathBuf;
 use std::process::ExitCode;
 
@@ -55,7 +54,7 @@ fn main() -> ExitCode {
             }
             for (look, appearance, text_size) in looks {
                 let opened = office_as(&app, size, Look { appearance, text_size }, &documents);
-                opened.window.global::<Shell>().set_demonstration(true);
+                mark_demonstration(&opened.window);
                 (page.reach)(&opened);
                 settle();
                 let path = folder.join(format!("{}-{}-{look}.png", page.name, size.name));
