@@ -281,7 +281,7 @@ fn the_exempt_subsector_is_declared_with_a_reason() {
     let before = declared.clone();
     declared.residential_or_light_commercial_ac = true;
     let dated = |from: Option<&str>, reason: Option<&str>, facts| bubblepoint::ledger::Dated {
-        from: from.map(|text| day(text)),
+        from: from.map(day),
         reason: reason.map(str::to_owned),
         facts,
     };
