@@ -190,7 +190,7 @@ impl DutySource<'_> {
             let day = history.date(line);
             let resumed = history.marks().next(Mark::Charge, Some(line));
             let over_before_it_began = resumed.is_some_and(|charge| history.date(charge) <= duty.clock_from);
-            let done_before = duty.met_by.is_some_and(|met| met < line) || duty.ended_on.or(duty.rule_ends).is_some_and(|end| end < day);
+            let done_before = duty.met_by.is_some_and(|met| met < line) || duty.ended_on.or(duty.rule_ends).is_some_and(|end| end <= day);
             let late = duty.due.is_some_and(|due| due < day);
             if over_before_it_began || done_before || late {
                 continue;
