@@ -101,7 +101,11 @@ pub fn duty_row(judged: &Judged, duty: &Duty, today: NaiveDate, soon: NaiveDate)
         }
         DutyState::Open => {
             let near = duty.due.is_none_or(|due| due <= soon);
-            let row = row.state(day(duty.due), duty.due.map(|due| say::until(due, judged.on)).unwrap_or_default());
+            // A row has room for a short state; why there is no day is said in small.
+            let row = match duty.due {
+                Some(due) => row.state(format::day(due, today), say::until(due, judged.on)),
+                None => row.state(DutyState::Open.name(), no_day(duty)),
+            };
             row.judged(if near { Verdict::At } else { Verdict::None })
         }
         DutyState::Met => row.state(DutyState::Met.name(), day(duty.met_on)).judged(Verdict::Under),
@@ -230,8 +234,7 @@ impl Office {
         let title = rules::rulebook(&duty.rulebook).map_or_else(|| duty.rulebook.clone(), |book| book.title.clone());
         facts.push(Fact::new("rulebook", title));
         let word = match duty.state(judged.on) {
-            DutyState::Late | DutyState::Open if !row.aside.is_empty() => row.aside,
-            DutyState::Open => no_day(duty),
+            DutyState::Late | DutyState::Open => row.aside,
             _ => row.state,
         };
         Item {
